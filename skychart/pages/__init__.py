@@ -1,0 +1,1 @@
+"""The HTML pages: from finished chart data to a folder of files that opens from disk."""
