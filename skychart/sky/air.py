@@ -12,9 +12,11 @@ from numpy.typing import ArrayLike
 from skychart.data import load_table
 from skychart.errors import InputError
 from skychart.library import colour_science
+from skychart.sky.wavelengths import checked_wavelength
 
 CO2_PPM = 360.0  # the mixture Bodhaine et al. (1999) tabulate; 420 ppm would add 0.007 % to the cross-section
 TOP_KM = 100
+WAVELENGTH_RANGE_NM = (250.0, 1100.0)  # well inside the fits of refractive index and King factor
 
 
 def rayleigh_cross_section(wavelength_nm: ArrayLike) -> np.ndarray:
@@ -24,7 +26,7 @@ def rayleigh_cross_section(wavelength_nm: ArrayLike) -> np.ndarray:
     at every pressure. From the refractive index and the King factor of air as in Bodhaine et al. 1999.
     Raises InputError outside the range.
     """
-    wavelength = _checked_wavelength(wavelength_nm)
+    wavelength = checked_wavelength(wavelength_nm, *WAVELENGTH_RANGE_NM)
     phenomena = colour_science().phenomena.rayleigh
     cross_section_cm2 = phenomena.scattering_cross_section(
         wavelength * 1e-7,
@@ -42,7 +44,7 @@ def depolarisation_ratio(wavelength_nm: ArrayLike) -> np.ndarray:
     (Bodhaine et al. 1999, with the nitrogen and oxygen of Bates 1984) by F = (6 + 3ρ) / (6 - 7ρ).
     Raises InputError outside the range.
     """
-    wavelength = _checked_wavelength(wavelength_nm)
+    wavelength = checked_wavelength(wavelength_nm, *WAVELENGTH_RANGE_NM)
     king_factor = colour_science().phenomena.rayleigh.F_air_Bodhaine1999(wavelength * 1e-3, CO2_concentration=CO2_PPM)
     return np.asarray(6 * (king_factor - 1) / (3 + 7 * king_factor))
 
@@ -88,10 +90,3 @@ def column_of_layers(altitude_km: ArrayLike, number_density: ArrayLike) -> np.nd
     level = np.abs(rate) < 1e-6
     mean_growth = np.where(level, 1 + rate / 2, np.expm1(rate) / np.where(level, 1.0, rate))
     return density[:-1] * mean_growth * np.diff(altitude) * 1e3
-
-
-def _checked_wavelength(wavelength_nm: ArrayLike) -> np.ndarray:
-    wavelength = np.asarray(wavelength_nm, dtype=float)
-    if not np.all((wavelength >= 250) & (wavelength <= 1100)):
-        raise InputError(f"wavelength is {wavelength_nm} nm, accepted is 250 to 1100 nm")
-    return wavelength

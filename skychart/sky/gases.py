@@ -11,6 +11,7 @@ from numpy.typing import ArrayLike
 from skychart.data import load_table
 from skychart.errors import InputError
 from skychart.sky.air import column_of_layers
+from skychart.sky.wavelengths import checked_wavelength
 
 DOBSON_UNIT = 2.6867e20  # molecules m⁻²: 0.01 mm of gas at 0 °C and 1 atm
 
@@ -24,9 +25,7 @@ def ozone_cross_section(wavelength_nm: ArrayLike) -> np.ndarray:
     """
     columns = load_table("ozone_cross_section_serdyuchenko_1nm").columns
     tabulated_nm = columns["wavelength_nm"]
-    wavelength = np.asarray(wavelength_nm, dtype=float)
-    if not np.all((wavelength >= tabulated_nm[0]) & (wavelength <= tabulated_nm[-1])):
-        raise InputError(f"wavelength is {wavelength_nm} nm, accepted is 300 to 830 nm")
+    wavelength = checked_wavelength(wavelength_nm, tabulated_nm[0], tabulated_nm[-1])
     cross_section_cm2 = np.maximum(columns["sigma_223K"], 0)
     return np.asarray(np.interp(wavelength, tabulated_nm, cross_section_cm2)) * 1e-4
 

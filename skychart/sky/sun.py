@@ -10,7 +10,7 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from skychart.data import load_table
-from skychart.errors import InputError
+from skychart.sky.wavelengths import checked_wavelength
 
 SOLAR_DISC_DIAMETER_DEG = 0.533
 """Mean angular diameter of the sun, twice arcsin(6.957e8 m / 1 au) (nominal solar radius, IAU 2015 resolution B3)."""
@@ -27,7 +27,5 @@ def solar_irradiance(wavelength_nm: ArrayLike) -> np.ndarray:
     """
     columns = load_table("solar_tsis1_hsrs_v2_1nm").columns
     tabulated_nm = columns["wavelength_nm"]
-    wavelength = np.asarray(wavelength_nm, dtype=float)
-    if not np.all((wavelength >= tabulated_nm[0]) & (wavelength <= tabulated_nm[-1])):
-        raise InputError(f"wavelength is {wavelength_nm} nm, accepted is 300 to 1100 nm")
+    wavelength = checked_wavelength(wavelength_nm, tabulated_nm[0], tabulated_nm[-1])
     return np.asarray(np.interp(wavelength, tabulated_nm, columns["irradiance_w_m2_nm"]))
