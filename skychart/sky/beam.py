@@ -1,0 +1,90 @@
+"""Direct light: transmission from any altitude toward the sun, the planet's shadow exact."""
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from skychart.sky.shells import Shells, tangent_altitude
+
+Array = NDArray[np.float64]
+
+_STEP_DEG = 0.125
+# Columns are computed on these coarser steps where the air mass hardly bends: (up to this zenith angle, every)
+_COMPUTED = ((60.0, 1.0), (85.0, 0.25))
+
+
+def slant_to_space(shells: Shells, start: int, cos_zenith: Array) -> Array:
+    """Slant factor of each layer from boundary ``start`` outward to space.
+
+    ``cos_zenith`` has shape (...), the result (..., layer). A ray that would meet the ground is given the path of one
+    that grazes it; see ``lit`` for the shadow.
+    """
+    altitude = shells.altitude_km[start]
+    tangent = tangent_altitude(altitude, cos_zenith, shells.planet_radius_km)
+    down = np.asarray(cos_zenith)[..., None] < 0
+    crossings = np.where(np.arange(len(shells.altitude_km) - 1) >= start, 1.0, np.where(down, 2.0, 0.0))
+    return crossings * shells.slant_factors(np.where(down[..., 0], np.maximum(tangent, 0.0), tangent))
+
+
+def lit(altitude_km: Array, cos_zenith: Array, planet_radius_km: float) -> NDArray[np.bool_]:
+    """Whether a straight ray from ``altitude_km`` toward the sun clears the planet; broadcasts."""
+    return (cos_zenith >= 0) | (tangent_altitude(altitude_km, cos_zenith, planet_radius_km) >= 0)
+
+
+def transmission(shells: Shells, start: int, cos_zenith: Array) -> Array:
+    """Transmission from boundary ``start`` toward the sun, shape (..., wavelength); 0 in the shadow."""
+    depth = slant_to_space(shells, start, cos_zenith) @ shells.extinction_depth
+    clear = lit(shells.altitude_km[start], cos_zenith, shells.planet_radius_km)
+    return np.where(clear[..., None], np.exp(-depth), 0.0)
+
+
+@dataclass(frozen=True, eq=False)
+class SunTable:
+    """Transmission toward the sun, tabulated on (boundary, solar zenith angle every 0.125 degrees, wavelength).
+
+    Beyond the shadow's edge the table goes on smoothly, so that interpolation knows no edge; ``at`` cuts it exactly.
+    """
+
+    shells: Shells
+    values: NDArray[np.float32]  # (boundary, zenith angle, wavelength)
+
+    @classmethod
+    def of(cls, shells: Shells) -> "SunTable":
+        """Tabulate for every boundary of ``shells``."""
+        radius = shells.planet_radius_km
+        dip = np.degrees(np.arccos(radius / (radius + shells.altitude_km[-1])))
+        uniform = np.arange(0.0, 90.0 + dip + 2 * _STEP_DEG, _STEP_DEG)
+        computed = _computed_angles(uniform)
+        values = np.empty((len(shells.altitude_km), len(uniform), shells.extinction_depth.shape[1]), np.float32)
+        place = np.interp(uniform, computed, np.arange(len(computed)))
+        low = np.minimum(place.astype(int), len(computed) - 2)
+        part = (place - low)[:, None]
+        cosine = np.cos(np.radians(computed))
+        for start in range(len(shells.altitude_km)):
+            depth = slant_to_space(shells, start, cosine) @ shells.extinction_depth
+            values[start] = np.exp(-(depth[low] + part * (depth[low + 1] - depth[low])))
+        return cls(shells, values)
+
+    def at(self, boundary: NDArray[np.int_], cos_zenith: Array) -> NDArray[np.float32]:
+        """Transmission toward the sun from ``boundary`` (index); the two broadcast to (...); result (..., wavelength)."""
+        boundary, cosine = np.broadcast_arrays(boundary, cos_zenith)
+        clear = lit(self.shells.altitude_km[boundary], cosine, self.shells.planet_radius_km)
+        angles = self.values.shape[1]
+        place = np.degrees(np.arccos(np.clip(cosine, -1, 1))) / _STEP_DEG
+        low = np.minimum(place.astype(np.intp), angles - 2)
+        part = (np.minimum(place - low, 1.0) * clear).astype(np.float32)[..., None]
+        rest = clear.astype(np.float32)[..., None] - part
+        flat = self.values.reshape(-1, self.values.shape[2])
+        row = boundary * angles + low
+        return rest * flat[row] + part * flat[row + 1]
+
+
+def _computed_angles(uniform: Array) -> Array:
+    keep = np.ones(len(uniform), bool)
+    below = 0.0
+    for limit, every in _COMPUTED:
+        inside = (uniform >= below) & (uniform < limit)
+        keep &= ~inside | (np.round(uniform / _STEP_DEG) % round(every / _STEP_DEG) == 0)
+        below = limit
+    return uniform[keep]

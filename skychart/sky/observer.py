@@ -1,0 +1,182 @@
+"""What an observer sees: the Stokes parameters along lines of sight, and the light on the ground.
+
+Light scattered once is gathered straight from the beam at every sub-step; the rest from the solved field.
+"""
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from skychart.sky import dipole
+from skychart.sky.beam import SunTable
+from skychart.sky.molecular import Field, Shape
+from skychart.sky.rays import Crossings, crossings
+from skychart.sky.shells import Shells, tangent_altitude
+
+Array = NDArray[np.float64]
+
+_LINES_AT_ONCE = 256
+
+
+@dataclass(frozen=True, eq=False)
+class Lines:
+    """Lines of sight: sun, view and azimuth angles [rad], each shape (line,)."""
+
+    solar_zenith: Array
+    view_cosine: Array
+    relative_azimuth: Array
+
+
+@dataclass(frozen=True, eq=False)
+class Station:
+    """An observer's place: the layers with its altitude among the boundaries, and the sun's table on them."""
+
+    shells: Shells
+    table: SunTable
+    start: int
+
+    def single(self, lines: Lines, depolarisation: Array) -> NDArray[np.float64]:
+        """I, Q, U of light scattered once, shape (line, 3, wavelength) [1/sr]."""
+        a, b = dipole.molecular_coefficients(depolarisation)
+        result = np.zeros((len(lines.view_cosine), 3, len(a)))
+        everything = np.arange(len(self.shells.altitude_km))
+        for fan, ray, chosen in self._blocks(lines, everything):
+            level, cos_there, _, _ = _along(fan, ray, lines, chosen)
+            beam = self.table.at(level, cos_there)
+            weight = fan.weight[ray][fan.reached[ray]].astype(np.float32)
+            light = np.einsum("bql,ql->bl", beam, weight, optimize=False)
+            _, h, v = _sight_axes(lines, chosen)
+            hh, vv, hv = (0.5 * (x.rho * y.rho + x.alpha * y.alpha) for x, y in ((h, h), (v, v), (h, v)))
+            result[chosen] = np.stack(
+                [
+                    light * (a * (hh + vv)[:, None] + 2 * b),
+                    light * a * (hh - vv)[:, None],
+                    light * a * (-2 * hv)[:, None],
+                ],
+                axis=1,
+            )
+        return result
+
+    def multiple(self, field: Field, lines: Lines, depolarisation: Array, albedo: Array) -> NDArray[np.float64]:
+        """I, Q, U of light scattered more than once, ground reflections counted as scattering; (line, 3, wavelength) [1/sr]."""
+        a, b = dipole.molecular_coefficients(depolarisation)
+        field = _with_level(field, self.shells.altitude_km[self.start])
+        levels = np.searchsorted(self.shells.altitude_km, field.level_altitude_km)
+        result = np.zeros((len(lines.view_cosine), 3, len(a)))
+        for fan, ray, chosen in self._blocks(lines, levels):
+            level, cos_there, cosine, sine = _along(fan, ray, lines, chosen)
+            weight = fan.weight[ray][fan.reached[ray]].astype(np.float32)
+            tensor = _interpolated(field.tensor_shape, field.tensor, level, cos_there) * weight[:, None]
+            _, h, v = _sight_axes(lines, chosen)
+            hh, vv, hv = _source_coefficients(h, v, cosine, sine)
+            plain = np.broadcast_to(dipole.TRACE, hh.shape)
+            wanted = np.stack([hh + vv, hh - vv, -2 * hv, plain], axis=1).reshape(len(chosen), 4, -1).astype(np.float32)
+            sums = wanted @ tensor.reshape(len(chosen), wanted.shape[2], -1)
+            result[chosen] = a * sums[:, :3]
+            result[chosen, 0] += 2 * b * sums[:, 3]
+            if fan.ground[ray].any():
+                result[chosen, 0] += fan.ground[ray] * albedo / np.pi * self._ground_light(field, fan, ray, lines, chosen)
+        return result
+
+    def _ground_light(self, field: Field, fan: Crossings, ray: int, lines: Lines, chosen: NDArray[np.intp]) -> Array:
+        cos_there, _, _ = dipole.moved(
+            fan.ground_cos_turn[ray], fan.ground_sin_turn[ray],
+            np.cos(lines.relative_azimuth[chosen]), np.sin(lines.relative_azimuth[chosen]),
+            np.cos(lines.solar_zenith[chosen]), np.sin(lines.solar_zenith[chosen]),
+        )  # fmt: skip
+        return ground_light(field, field.ground, cos_there)
+
+    def _blocks(self, lines: Lines, boundaries: NDArray[np.intp]):
+        """Yield (fan of all distinct rays, ray, indices of some lines along it); levels at ``boundaries``."""
+        view, which = np.unique(lines.view_cosine, return_inverse=True)
+        fan = self._fan(view, boundaries)
+        order = np.argsort(which, kind="stable")
+        for part in np.split(order, np.searchsorted(which[order], np.arange(1, len(view)))):
+            for first in range(0, len(part), _LINES_AT_ONCE):
+                yield fan, int(which[part[0]]), part[first : first + _LINES_AT_ONCE]
+
+    def _fan(self, view: Array, boundaries: NDArray[np.intp]) -> Crossings:
+        shells = self.shells
+        tangent = tangent_altitude(shells.altitude_km[self.start], view, shells.planet_radius_km)
+        factors = shells.slant_factors(tangent)[..., None]
+        scattering, extinction = (
+            np.add.reduceat(factors * depth, boundaries[:-1], axis=1)
+            for depth in (shells.scattering_depth, shells.extinction_depth)
+        )
+        start = int(np.searchsorted(boundaries, self.start))
+        return crossings(shells.altitude_km[boundaries], scattering, extinction, start, view, shells.planet_radius_km)
+
+
+def ground_light(field: Field, values: NDArray[np.float32], cos_chi: Array) -> Array:
+    """Interpolate ground values (node, wavelength), kept over the ground's shape, at ``cos_chi`` (...)."""
+    node, low, high = field.ground_shape.weights(np.zeros(1, np.intp), cos_chi)
+    return low[..., None] * values[node] + high[..., None] * values[node + 1]
+
+
+def _along(fan: Crossings, ray: int, lines: Lines, chosen: NDArray[np.intp]):
+    """Levels crossed (crossing,), and for each line and crossing the cosine of the solar zenith angle and the turn of the axes."""
+    reached = fan.reached[ray]
+    phi, chi = lines.relative_azimuth[chosen, None], lines.solar_zenith[chosen, None]
+    cos_there, cosine, sine = dipole.moved(
+        fan.cos_turn[ray][reached], fan.sin_turn[ray][reached], np.cos(phi), np.sin(phi), np.cos(chi), np.sin(chi)
+    )
+    return np.nonzero(reached)[1], cos_there, cosine, sine
+
+
+def _sight_axes(lines: Lines, chosen: NDArray[np.intp]) -> tuple[dipole.Vector, dipole.Vector, dipole.Vector]:
+    """Direction of sight, and across it the horizontal axis and the one in its vertical plane."""
+    cos_theta = lines.view_cosine[chosen]
+    sin_theta = np.sqrt(1 - cos_theta**2)
+    phi, chi = lines.relative_azimuth[chosen], lines.solar_zenith[chosen]
+    trig = np.cos(phi), np.sin(phi), np.cos(chi), np.sin(chi)
+    omega = dipole.sight(cos_theta, sin_theta, *trig)
+    vertical = dipole.sight(-sin_theta, cos_theta, *trig)
+    cos_phi, sin_phi, cos_chi, sin_chi = trig
+    return omega, dipole.Vector(-sin_phi * sin_chi, sin_phi * cos_chi, -cos_phi), vertical
+
+
+def _source_coefficients(h: dipole.Vector, v: dipole.Vector, cosine: Array, sine: Array) -> tuple[Array, Array, Array]:
+    """What the four entries at each crossing give to hh, vv and hv; each (line, crossing, entry)."""
+
+    def turned(x: dipole.Vector) -> dipole.Vector:
+        rho, alpha = x.rho[:, None], x.alpha[:, None]
+        return dipole.Vector(np.broadcast_to(x.s[:, None], cosine.shape), cosine * rho + sine * alpha, cosine * alpha - sine * rho)
+
+    def product(x: dipole.Vector, y: dipole.Vector) -> Array:
+        return np.stack([x.s * y.s, x.s * y.rho + x.rho * y.s, x.rho * y.rho, x.alpha * y.alpha], axis=-1)
+
+    here_h, here_v = turned(h), turned(v)
+    return product(here_h, here_h), product(here_v, here_v), product(here_h, here_v)
+
+
+def _interpolated(shape: Shape, values: NDArray[np.float32], level: NDArray[np.intp], cos_chi: Array) -> NDArray[np.float32]:
+    """Field entries at (line, crossing): (line, crossing, entry, wavelength)."""
+    node, low, high = shape.weights(level, cos_chi)
+    rows = values.reshape(-1, *values.shape[2:])
+    row = level * values.shape[1] + node
+    low, high = (part[..., None, None].astype(np.float32) for part in (low, high))
+    return low * rows[row] + high * rows[row + 1]
+
+
+def _with_level(field: Field, altitude_km: float) -> Field:
+    """The field with a level at ``altitude_km``, linear in altitude between its neighbours."""
+    levels = field.level_altitude_km
+    if altitude_km in levels:
+        return field
+    upper = int(np.searchsorted(levels, altitude_km))
+    part = (altitude_km - levels[upper - 1]) / (levels[upper] - levels[upper - 1])
+
+    def insert(values: NDArray) -> NDArray:
+        between = values[upper - 1] + np.asarray(part, values.dtype) * (values[upper] - values[upper - 1])
+        return np.insert(values, upper, between, axis=0)
+
+    shape = field.tensor_shape
+    return Field(
+        level_altitude_km=insert(levels),
+        tensor_shape=Shape(shape.node_deg, insert(shape.at_node), insert(shape.fine)),
+        ground_shape=field.ground_shape,
+        tensor=insert(field.tensor),
+        ground=field.ground,
+        scattered_ground=field.scattered_ground,
+    )

@@ -1,0 +1,100 @@
+"""Spherical shells: the solver's own levels, and straight rays through them.
+
+A straight ray is known by its tangent altitude (the altitude of its point nearest to the planet's centre, which may be
+behind the observer or underground) and the signed distance s from that point: r^2 = (R + tangent)^2 + s^2.
+All products of r are taken as products of altitude differences, so that a planet a thousand times the earth's size
+(the flat case) loses no digits.
+"""
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from skychart.sky.atmosphere import Atmosphere
+from skychart.sky.interpolation import monotone_cubic
+
+Array = NDArray[np.float64]
+
+_PATH_NODES, _PATH_WEIGHTS = np.polynomial.legendre.leggauss(4)
+
+
+def level_altitudes(top_km: float, count: int) -> Array:
+    """Altitudes [km] of ``count`` levels from the ground to ``top_km``, closest together at the ground."""
+    x = np.linspace(0.0, 1.0, count)
+    return top_km * (0.25 * x + 0.75 * x**2.5)
+
+
+def subdivide(altitude_km: Array, parts: int) -> Array:
+    """Each interval of ``altitude_km`` cut into ``parts`` equal ones; the given altitudes stay, at every ``parts``-th place."""
+    fraction = np.arange(parts) / parts
+    inner = altitude_km[:-1, None] + np.diff(altitude_km)[:, None] * fraction
+    return np.append(inner.ravel(), altitude_km[-1])
+
+
+@dataclass(frozen=True, eq=False)
+class Shells:
+    """Optical depths of thin layers. Altitudes [km], shape (layer + 1,); depths (layer, wavelength)."""
+
+    altitude_km: Array
+    scattering_depth: Array
+    extinction_depth: Array
+    decay_per_km: Array  # of the molecular density within each layer, shape (layer,)
+    planet_radius_km: float
+
+    @classmethod
+    def of(cls, air: Atmosphere, altitude_km: Array) -> "Shells":
+        """The layers of ``air`` redistributed to the boundaries ``altitude_km`` [km], shape (layer + 1,)."""
+        rayleigh, density = _redistribute(air, air.rayleigh_depth, altitude_km)
+        absorption, _ = _redistribute(air, air.absorption_depth, altitude_km)
+        typical = np.maximum(density.mean(axis=1), 1e-12 * density.max())
+        return cls(
+            altitude_km=altitude_km,
+            scattering_depth=rayleigh,
+            extinction_depth=rayleigh + absorption,
+            decay_per_km=np.log(typical[:-1] / typical[1:]) / np.diff(altitude_km),
+            planet_radius_km=air.planet_radius_km,
+        )
+
+    def slant_factors(self, tangent_km: Array) -> Array:
+        """Path through each layer on one side of the tangent point, weighted by density, over the vertical one.
+
+        ``tangent_km`` has any shape (...); the result has shape (..., layer), 0 where the layer lies below the tangent.
+        """
+        tangent = np.asarray(tangent_km, dtype=float)[..., None]
+        bottom, top = self.altitude_km[:-1], self.altitude_km[1:]
+        start = distance_from_tangent(np.maximum(bottom, tangent), tangent, self.planet_radius_km)
+        end = distance_from_tangent(np.maximum(top, tangent), tangent, self.planet_radius_km)
+        nearest = self.planet_radius_km + tangent
+        half, middle = 0.5 * (end - start), 0.5 * (end + start)
+        total = np.zeros(np.broadcast_shapes(tangent.shape, bottom.shape))
+        for node, weight in zip(_PATH_NODES, _PATH_WEIGHTS, strict=True):
+            distance = middle + half * node
+            altitude = tangent + distance**2 / (np.sqrt(nearest**2 + distance**2) + nearest)
+            total += weight * np.exp(-self.decay_per_km * (altitude - bottom))
+        return total * half / _vertical_weight(self.decay_per_km, top - bottom)
+
+
+def tangent_altitude(altitude_km: Array, cos_zenith: Array, planet_radius_km: float) -> Array:
+    """Tangent altitude [km] of the ray that leaves ``altitude_km`` at zenith angle arccos(``cos_zenith``); broadcasts."""
+    sine = np.sqrt(np.maximum(0.0, 1 - np.square(cos_zenith)))
+    return altitude_km * sine - planet_radius_km * np.square(cos_zenith) / (1 + sine)
+
+
+def distance_from_tangent(altitude_km: Array, tangent_km: Array, planet_radius_km: float) -> Array:
+    """Distance [km] along a ray from its tangent point to ``altitude_km`` >= ``tangent_km``; broadcasts."""
+    return np.sqrt(np.maximum(0.0, (altitude_km - tangent_km) * (2 * planet_radius_km + altitude_km + tangent_km)))
+
+
+def _redistribute(air: Atmosphere, depth: Array, altitude_km: Array) -> tuple[Array, Array]:
+    """Depths between ``altitude_km`` and densities [1/km] at them, from the column below each level of ``air``."""
+    column = np.concatenate([np.zeros((1, depth.shape[1])), np.cumsum(depth, axis=0)])
+    below, density = monotone_cubic(air.level_altitude_km, column, altitude_km)
+    return np.diff(below, axis=0), density
+
+
+def _vertical_weight(decay: Array, thickness: Array) -> Array:
+    """Integral of exp(-decay z) over a layer."""
+    x = decay * thickness
+    small = np.abs(x) < 1e-5
+    return thickness * np.where(small, 1 - x / 2, -np.expm1(-x) / np.where(small, 1.0, x))

@@ -1,0 +1,128 @@
+"""The solved sky of one atmosphere, for every sun and direction."""
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
+
+from skychart.errors import InputError
+from skychart.sky import beam, dipole
+from skychart.sky.atmosphere import Atmosphere
+from skychart.sky.beam import SunTable
+from skychart.sky.grid import Grid
+from skychart.sky.molecular import Fan, Field, first_order, solve_field
+from skychart.sky.observer import Lines, Station, ground_light
+from skychart.sky.shells import Shells, level_altitudes, subdivide
+
+Array = NDArray[np.float64]
+
+LOWEST_SUN_DEG = -12.0
+HIGHEST_OBSERVER_KM = 50.0
+_SHAPE_WAVELENGTH_NM = 500.0
+
+
+def solve(air: Atmosphere, grid: Grid = Grid()) -> "Sky":  # noqa: B008  Grid is frozen
+    """Solve every order of molecular scattering for each wavelength of ``air`` and all sun heights at once."""
+    air_top = float(air.level_altitude_km[-1])
+    shells = Shells.of(air, subdivide(level_altitudes(air_top, grid.levels), grid.substeps))
+    table = SunTable.of(shells)
+    typical = int(np.argmin(np.abs(air.wavelength_nm - _SHAPE_WAVELENGTH_NM)))
+    field = solve_field(shells, table, grid, air.depolarisation, air.ground_albedo, typical)
+    return Sky(air, grid, Station(shells, table, 0), field)
+
+
+@dataclass(frozen=True, eq=False)
+class Sky:
+    """A solved sky. Angles in degrees; solar elevations are geometric (no refraction), -12 to 90.
+
+    Relative azimuth 0 looks toward the sun's azimuth, 180 away from it. Angles broadcast together; the wavelength axis,
+    that of the atmosphere, is last. Radiance and irradiance are per unit solar irradiance at the top of the atmosphere.
+    Q is positive where the electric vector is perpendicular to the vertical plane of the line of sight; U where it is
+    turned 45 degrees from the vertical plane, downward and toward increasing azimuth (for the light's own direction of travel).
+    """
+
+    air: Atmosphere
+    grid: Grid
+    ground: Station
+    field: Field
+
+    def stokes(
+        self,
+        solar_elevation_deg: ArrayLike,
+        view_elevation_deg: ArrayLike,
+        relative_azimuth_deg: ArrayLike,
+        altitude_km: float = 0.0,
+    ) -> Array:
+        """I, Q, U of the sky's diffuse light [1/sr], shape (..., 3, wavelength).
+
+        View elevation -90 to 90; below the horizon the line of sight ends on the lit ground. ``altitude_km`` 0 to 50.
+        Raises InputError.
+        """
+        view = solar_elevation_deg, view_elevation_deg, relative_azimuth_deg, altitude_km
+        return self.single(*view) + self.multiple(*view)
+
+    def single(
+        self, solar_elevation_deg: ArrayLike, view_elevation_deg: ArrayLike, relative_azimuth_deg: ArrayLike, altitude_km: float = 0.0
+    ) -> Array:
+        """The part of ``stokes`` scattered once from the beam."""
+        shape, lines = _lines(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
+        stokes = self._station(altitude_km).single(lines, self.air.depolarisation)
+        return stokes.reshape(*shape, *stokes.shape[1:])
+
+    def multiple(
+        self, solar_elevation_deg: ArrayLike, view_elevation_deg: ArrayLike, relative_azimuth_deg: ArrayLike, altitude_km: float = 0.0
+    ) -> Array:
+        """The part of ``stokes`` scattered more than once or by the ground."""
+        shape, lines = _lines(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
+        station = self._station(altitude_km)
+        stokes = station.multiple(self.field, lines, self.air.depolarisation, self.air.ground_albedo)
+        return stokes.reshape(*shape, *stokes.shape[1:])
+
+    def beam(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
+        """Direct transmission from the sun, shape (..., wavelength); 0 where the planet hides it."""
+        elevation = within("solar elevation", solar_elevation_deg, LOWEST_SUN_DEG, 90)
+        station = self._station(altitude_km)
+        return beam.transmission(station.shells, station.start, np.sin(np.radians(elevation)))
+
+    def ground_irradiance(self, solar_elevation_deg: ArrayLike) -> tuple[Array, Array]:
+        """Diffuse and direct irradiance of the horizontal ground, each (..., wavelength)."""
+        elevation = within("solar elevation", solar_elevation_deg, LOWEST_SUN_DEG, 90)
+        sine = np.sin(np.radians(elevation))
+        direct = np.maximum(sine, 0)[..., None] * self.beam(elevation)
+        multiple = ground_light(self.field, self.field.scattered_ground, sine)
+        return self.single_irradiance(elevation) + multiple, direct
+
+    def single_irradiance(self, solar_elevation_deg: ArrayLike) -> Array:
+        """The part of the ground's diffuse irradiance scattered once, (..., wavelength)."""
+        elevation = within("solar elevation", solar_elevation_deg, LOWEST_SUN_DEG, 90)
+        coefficients = dipole.molecular_coefficients(self.air.depolarisation)
+        fan = Fan(self.ground.shells, self.grid, 0)
+        once = first_order(self.ground.table, fan, np.radians(90 - elevation.ravel()), *coefficients)
+        return once.irradiance.reshape(*elevation.shape, -1)
+
+    def _station(self, altitude_km: float) -> Station:
+        altitude = float(within("altitude", altitude_km, 0, HIGHEST_OBSERVER_KM, "km"))
+        boundaries = self.ground.shells.altitude_km
+        if altitude in boundaries:
+            return Station(self.ground.shells, self.ground.table, int(np.searchsorted(boundaries, altitude)))
+        shells = Shells.of(self.air, np.sort(np.append(boundaries, altitude)))
+        return Station(shells, SunTable.of(shells), int(np.searchsorted(shells.altitude_km, altitude)))
+
+
+def within(name: str, value: ArrayLike, low: float, high: float, unit: str = "°") -> Array:
+    """``value`` as an array of floats; InputError if any lies outside ``low`` to ``high`` or is not a number."""
+    array = np.asarray(value, dtype=float)
+    bad = ~((array >= low) & (array <= high))
+    if bad.any():
+        raise InputError(f"{name} is {array[bad].flat[0]:g}{unit}, accepted: {low:g}{unit} to {high:g}{unit}")
+    return array
+
+
+def _lines(solar_elevation_deg: ArrayLike, view_elevation_deg: ArrayLike, relative_azimuth_deg: ArrayLike) -> tuple[tuple[int, ...], Lines]:
+    angles = np.broadcast_arrays(
+        within("solar elevation", solar_elevation_deg, LOWEST_SUN_DEG, 90),
+        within("view elevation", view_elevation_deg, -90, 90),
+        within("relative azimuth", relative_azimuth_deg, -360, 360),
+    )
+    sun, view, azimuth = (angle.ravel() for angle in angles)
+    return angles[0].shape, Lines(np.radians(90 - sun), np.sin(np.radians(view)), np.radians(azimuth))
