@@ -1,0 +1,136 @@
+"""What the commands print: a reading and the checks, aligned for the eye or as JSON. No number is made here."""
+
+import json
+import math
+from collections.abc import Callable, Mapping, Sequence
+from functools import partial
+from typing import Any
+
+import numpy as np
+
+from skychart.charts.columns import SPACE_TITLES
+from skychart.charts.numbers import fixed, significant
+from skychart.charts.reading import Reading
+from skychart.checks.check import Check
+
+NONE = "none"
+_READING_DIGITS = 6
+_CHECK_DIGITS = 10
+_READING_DECIMALS = {
+    "xy": 5,
+    "uv_prime": 5,
+    "cct_k": 0,
+    "duv": 5,
+    "polarisation_degree": 4,
+    "polarisation_angle_deg": 2,
+}
+
+
+def reading_json(reading: Reading) -> str:
+    """A single reading as one JSON object, keys in their fixed order, null where there is no value."""
+    return _json({key: _plain(value, _rounding_of(key)) for key, value in vars(reading).items()})
+
+
+def reading_text(reading: Reading) -> str:
+    """A single reading as an aligned list with units."""
+    rows = [
+        ("atmosphere", reading.atmosphere),
+        ("sun", f"{reading.solar_elevation_deg:g}° above the horizon, geometric"),
+        ("view", f"{reading.view_elevation_deg:g}° up, {reading.relative_azimuth_deg:g}° from the sun's azimuth"),
+        ("luminance", f"{significant(float(reading.luminance_cd_m2), 5)} cd/m²"),
+        ("X, Y, Z", f"{_row(reading.XYZ, significant, 5)} cd/m²"),
+        ("x, y", _row(reading.xy, fixed, 4)),
+        ("u′, v′", _row(reading.uv_prime, fixed, 4)),
+        ("colour temperature", _temperature(reading)),
+        ("polarisation", _polarisation(reading)),
+        *((f"linear {title}", _rgb(reading, space)) for space, title in SPACE_TITLES.items()),
+        ("sRGB code", f"{reading.srgb_hex}, where #ffffff is a level white card in this light"),
+    ]
+    width = max(len(head) for head, _ in rows)
+    return "".join(f"{head:<{width}}  {value}\n" for head, value in rows)
+
+
+def checks_json(checks: Sequence[Check]) -> str:
+    """All checks as a JSON list of objects, null where there is no value."""
+    rows = [{**vars(check), "difference": check.difference, "passed": check.passed} for check in checks]
+    return _json(_plain(rows, partial(_to_digits, digits=_CHECK_DIGITS)))
+
+
+def checks_text(checks: Sequence[Check]) -> str:
+    """All checks, topic by topic in aligned columns, and a last line that counts them."""
+    heads = ("", "published", "computed", "difference", "accepted")
+    cells = [_check_cells(check) for check in checks]
+    widths = [max(map(len, column)) for column in zip(heads, *cells, strict=True)]
+    lines = [_aligned(heads, widths)]
+    topic = None
+    for check, row in zip(checks, cells, strict=True):
+        if check.topic != topic:
+            topic = check.topic
+            lines += ["", topic]
+        lines.append(f"{_aligned(row, widths)}  {check.quantity}, {check.conditions} [{check.source}]")
+    failed = sum(not check.passed for check in checks)
+    lines += ["", f"{len(checks)} published values, {len(checks) - failed} met, {failed} missed"]
+    return "".join(f"{line}\n" for line in lines)
+
+
+def _check_cells(check: Check) -> tuple[str, ...]:
+    unit = "" if check.unit == "1" else f" {check.unit}"
+    accepted = f"{100 * check.tolerance:.3g} %" if check.relative else f"{check.tolerance:.3g}{unit}"
+    difference = f"{100 * check.difference:+.2g} %" if check.relative else f"{check.difference:+.2g}{unit}"
+    verdict = "met" if check.passed else "MISSED"
+    return verdict, f"{check.published:.6g}{unit}", f"{check.computed:.6g}{unit}", difference, f"±{accepted}"
+
+
+def _aligned(cells: Sequence[str], widths: Sequence[int]) -> str:
+    first, *rest = (f"{cell:>{width}}" for cell, width in zip(cells, widths, strict=True))
+    return "  ".join([f"{first.strip():<{widths[0]}}", *rest])
+
+
+def _temperature(reading: Reading) -> str:
+    if math.isnan(reading.cct_k):
+        return f"{NONE} (beyond 100000 K, or more than 0.05 away from the Planckian locus)"
+    return f"{significant(float(reading.cct_k), 4)} K, Duv {reading.duv:+.4f}"
+
+
+def _polarisation(reading: Reading) -> str:
+    if math.isnan(reading.polarisation_angle_deg):
+        return NONE
+    return (
+        f"{100 * reading.polarisation_degree:.1f} %, electric vector {reading.polarisation_angle_deg:.0f}° from level"
+    )
+
+
+def _rgb(reading: Reading, space: str) -> str:
+    outside = "" if reading.in_gamut[space] else "  out of gamut"
+    return f"{_row(reading.rgb[space], significant, 5)}{outside}"
+
+
+def _row(values: np.ndarray, write: Callable[[float, int], str], digits: int) -> str:
+    return "  ".join(write(float(value), digits) for value in values)
+
+
+def _json(value: Any) -> str:
+    return json.dumps(value, indent=2, allow_nan=False) + "\n"
+
+
+def _plain(value: Any, rounding: Callable[[float], float]) -> Any:
+    """`value` in the types of JSON; numbers rounded, None for what is no finite number."""
+    if isinstance(value, np.ndarray | np.generic):
+        return _plain(value.tolist(), rounding)
+    if isinstance(value, Mapping):
+        return {key: _plain(entry, rounding) for key, entry in value.items()}
+    if isinstance(value, list | tuple):
+        return [_plain(entry, rounding) for entry in value]
+    if isinstance(value, float):
+        return rounding(value) + 0.0 if math.isfinite(value) else None
+    return value
+
+
+def _rounding_of(key: str) -> Callable[[float], float]:
+    if key in _READING_DECIMALS:
+        return partial(round, ndigits=_READING_DECIMALS[key])
+    return partial(_to_digits, digits=_READING_DIGITS)
+
+
+def _to_digits(value: float, digits: int) -> float:
+    return float(f"{value:.{digits}g}")
