@@ -2,8 +2,8 @@
 
 import json
 import math
-from collections.abc import Callable, Mapping, Sequence
-from functools import partial
+from collections.abc import Callable, Sequence
+from dataclasses import asdict
 from typing import Any
 
 import numpy as np
@@ -12,23 +12,14 @@ from skychart.charts.columns import SPACE_TITLES
 from skychart.charts.numbers import fixed, significant
 from skychart.charts.reading import Reading
 from skychart.checks.check import Check
+from skychart.export.tables import plain
 
 NONE = "none"
-_READING_DIGITS = 6
-_CHECK_DIGITS = 10
-_READING_DECIMALS = {
-    "xy": 5,
-    "uv_prime": 5,
-    "cct_k": 0,
-    "duv": 5,
-    "polarisation_degree": 4,
-    "polarisation_angle_deg": 2,
-}
 
 
 def reading_json(reading: Reading) -> str:
     """A single reading as one JSON object, keys in their fixed order, null where there is no value."""
-    return _json({key: _plain(value, _rounding_of(key)) for key, value in vars(reading).items()})
+    return _json(plain(asdict(reading)))
 
 
 def reading_text(reading: Reading) -> str:
@@ -51,9 +42,18 @@ def reading_text(reading: Reading) -> str:
 
 
 def checks_json(checks: Sequence[Check]) -> str:
-    """All checks as a JSON list of objects, null where there is no value."""
-    rows = [{**vars(check), "difference": check.difference, "passed": check.passed} for check in checks]
-    return _json(_plain(rows, partial(_to_digits, digits=_CHECK_DIGITS)))
+    """All checks as a JSON list of objects, numbers with all their digits, null where there is no value."""
+    return _json(
+        [
+            {
+                **asdict(check),
+                "computed": _finite_or_none(check.computed),
+                "difference": _finite_or_none(check.difference),
+                "passed": bool(check.passed),
+            }
+            for check in checks
+        ]
+    )
 
 
 def checks_text(checks: Sequence[Check]) -> str:
@@ -76,7 +76,7 @@ def checks_text(checks: Sequence[Check]) -> str:
 def _check_cells(check: Check) -> tuple[str, ...]:
     unit = "" if check.unit == "1" else f" {check.unit}"
     accepted = f"{100 * check.tolerance:.3g} %" if check.relative else f"{check.tolerance:.3g}{unit}"
-    difference = f"{100 * check.difference:+.2g} %" if check.relative else f"{check.difference:+.2g}{unit}"
+    difference = f"{100 * check.difference:+.2f} %" if check.relative else f"{check.difference:+.2g}{unit}"
     verdict = "met" if check.passed else "MISSED"
     return verdict, f"{check.published:.6g}{unit}", f"{check.computed:.6g}{unit}", difference, f"±{accepted}"
 
@@ -95,14 +95,13 @@ def _temperature(reading: Reading) -> str:
 def _polarisation(reading: Reading) -> str:
     if math.isnan(reading.polarisation_angle_deg):
         return NONE
-    return (
-        f"{100 * reading.polarisation_degree:.1f} %, electric vector {reading.polarisation_angle_deg:.0f}° from level"
-    )
+    degree, angle = float(reading.polarisation_degree), float(reading.polarisation_angle_deg)
+    return f"{fixed(100 * degree, 1)} %, electric vector {fixed(angle, 0)}° from level"
 
 
 def _rgb(reading: Reading, space: str) -> str:
-    outside = "" if reading.in_gamut[space] else "  out of gamut"
-    return f"{_row(reading.rgb[space], significant, 5)}{outside}"
+    outside = "" if reading.in_gamut[space] else "  (out of gamut)"
+    return f"{_row(reading.rgb[space], significant, 5)} cd/m²{outside}"
 
 
 def _row(values: np.ndarray, write: Callable[[float, int], str], digits: int) -> str:
@@ -110,27 +109,8 @@ def _row(values: np.ndarray, write: Callable[[float, int], str], digits: int) ->
 
 
 def _json(value: Any) -> str:
-    return json.dumps(value, indent=2, allow_nan=False) + "\n"
+    return json.dumps(value, indent=2, allow_nan=False, default=np.generic.item) + "\n"
 
 
-def _plain(value: Any, rounding: Callable[[float], float]) -> Any:
-    """`value` in the types of JSON; numbers rounded, None for what is no finite number."""
-    if isinstance(value, np.ndarray | np.generic):
-        return _plain(value.tolist(), rounding)
-    if isinstance(value, Mapping):
-        return {key: _plain(entry, rounding) for key, entry in value.items()}
-    if isinstance(value, list | tuple):
-        return [_plain(entry, rounding) for entry in value]
-    if isinstance(value, float):
-        return rounding(value) + 0.0 if math.isfinite(value) else None
-    return value
-
-
-def _rounding_of(key: str) -> Callable[[float], float]:
-    if key in _READING_DECIMALS:
-        return partial(round, ndigits=_READING_DECIMALS[key])
-    return partial(_to_digits, digits=_READING_DIGITS)
-
-
-def _to_digits(value: float, digits: int) -> float:
-    return float(f"{value:.{digits}g}")
+def _finite_or_none(value: float) -> float | None:
+    return float(value) if math.isfinite(value) else None
