@@ -1,0 +1,1 @@
+"""What a page shows, as frozen dataclasses of finished numbers."""

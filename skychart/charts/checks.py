@@ -1,0 +1,192 @@
+"""Methods page: published values beside computed ones, light through the day beside measurements, and sources."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from skychart.charts.numbers import fixed, significant, spaced
+from skychart.charts.survey import Survey, elevation_index
+from skychart.checks.check import Check
+from skychart.checks.illuminance import usno1987_illuminance
+from skychart.checks.twilight import koomen1952_zenith_luminance
+from skychart.data.tables import load_table
+
+_FIELDS = ("Quantity", "Source", "Citation", "Licence/terms", "Processing")
+_RUNTIME_TABLES = (
+    "solar_tsis1_hsrs_v2_1nm",
+    "us76_density_profile",
+    "atmosphere_profiles_afgl",
+    "ozone_cross_section_serdyuchenko_1nm",
+)
+_SITES = (("maryland", "measured, Maryland, 30 m"), ("sacramento_peak", "measured, Sacramento Peak, 2800 m"))
+_DIGITS = 4
+
+
+@dataclass(frozen=True)
+class CheckRow:
+    """One check, written for reading; `verdict` is “met” or “missed”."""
+
+    quantity: str
+    conditions: str
+    source: str
+    published: str
+    computed: str
+    difference: str
+    tolerance: str
+    reason: str
+    unit: str
+    verdict: str
+
+
+@dataclass(frozen=True)
+class Topic:
+    """Checks of one topic, with an anchor and how many are met."""
+
+    title: str
+    anchor: str
+    rows: tuple[CheckRow, ...]
+    met: int
+
+
+@dataclass(frozen=True)
+class Provenance:
+    """A table this build read: its name and the lines of its header, as (field, text)."""
+
+    name: str
+    lines: tuple[tuple[str, str], ...]
+
+
+@dataclass(frozen=True)
+class MeasuredLight:
+    """Measured points of one kind, with a name."""
+
+    title: str
+    solar_elevation_deg: np.ndarray
+    values: np.ndarray
+
+
+@dataclass(frozen=True)
+class LightCourse:
+    """Illuminance of level ground [lx] and luminance of the zenith [cd m⁻²] by sun elevation, and measurements."""
+
+    solar_elevation_deg: np.ndarray
+    illuminance_lx: np.ndarray
+    zenith_cd_m2: np.ndarray
+    published_illuminance: MeasuredLight
+    measured_zenith: tuple[MeasuredLight, ...]
+
+
+@dataclass(frozen=True)
+class LightRow:
+    """One sun of the comparison of illuminance, written for reading."""
+
+    label: str
+    computed: str
+    published: str
+    ratio: str
+
+
+@dataclass(frozen=True)
+class Methods:
+    """Everything the methods page shows that is not prose."""
+
+    topics: tuple[Topic, ...]
+    total: int
+    met: int
+    course: LightCourse
+    light_rows: tuple[LightRow, ...]
+    provenance: tuple[Provenance, ...]
+
+
+def methods(checks: Sequence[Check], survey: Survey) -> Methods:
+    """The page's data from the checks and from the survey of the first atmosphere."""
+    course = _course(survey)
+    return Methods(
+        topics=_topics(checks),
+        total=len(checks),
+        met=sum(check.passed for check in checks),
+        course=course,
+        light_rows=_light_rows(course),
+        provenance=tuple(_provenance(name) for name in _RUNTIME_TABLES),
+    )
+
+
+def _topics(checks: Sequence[Check]) -> tuple[Topic, ...]:
+    """Topics in the order of their first check."""
+    titles = list(dict.fromkeys(check.topic for check in checks))
+    return tuple(
+        Topic(title, f"topic-{number}", tuple(_row(check) for check in own), sum(check.passed for check in own))
+        for number, title in enumerate(titles, start=1)
+        for own in [[check for check in checks if check.topic == title]]
+    )
+
+
+def _row(check: Check) -> CheckRow:
+    decimals = _decimals(check)
+    return CheckRow(
+        quantity=check.quantity,
+        conditions=check.conditions,
+        source=check.source,
+        published=spaced(_value(check.published, decimals)),
+        computed=spaced(_value(check.computed, decimals)),
+        difference=_difference(check),
+        tolerance=f"{100 * check.tolerance:.2g} %" if check.relative else spaced(significant(check.tolerance, 2)),
+        reason=check.tolerance_reason,
+        unit="" if check.unit == "1" else check.unit,
+        verdict="met" if check.passed else "missed",
+    )
+
+
+def _decimals(check: Check) -> int | None:
+    """Decimals that show a tenth of the tolerance; None where a number is written with significant digits."""
+    size = check.tolerance * abs(check.published) if check.relative else check.tolerance
+    if max(abs(check.published), abs(check.computed)) >= 1e6 or size < 1e-7:
+        return None
+    return int(np.clip(1 - np.floor(np.log10(size)), 0, 8))
+
+
+def _value(value: float, decimals: int | None) -> str:
+    return significant(value, _DIGITS) if decimals is None else fixed(value, decimals)
+
+
+def _difference(check: Check) -> str:
+    if np.isnan(check.difference):
+        return spaced("")
+    text = f"{100 * check.difference:.2g} %" if check.relative else significant(check.difference, 2)
+    return spaced(text) if text.startswith("-") else f"+{text}"
+
+
+def _course(survey: Survey) -> LightCourse:
+    suns = survey.solar_elevation_deg
+    low, high = float(suns.min()), float(suns.max())
+    fine = np.linspace(low, high, 205)
+    measured = [(title, *koomen1952_zenith_luminance(site)) for site, title in _SITES]
+    return LightCourse(
+        solar_elevation_deg=suns,
+        illuminance_lx=np.pi * survey.card_XYZ[:, 1],
+        zenith_cd_m2=survey.stokes_XYZ[:, elevation_index(90), 0, 0, 1],
+        published_illuminance=MeasuredLight("published, USNO Circular 171", fine, usno1987_illuminance(fine)),
+        measured_zenith=tuple(
+            MeasuredLight(title, at[at >= low], values[at >= low]) for title, at, values in measured
+        ),
+    )
+
+
+def _light_rows(course: LightCourse) -> tuple[LightRow, ...]:
+    published = usno1987_illuminance(course.solar_elevation_deg)
+    rows = zip(course.solar_elevation_deg, course.illuminance_lx, published, strict=True)
+    return tuple(
+        LightRow(
+            label=spaced(f"{sun:g}"),
+            computed=spaced(significant(float(ours), 3)),
+            published=spaced(significant(float(theirs), 3)),
+            ratio=fixed(float(ours / theirs), 2),
+        )
+        for sun, ours, theirs in rows
+    )
+
+
+def _provenance(name: str) -> Provenance:
+    pairs = (line.partition(":") for line in load_table(name).header)
+    return Provenance(name, tuple((field, text.strip()) for field, _, text in pairs if field in _FIELDS))

@@ -1,0 +1,178 @@
+"""Elevation sheet: one atmosphere at one elevation of the sun."""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from skychart.charts.columns import Column, NumberTable, number_table
+from skychart.charts.curves import (
+    Chromaticities,
+    Polarisation,
+    PrincipalPlane,
+    Spectra,
+    polarisation_map,
+    principal_plane,
+    spectra,
+)
+from skychart.charts.exposure import Exposure, Swatch, exposures, swatches
+from skychart.charts.ground import Ground, ground
+from skychart.charts.numbers import degrees, fixed, signed_stem, significant, spaced
+from skychart.charts.reading import Reading, read_colours
+from skychart.charts.survey import Survey, azimuth_index, elevation_index
+from skychart.colour.differences import uv_prime
+
+TABLE_ELEVATION_DEG = (90.0, 75.0, 60.0, 45.0, 30.0, 20.0, 10.0, 5.0, 2.0, 0.0)
+TABLE_AZIMUTH_DEG = (0.0, 15.0, 30.0, 45.0, 60.0, 90.0, 120.0, 150.0, 180.0)
+LABELS = (
+    Column("view_elevation_deg", "View elevation", "°", ""),
+    Column("relative_azimuth_deg", "Azimuth from the sun", "°", ""),
+)
+DEEP_TWILIGHT_DEG = -6.0
+
+
+@dataclass(frozen=True)
+class Block:
+    """A block of the swatch table: its colour, the lines printed in it, its row and its name in words."""
+
+    swatch: Swatch
+    lines: tuple[str, ...]
+    anchor: str
+    title: str
+    span: int = 1
+
+
+@dataclass(frozen=True)
+class BlockRow:
+    """Blocks of one view elevation, azimuth from the sun to the right."""
+
+    label: str
+    blocks: tuple[Block, ...]
+
+
+@dataclass(frozen=True)
+class Rendering:
+    """How one picture is shown, in words; `ink` reads on its middle."""
+
+    exposure: Exposure
+    white: str
+    note: str
+    ink: str
+
+
+@dataclass(frozen=True)
+class Sheet:
+    """Everything an elevation sheet shows. `sky_XYZ` [cd m⁻²] (view elevation, azimuth, XYZ) is for the pictures."""
+
+    atmosphere: str
+    stem: str
+    solar_elevation_deg: float
+    label: str
+    ground: Ground
+    renderings: tuple[Rendering, ...]
+    azimuth_labels: tuple[str, ...]
+    block_rows: tuple[BlockRow, ...]
+    over_range: int
+    table: NumberTable
+    readings: Reading
+    sky_XYZ: np.ndarray
+    spectra: Spectra
+    chromaticities: Chromaticities
+    principal_plane: PrincipalPlane
+    polarisation: Polarisation
+    deep_twilight: bool
+
+
+def sheet_stem(solar_elevation_deg: float) -> str:
+    """File stem of the sheet of a sun elevation [deg]: `sun+02`."""
+    return signed_stem("sun", solar_elevation_deg)
+
+
+def elevation_sheet(survey: Survey, sun: int) -> Sheet:
+    """The sheet of the `sun`-th elevation of a survey."""
+    elevation = float(survey.solar_elevation_deg[sun])
+    shown = exposures(survey.sky_XYZ[sun], survey.card_XYZ[sun])
+    views = [(view, azimuth) for view in TABLE_ELEVATION_DEG for azimuth in _azimuths(view)]
+    picks = tuple(zip(*((elevation_index(v), azimuth_index(a)) for v, a in views), strict=True))
+    stokes = survey.stokes_XYZ[sun][picks]
+    view_deg, azimuth_deg = (np.array(axis) for axis in zip(*views, strict=True))
+    card = np.full(len(views), survey.card_XYZ[sun, 1])
+    readings, colours = read_colours(
+        survey.air.name, np.full(len(views), elevation), view_deg, azimuth_deg, stokes, card
+    )
+    colour_swatches = swatches(readings.XYZ, shown[0])
+    anchors = [f"e{view:02.0f}a{azimuth:03.0f}" for view, azimuth in views]
+    labels = [(f"{view:g}", f"{azimuth:g}") for view, azimuth in views]
+    hexes = [swatch.hex for swatch in colour_swatches]
+    return Sheet(
+        atmosphere=survey.air.name,
+        stem=sheet_stem(elevation),
+        solar_elevation_deg=elevation,
+        label=degrees(elevation),
+        ground=ground(survey, sun),
+        renderings=tuple(_rendering(exposure, survey.stokes_XYZ[sun, :, :, 0]) for exposure in shown),
+        azimuth_labels=tuple(degrees(azimuth) for azimuth in TABLE_AZIMUTH_DEG),
+        block_rows=_block_rows(views, readings, colour_swatches, anchors),
+        over_range=int(shown[0].over_range(readings.XYZ).sum()),
+        table=number_table(LABELS, anchors, labels, readings, colours, hexes),
+        readings=readings,
+        sky_XYZ=survey.stokes_XYZ[sun, :, :, 0],
+        spectra=spectra(survey, sun),
+        chromaticities=Chromaticities(readings.uv_prime, tuple(hexes), sun_uv(survey, sun)),
+        principal_plane=principal_plane(survey, sun),
+        polarisation=polarisation_map(survey, sun),
+        deep_twilight=elevation <= DEEP_TWILIGHT_DEG,
+    )
+
+
+def sun_uv(survey: Survey, sun: int) -> np.ndarray | None:
+    """Chromaticity u'v' of the direct sun, None while it gives no light."""
+    return uv_prime(survey.beam_XYZ[sun]) if survey.sun_XYZ[sun, 1] > 0 else None
+
+
+def block(reading_index: int, readings: Reading, swatch: Swatch, anchor: str, title: str, span: int = 1) -> Block:
+    """A block that prints luminance and chromaticity."""
+    luminance = spaced(significant(float(readings.luminance_cd_m2[reading_index]), 3))
+    x, y = (fixed(float(value), 3).removeprefix("0") for value in readings.xy[reading_index])
+    return Block(swatch, (luminance, f"{x} {y}"), anchor, f"{title}: {luminance} cd/m², x {x}, y {y}", span)
+
+
+def rendering_note(key: str) -> str:
+    """What an exposure is for."""
+    return {
+        "own": "The mean sky is as bright as the grey around it. Unadapted, against D65.",
+        "card": "A level white card lit by this sun and sky is display white, in brightness and in colour.",
+        "fixed": "The same scale on every sheet. Unadapted, against D65.",
+    }[key]
+
+
+def _azimuths(view_elevation_deg: float) -> tuple[float, ...]:
+    """The zenith has no azimuth: it is one block."""
+    return (0.0,) if view_elevation_deg == 90 else TABLE_AZIMUTH_DEG
+
+
+def _block_rows(
+    views: list[tuple[float, float]], readings: Reading, colours: tuple[Swatch, ...], anchors: list[str]
+) -> tuple[BlockRow, ...]:
+    rows = []
+    for view in TABLE_ELEVATION_DEG:
+        blocks = [
+            block(i, readings, colours[i], anchors[i], _title(*views[i]), len(TABLE_AZIMUTH_DEG) if view == 90 else 1)
+            for i in range(len(views))
+            if views[i][0] == view
+        ]
+        rows.append(BlockRow(degrees(view), tuple(blocks)))
+    return tuple(rows)
+
+
+def _title(view: float, azimuth: float) -> str:
+    return "Zenith" if view == 90 else f"{view:g}° up, {azimuth:g}° from the sun"
+
+
+def _rendering(exposure: Exposure, sky_XYZ: np.ndarray) -> Rendering:
+    screen = exposure.screen(sky_XYZ)
+    note = rendering_note(exposure.key)
+    if screen.max() < 0.5 / 255:
+        note = "Every direction is darker than the first step of an 8-bit screen: black on this scale."
+    white = f"{spaced(significant(exposure.display_white_cd_m2, 3))} cd/m²"
+    middle = float(np.median(screen))
+    return Rendering(exposure, white, note, "dark" if middle > 0.45 else "light")

@@ -1,0 +1,112 @@
+"""All that the pages of one atmosphere show, asked from the sky once.
+
+The grid of view directions serves the pictures, which interpolate on it; the swatch tables and the direction
+sheets take some of its nodes, so that a picture and a table never disagree.
+"""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from skychart.charts.reading import Sky
+from skychart.colour.integrate import tristimulus_matrix
+from skychart.config import AirSettings
+from skychart.sky.sun import solar_irradiance
+
+VIEW_ELEVATION_DEG = np.array(
+    [0, 0.5, 1, 2, 3, 4, 5, 6, 8, 10, 12, 15, 20, 25, 30, 35, 40, 45, 50, 55, 60, 65, 70, 75, 80, 85, 90], float
+)
+RELATIVE_AZIMUTH_DEG = np.arange(0.0, 181.0, 7.5)
+
+
+@dataclass(frozen=True)
+class Direction:
+    """A view direction that has a sheet of its own, or a spectrum on every sheet."""
+
+    stem: str
+    title: str
+    view_elevation_deg: float
+    relative_azimuth_deg: float
+
+
+DIRECTIONS = (
+    Direction("view-zenith", "Zenith", 90, 0),
+    Direction("view-45-toward", "45° up, toward the sun", 45, 0),
+    Direction("view-45-beside", "45° up, beside the sun", 45, 90),
+    Direction("view-45-away", "45° up, away from the sun", 45, 180),
+    Direction("view-02-toward", "2° up, toward the sun", 2, 0),
+    Direction("view-02-beside", "2° up, beside the sun", 2, 90),
+    Direction("view-02-away", "2° up, away from the sun", 2, 180),
+)
+
+
+@dataclass(frozen=True)
+class Survey:
+    """A sky at every sun elevation and view direction, as tristimulus values and a few spectra.
+
+    `stokes_XYZ` [cd m⁻²] (sun, view elevation, azimuth, Stokes I Q U, XYZ); `sky_XYZ` and `sun_XYZ` [lx] of the
+    level ground (sun, XYZ); `beam_XYZ` [lx] of a plane facing the sun (sun, XYZ); `radiance`
+    [W m⁻² sr⁻¹ nm⁻¹] of `DIRECTIONS` (sun, direction, wavelength); `beam_irradiance` [W m⁻² nm⁻¹] of a plane
+    facing the sun (sun, wavelength), both on the sky's wavelengths with the solar spectrum averaged about each.
+    """
+
+    air: AirSettings
+    observer: str
+    solar_elevation_deg: np.ndarray
+    wavelength_nm: np.ndarray
+    stokes_XYZ: np.ndarray
+    sky_XYZ: np.ndarray
+    sun_XYZ: np.ndarray
+    beam_XYZ: np.ndarray
+    radiance: np.ndarray
+    beam_irradiance: np.ndarray
+
+    @property
+    def card_XYZ(self) -> np.ndarray:
+        """Luminance [cd m⁻²] of a level, perfectly white card, as (sun, XYZ)."""
+        return (self.sky_XYZ + self.sun_XYZ) / np.pi
+
+
+def survey(sky: Sky, solar_elevation_deg: tuple[float, ...], observer: str) -> Survey:
+    """Ask `sky` for every direction at every sun elevation [deg]."""
+    suns = np.array(solar_elevation_deg, float)
+    altitude = sky.settings.altitude_km
+    matrix = tristimulus_matrix(sky.wavelength_nm, observer)
+    stokes = sky.stokes(
+        suns[:, None, None], VIEW_ELEVATION_DEG[:, None], RELATIVE_AZIMUTH_DEG, altitude_km=altitude
+    )
+    diffuse, direct = sky.ground_irradiance(suns)
+    beam = sky.beam(suns, altitude_km=altitude)
+    solar = _solar_about(sky.wavelength_nm)
+    rows = [elevation_index(direction.view_elevation_deg) for direction in DIRECTIONS]
+    columns = [azimuth_index(direction.relative_azimuth_deg) for direction in DIRECTIONS]
+    return Survey(
+        air=sky.settings,
+        observer=observer,
+        solar_elevation_deg=suns,
+        wavelength_nm=sky.wavelength_nm,
+        stokes_XYZ=stokes @ matrix,
+        sky_XYZ=diffuse @ matrix,
+        sun_XYZ=direct @ matrix,
+        beam_XYZ=beam @ matrix,
+        radiance=stokes[:, rows, columns, 0] * solar,
+        beam_irradiance=beam * solar,
+    )
+
+
+def elevation_index(view_elevation_deg: float) -> int:
+    """Index of a view elevation on the survey's grid, which must hold it."""
+    return int(np.flatnonzero(view_elevation_deg == VIEW_ELEVATION_DEG)[0])
+
+
+def azimuth_index(relative_azimuth_deg: float) -> int:
+    """Index of a relative azimuth on the survey's grid, which must hold it."""
+    return int(np.flatnonzero(relative_azimuth_deg == RELATIVE_AZIMUTH_DEG)[0])
+
+
+def _solar_about(wavelength_nm: np.ndarray) -> np.ndarray:
+    """Solar irradiance [W m⁻² nm⁻¹] averaged over the spacing of the nodes, so that no line is met by chance."""
+    half = float(np.median(np.diff(wavelength_nm))) / 2
+    offsets = np.linspace(-half, half, 11)
+    weights = np.array([0.5, *[1.0] * 9, 0.5]) / 10
+    return solar_irradiance(wavelength_nm[:, None] + offsets) @ weights

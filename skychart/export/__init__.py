@@ -1,0 +1,1 @@
+"""Chart data in open file formats."""

@@ -1,0 +1,118 @@
+"""Build the site: solve each atmosphere, make all chart data, render sheets side by side, write once at the end."""
+
+import multiprocessing
+import os
+import signal
+import threading
+from collections.abc import Callable
+from concurrent.futures import Executor, Future, ProcessPoolExecutor, as_completed
+from dataclasses import dataclass, replace
+from pathlib import Path
+from typing import Any
+
+from skychart.charts.checks import methods
+from skychart.charts.direction import direction_sheet
+from skychart.charts.overview import overview
+from skychart.charts.sheet import elevation_sheet
+from skychart.charts.survey import DIRECTIONS, Survey, survey
+from skychart.checks import run_checks
+from skychart.config import Settings
+from skychart.pages.environment import static_files
+from skychart.pages.render import direction_files, methods_files, sheet_files, start_files
+from skychart.pages.site import Atlas, make_atlas
+from skychart.pages.write import swap_in
+from skychart.sky.spectral import solve_spectral
+
+
+@dataclass(frozen=True)
+class BuildReport:
+    """What a build wrote, and how many published values it met."""
+
+    out: Path
+    pages: int
+    files: int
+    size_bytes: int
+    checks: int
+    checks_met: int
+
+    def __str__(self) -> str:
+        size = f"{self.size_bytes / 1e6:.1f} MB"
+        met = f"{self.checks_met} of {self.checks} published values met"
+        return f"{self.out}: {self.pages} pages, {self.files} files, {size}; {met}"
+
+
+def build_site(settings: Settings, out: Path, jobs: int, progress: Callable[[str], None]) -> BuildReport:
+    """Write the site of `settings` to the folder `out` with `jobs` processes; nothing is written before all is ready.
+
+    `progress` is called with a line for each step. Raises OutputError if `out` may not be replaced.
+    """
+    settings = replace(settings, solar_elevations_deg=tuple(sorted(settings.solar_elevations_deg)))
+    atlas = make_atlas(settings)
+    files = static_files()
+    with _workers(jobs) as pool:
+        try:
+            checking = pool.submit(run_checks)
+            surveys = [_survey(settings, number, progress) for number in range(len(settings.atmospheres))]
+            rendering = [work for found in surveys for work in _submit_pages(pool, atlas, found)]
+            for count, done in enumerate(as_completed(rendering), start=1):
+                files |= done.result()
+                progress(f"page {count} of {len(rendering)}")
+            progress("comparing with published values")
+            checks = checking.result()
+        except BaseException:
+            pool.shutdown(wait=False, cancel_futures=True)
+            raise
+    files |= methods_files(atlas, methods(checks, surveys[0]))
+    progress("writing")
+    swap_in(files, out)
+    return BuildReport(
+        out=out,
+        pages=sum(path.endswith(".html") for path in files),
+        files=len(files),
+        size_bytes=sum(map(len, files.values())),
+        checks=len(checks),
+        checks_met=sum(check.passed for check in checks),
+    )
+
+
+def _survey(settings: Settings, number: int, progress: Callable[[str], None]) -> Survey:
+    air = settings.atmospheres[number]
+    progress(f"{air.name}: solving")
+    sky = solve_spectral(air)
+    progress(f"{air.name}: looking in every direction")
+    return survey(sky, settings.solar_elevations_deg, settings.observer)
+
+
+def _submit_pages(pool: Executor, atlas: Atlas, found: Survey) -> list[Future[dict[str, bytes]]]:
+    """Every page of one atmosphere as work for the pool."""
+    suns = range(len(found.solar_elevation_deg))
+    return [
+        pool.submit(start_files, atlas, overview(found)),
+        *(pool.submit(sheet_files, atlas, elevation_sheet(found, sun)) for sun in suns),
+        *(pool.submit(direction_files, atlas, direction_sheet(found, view)) for view in DIRECTIONS),
+    ]
+
+
+def _workers(jobs: int) -> Executor:
+    """Fresh processes, the same way on every system; with one job the work is done here."""
+    if jobs == 1:
+        return _Here()
+    return ProcessPoolExecutor(jobs, multiprocessing.get_context("spawn"), _leave_with_parent)
+
+
+class _Here(Executor):
+    """Does each piece of work as it is handed in."""
+
+    def submit(self, task: Callable[..., Any], /, *arguments: Any, **named: Any) -> Future[Any]:
+        """A finished future of `task`; what the task raises is raised here."""
+        done: Future[Any] = Future()
+        done.set_result(task(*arguments, **named))
+        return done
+
+
+def _leave_with_parent() -> None:
+    """In a worker: leave interrupts to the parent, and end when it ends, however it does."""
+    signal.signal(signal.SIGINT, signal.SIG_IGN)
+    parent = multiprocessing.parent_process()
+    if parent is not None:
+        threading.Thread(target=lambda: (parent.join(), os._exit(1)), daemon=True).start()

@@ -1,0 +1,141 @@
+"""Figures of each kind of page: their file names, words and the functions that draw them."""
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from typing import Any
+
+from skychart.charts.checks import LightCourse
+from skychart.charts.direction import DirectionSheet
+from skychart.charts.sheet import Sheet
+from skychart.plots.chromaticity import SIZE_IN as CHROMATICITY_IN
+from skychart.plots.chromaticity import chromaticity_svg
+from skychart.plots.course import SIZE_IN as COURSE_IN
+from skychart.plots.course import course_svg
+from skychart.plots.light import SIZE_IN as LIGHT_IN
+from skychart.plots.light import light_svg
+from skychart.plots.polarisation import SIZE_IN as POLARISATION_IN
+from skychart.plots.polarisation import polarisation_svg
+from skychart.plots.principal_plane import SIZE_IN as PLANE_IN
+from skychart.plots.principal_plane import principal_plane_svg
+from skychart.plots.spectra import SIZE_IN as SPECTRA_IN
+from skychart.plots.spectra import spectra_svg
+
+_PIXELS_PER_INCH = 96
+
+
+@dataclass(frozen=True)
+class Figure:
+    """An image of a page: path in the site, size [CSS px] and words."""
+
+    path: str
+    title: str
+    caption: str
+    alt: str
+    width: int
+    height: int
+
+
+@dataclass(frozen=True)
+class _Plan:
+    suffix: str
+    draw: Callable[[Any], bytes]
+    size_in: tuple[float, float]
+    title: str
+    caption: str
+    alt: str
+
+
+_SPECTRA = _Plan(
+    "spectra",
+    spectra_svg,
+    SPECTRA_IN,
+    "Spectra",
+    "Five directions of the sky, and the sun on a plane facing it while it is up, each divided by its own value at "
+    "560 nm. Absolute values are in the JSON file.",
+    "Spectra of five sky directions and of the sun, relative to 560 nm",
+)
+_CHROMATICITY = _Plan(
+    "chromaticity",
+    chromaticity_svg,
+    CHROMATICITY_IN,
+    "Chromaticity",
+    "CIE 1976 u′v′ with gamut triangles and the daylight locus from 4000 K to 25 000 K; dots are the blocks, in their "
+    "own colours. The small diagram enlarges the part they lie in.",
+    "u prime v prime diagram with the blocks of this page, gamut triangles and the daylight locus",
+)
+_PLANE = _Plan(
+    "plane",
+    principal_plane_svg,
+    PLANE_IN,
+    "Principal plane",
+    "Luminance, chromaticity and degree of polarisation along the vertical through the sun. The degree passes zero at "
+    "the neutral points.",
+    "Luminance, u prime, v prime and degree of polarisation from the horizon below the sun over the zenith",
+)
+_POLARISATION = _Plan(
+    "polarisation",
+    polarisation_svg,
+    POLARISATION_IN,
+    "Polarisation",
+    "Whole sky, the sun’s azimuth down. Ticks lie along the electric vector and are as long as its degree; contours at "
+    "0.2, 0.4, 0.6 and 0.8.",
+    "All-sky map of the degree and direction of polarisation",
+)
+_COURSE = _Plan(
+    "course",
+    course_svg,
+    COURSE_IN,
+    "Through the day",
+    "Luminance, chromaticity and degree of polarisation over the geometric elevation of the sun.",
+    "Luminance, u prime, v prime and degree of polarisation over the elevation of the sun",
+)
+_TRACK = _Plan(
+    "chromaticity",
+    chromaticity_svg,
+    CHROMATICITY_IN,
+    "Chromaticity",
+    "CIE 1976 u′v′ with gamut triangles and the daylight locus from 4000 K to 25 000 K; a dot for each sun, joined in "
+    "their order.",
+    "u prime v prime diagram with the track of this direction through the day",
+)
+_LIGHT = _Plan(
+    "light",
+    light_svg,
+    LIGHT_IN,
+    "Computed and published",
+    "Above, sun and sky on level ground; below, the zenith, with the measurements of Koomen et al. 1952.",
+    "Illuminance of level ground and zenith luminance by sun elevation, computed and published",
+)
+
+
+def sheet_figures(chart: Sheet) -> tuple[tuple[Figure, ...], dict[str, bytes]]:
+    """Figures of an elevation sheet, and their files by path."""
+    data = (
+        (_SPECTRA, chart.spectra),
+        (_CHROMATICITY, chart.chromaticities),
+        (_PLANE, chart.principal_plane),
+        (_POLARISATION, chart.polarisation),
+    )
+    return _drawn(f"{chart.atmosphere}/{chart.stem}", data)
+
+
+def direction_figures(chart: DirectionSheet) -> tuple[tuple[Figure, ...], dict[str, bytes]]:
+    """Figures of a direction sheet, and their files by path."""
+    data = ((_COURSE, chart.course), (_TRACK, chart.chromaticities))
+    return _drawn(f"{chart.atmosphere}/{chart.direction.stem}", data)
+
+
+def light_figure(course: LightCourse) -> tuple[Figure, dict[str, bytes]]:
+    """The figure of the methods page, and its file."""
+    figures, files = _drawn("methods", ((_LIGHT, course),))
+    return figures[0], files
+
+
+def _drawn(stem: str, data: tuple[tuple[_Plan, Any], ...]) -> tuple[tuple[Figure, ...], dict[str, bytes]]:
+    figures, files = [], {}
+    for plan, chart in data:
+        path = f"{stem}-{plan.suffix}.svg"
+        width, height = (round(inches * _PIXELS_PER_INCH) for inches in plan.size_in)
+        figures.append(Figure(path, plan.title, plan.caption, plan.alt, width, height))
+        files[path] = plan.draw(chart)
+    return tuple(figures), files

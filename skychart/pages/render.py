@@ -1,0 +1,180 @@
+"""Each kind of page with all its files, from finished chart data: a mapping of path in the site to bytes."""
+
+import functools
+from collections.abc import Sequence
+from dataclasses import dataclass
+from itertools import groupby
+from typing import Any
+
+from jinja2 import Environment
+
+from skychart.charts.checks import Methods
+from skychart.charts.direction import DirectionSheet
+from skychart.charts.overview import DayBand, Overview
+from skychart.charts.sheet import Sheet
+from skychart.export.tables import readings_json, table_csv
+from skychart.pages.environment import environment, render
+from skychart.pages.figures import direction_figures, light_figure, sheet_figures
+from skychart.pages.site import METHODS_PATH, SITE_TITLE, Atlas, Link, describe_air, neighbours, sun_in_words
+from skychart.plots.picture import DOME_PIXELS, RIM_PIXELS, day_png, dome_png
+
+_DAY_COLUMN_PIXELS = 32
+_DAY_HEIGHT_PIXELS = 160
+_DOME_RADIUS = 100
+
+
+@dataclass(frozen=True)
+class Dome:
+    """Where the all-sky pictures of a sheet lie, and how they and the sun sit on a disc of radius 100."""
+
+    pictures: dict[str, str]
+    half: float
+    sun_y: float
+
+
+@dataclass(frozen=True)
+class BandImage:
+    """A band of the start page's picture."""
+
+    title: str
+    path: str
+    alt: str
+    width: int
+    height: int
+
+
+def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
+    """An elevation sheet."""
+    stem = f"{chart.atmosphere}/{chart.stem}"
+    ruler = atlas.ruler(chart.atmosphere, chart.solar_elevation_deg)
+    before, after = neighbours(ruler)
+    heading = sun_in_words(chart.solar_elevation_deg)
+    title = f"Sun {chart.label}, {chart.atmosphere}"
+    description = f"{heading}: colour, luminance and polarisation of the {chart.atmosphere} sky by direction."
+    page = atlas.page("sun", chart.atmosphere, f"{stem}.html", title, description, before, after)
+    figures, files = sheet_figures(chart)
+    pictures = {shown.exposure.key: f"{stem}-{shown.exposure.key}.png" for shown in chart.renderings}
+    for shown in chart.renderings:
+        files[pictures[shown.exposure.key]] = dome_png(chart.sky_XYZ, shown.exposure)
+    half = _DOME_RADIUS * DOME_PIXELS / (DOME_PIXELS - 2 * RIM_PIXELS)
+    sun_y = _DOME_RADIUS * (90 - chart.solar_elevation_deg) / 90
+    about = _about(atlas, chart.atmosphere) | {"solar_elevation_deg": chart.solar_elevation_deg}
+    exports, downloads = _exports(stem, title, about, chart.table, (chart.readings, chart.ground, chart.spectra))
+    context = {
+        "page": page,
+        "chart": chart,
+        "heading": heading,
+        "air": atlas.air(chart.atmosphere),
+        "switch": atlas.switch(chart.atmosphere, chart.stem),
+        "ruler": ruler,
+        "dome": Dome(pictures, round(half, 2), round(sun_y, 2)),
+        "figures": figures,
+        "downloads": downloads,
+    }
+    return {page.path: render(_pages(), "sheet.html", context), **files, **exports}
+
+
+def direction_files(atlas: Atlas, chart: DirectionSheet) -> dict[str, bytes]:
+    """A direction sheet."""
+    view = chart.direction
+    stem = f"{chart.atmosphere}/{view.stem}"
+    directions = atlas.directions(chart.atmosphere, view)
+    before, after = neighbours(directions)
+    title = f"{view.title}, {chart.atmosphere}"
+    description = f"{view.title}: colour, luminance and polarisation of the {chart.atmosphere} sky through the day."
+    page = atlas.page("view", chart.atmosphere, f"{stem}.html", title, description, before, after)
+    figures, files = direction_figures(chart)
+    about = _about(atlas, chart.atmosphere) | {
+        "view_elevation_deg": view.view_elevation_deg,
+        "relative_azimuth_deg": view.relative_azimuth_deg,
+    }
+    exports, downloads = _exports(stem, title, about, chart.table, (chart.readings,))
+    context = {
+        "page": page,
+        "chart": chart,
+        "air": atlas.air(chart.atmosphere),
+        "switch": atlas.switch(chart.atmosphere, view.stem),
+        "directions": directions,
+        "figures": figures,
+        "downloads": downloads,
+    }
+    return {page.path: render(_pages(), "direction.html", context), **files, **exports}
+
+
+def start_files(atlas: Atlas, chart: Overview) -> dict[str, bytes]:
+    """The start page of one atmosphere."""
+    name = chart.atmosphere
+    first = name == atlas.atmospheres[0]
+    title = SITE_TITLE if first else f"The day, {name}"
+    description = "Colour and brightness of the clear sky for every height of the sun, computed from scattering."
+    page = atlas.page("start", name, atlas.start_path(name), title, description)
+    files = {f"{name}/day-{band.key}.png": _band_png(chart, band) for band in chart.bands}
+    bands = [
+        BandImage(
+            band.title,
+            f"{name}/day-{band.key}.png",
+            f"{band.title}: the sky from horizon to zenith for suns from {chart.columns[0].label} "
+            f"to {chart.columns[-1].label}",
+            _DAY_COLUMN_PIXELS * len(chart.columns),
+            _DAY_HEIGHT_PIXELS,
+        )
+        for band in chart.bands
+    ]
+    context = {
+        "page": page,
+        "chart": chart,
+        "air": atlas.air(name),
+        "switch": atlas.switch(name, None),
+        "directions": atlas.directions(name, None),
+        "bands": bands,
+        "groups": [(group, len(list(heads))) for group, heads in groupby(chart.heads, lambda head: head.group)],
+    }
+    return {page.path: render(_pages(), "start.html", context), **files}
+
+
+def methods_files(atlas: Atlas, chart: Methods) -> dict[str, bytes]:
+    """The methods page."""
+    description = "What is computed, from which data, and every published value beside the computed one."
+    page = atlas.page("methods", atlas.atmospheres[0], METHODS_PATH, "Methods and checks", description)
+    figure, files = light_figure(chart.course)
+    airs = [(air.name, describe_air(air)) for air in atlas.settings.atmospheres]
+    context = {"page": page, "chart": chart, "figure": figure, "atmospheres": airs}
+    return {page.path: render(_pages(), "methods.html", context), **files}
+
+
+@functools.cache
+def _pages() -> Environment:
+    """One environment a process, so that each template is compiled once."""
+    return environment()
+
+
+def _band_png(chart: Overview, band: DayBand) -> bytes:
+    return day_png(band.XYZ, chart.exposures, _DAY_COLUMN_PIXELS, _DAY_HEIGHT_PIXELS)
+
+
+def _about(atlas: Atlas, atmosphere: str) -> dict[str, Any]:
+    """Where a file comes from, for its head."""
+    return {
+        "title": SITE_TITLE,
+        "version": atlas.version,
+        "atmosphere": atmosphere,
+        "air": atlas.air(atmosphere),
+        "observer": atlas.settings.observer,
+        "method": "multiple scattering with polarisation in a spherical atmosphere; geometric elevations",
+    }
+
+
+def _exports(
+    stem: str, title: str, about: dict[str, Any], table: Any, readings: Sequence[Any]
+) -> tuple[dict[str, bytes], tuple[Link, ...]]:
+    """CSV and JSON of a sheet, and the links to them."""
+    remarks = (
+        f"{SITE_TITLE}: {title}",
+        f"skychart {about['version']}; {about['air']}; {about['observer']}; {about['method']}",
+        "linear RGB is absolute: white at 1 cd/m2 is 1, 1, 1; srgb_hex has a level white card as display white",
+    )
+    files = {
+        f"{stem}.csv": table_csv(table, remarks),
+        f"{stem}.json": readings_json(about, *readings),
+    }
+    return files, (Link("CSV", f"{stem}.csv"), Link("JSON", f"{stem}.json"))

@@ -1,0 +1,1 @@
+"""Figures and pictures as bytes, drawn from chart data; no number is made here."""
