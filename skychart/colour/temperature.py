@@ -19,7 +19,7 @@ LOWEST_K = 1_000.0
 HIGHEST_K = 100_000.0
 LARGEST_DUV = 0.05
 
-_MIRED = np.arange(2.5, 1015, 2.5)  # 1e6 / T of the points that the locus is interpolated from
+_MIRED = np.arange(2.0, 1011, 2)  # 1e6 / T of the points that the locus is interpolated from
 _BLOCK = 8192  # colours compared with all those points at a time; bounds the memory
 
 
@@ -27,8 +27,8 @@ def cct_duv(XYZ: ArrayLike, observer: str = "cie-1931-2") -> tuple[np.ndarray, n
     """Correlated colour temperature [K] and Duv, both of shape (...), of tristimulus values of shape (..., 3).
 
     Both are nan where the notion has no meaning: temperature above 100 000 K (bluer than a black body ever gets, as
-    most of a clear sky is) or below 1000 K, |Duv| above 0.05, or no light. `observer`: the one that `XYZ` belongs to; the
-    locus is computed for it too, though the notion is standardised for CIE 1931 alone.
+    most of a clear sky is) or below 1000 K, |Duv| above 0.05, or no light. `observer` is the one that `XYZ` belongs to;
+    its locus is used, though the notion is standardised for CIE 1931 alone.
     """
     locus = _planckian_locus(observer)
     uv = uv_1960(XYZ)
