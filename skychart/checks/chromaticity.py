@@ -1,0 +1,137 @@
+"""Chromaticity of scattered light and of daylight on the horizontal, and colour temperatures of known whites.
+
+Sources: Judd, MacAdam & Wyszecki 1964 (daylight locus), CIE 015 (daylight illuminants), and limits that follow from
+formulas.
+"""
+
+import functools
+
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
+
+from skychart.checks.check import Check
+from skychart.checks.standard import StandardSky
+from skychart.colour.chromaticity import xyz_of_xy
+from skychart.colour.integrate import tristimulus_matrix
+from skychart.colour.observers import colour_matching_functions
+from skychart.colour.temperature import cct_duv
+from skychart.sky.air import rayleigh_cross_section
+
+TOPIC = "Chromaticity"
+
+_NODES_NM = np.arange(360.0, 831.0, 10.0)
+_SUNS_DEG = (60, 30, 10)
+_LOCUS_TOLERANCE = 0.006
+_WHITES = (  # key, chromaticity, published temperature, relative tolerance, its reason, source
+    ("illuminant-a", (0.44758, 0.40745), 2856.0, 5e-4, "chromaticity of five decimals",
+     "CIE illuminant A: 2856 K by definition"),
+    ("daylight-5000", (0.34574, 0.35867), 5000.0, 2e-3, "the locus is a fit; chromaticity of five decimals",
+     "CIE daylight locus at 5000 K (CIE 015; values confirmed in a second package)"),
+    ("daylight-6500", (0.31278, 0.32918), 6500.0, 2e-3, "the locus is a fit; chromaticity of five decimals",
+     "CIE daylight locus at 6500 K (CIE 015)"),
+    ("daylight-10000", (0.27880, 0.29197), 10000.0, 2e-3, "the locus is a fit; chromaticity of five decimals",
+     "CIE daylight locus at 10 000 K (CIE 015; values confirmed in a second package)"),
+    ("blue", (0.25, 0.25), 28793.0, 1e-3, "another interpolation of the same locus",
+     "Ohno 2013 method (regression value derived here with colour-science 0.4.7)"),
+)  # fmt: skip
+
+
+def checks(sky: StandardSky) -> tuple[Check, ...]:
+    """Limits of scattered light, daylight on the horizontal, and colour temperatures."""
+    return (*_scattered_limits(), *_daylight(sky), *_temperatures())
+
+
+def daylight_locus_y(x: ArrayLike) -> NDArray[np.float64]:
+    """Chromaticity y of the daylight locus at x (Judd, MacAdam & Wyszecki 1964)."""
+    x = np.asarray(x, dtype=float)
+    return 2.870 * x - 3.000 * x**2 - 0.275
+
+
+def _scattered_limits() -> list[Check]:
+    wavelength_nm, functions = colour_matching_functions("cie-1931-2")
+    matrix = tristimulus_matrix(_NODES_NM)
+    digits = "five printed digits, sums over 1 nm"
+    another_sun = "0.0020: the solar spectrum, which moves x of the sun itself by 0.0019 and y by 0.0005"
+    air = rayleigh_cross_section(_NODES_NM) @ matrix
+    limits = (
+        ("equal-energy", "equal-energy light scattered as λ⁻⁴", wavelength_nm**-4.0 @ functions, (0.23988, 0.23404),
+         "exact identity: a black body of infinite temperature (derived here)", 5e-5, digits),
+        ("sun-power-law", "sunlight scattered as λ⁻⁴", _NODES_NM**-4.0 @ matrix, (0.23442, 0.23422),
+         "ASTM E490 sun (derived here)", 0.0020, another_sun),
+        ("sun-air", "sunlight scattered once by thin air", air, (0.23280, 0.23156),
+         "ASTM E490 sun, cross-section of Bodhaine et al. 1999 equation 29 (derived here)", 0.0020, another_sun),
+    )  # fmt: skip
+    return [
+        Check(
+            key=f"chromaticity-{key}-{axis}",
+            topic=TOPIC,
+            quantity=f"Chromaticity {axis} of scattered light",
+            conditions=conditions,
+            source=source,
+            published=published[place],
+            computed=float(XYZ[place] / XYZ.sum()),
+            tolerance=tolerance,
+            tolerance_reason=reason,
+            unit="1",
+            relative=False,
+        )
+        for key, conditions, XYZ, published, source, tolerance, reason in limits
+        for place, axis in enumerate("xy")
+    ]
+
+
+def _daylight(sky: StandardSky) -> list[Check]:
+    XYZ = sky.horizontal_XYZ(np.array(_SUNS_DEG, dtype=float))
+    x, y = XYZ[:, 0] / XYZ.sum(axis=1), XYZ[:, 1] / XYZ.sum(axis=1)
+    cct, _ = cct_duv(XYZ)
+    locus = [
+        Check(
+            key=f"daylight-locus-{sun}",
+            topic=TOPIC,
+            quantity="Chromaticity y of daylight on the horizontal",
+            conditions=f"sun {sun}° up, at its x of {x[place]:.4f}; sun and sky without haze",
+            source="Judd, MacAdam & Wyszecki 1964, J. Opt. Soc. Am. 54, 1031, daylight locus at that x (abstract read)",
+            published=float(daylight_locus_y(x[place])),
+            computed=float(y[place]),
+            tolerance=_LOCUS_TOLERANCE,
+            tolerance_reason="the source states no spread; 0.006 was set before it was measured",
+            unit="1",
+            relative=False,
+        )
+        for place, sun in enumerate(_SUNS_DEG)
+    ]
+    temperature = [
+        Check(
+            key=f"daylight-temperature-{sun}",
+            topic=TOPIC,
+            quantity="Correlated colour temperature of daylight on the horizontal",
+            conditions=f"sun {sun}° up, sun and sky without haze",
+            source="common knowledge: 5500 to 6500 K by day (from memory, no source)",
+            published=6000.0,
+            computed=float(cct[place]),
+            tolerance=500.0,
+            tolerance_reason="the stated range",
+            unit="K",
+            relative=False,
+        )
+        for place, sun in enumerate(_SUNS_DEG[:2])
+    ]
+    return [*locus, *temperature]
+
+
+def _temperatures() -> list[Check]:
+    entry = functools.partial(
+        Check, topic=TOPIC, quantity="Correlated colour temperature", unit="K", relative=True
+    )  # fmt: skip
+    return [
+        entry(
+            key=f"temperature-{key}",
+            conditions=f"x {xy[0]}, y {xy[1]}",
+            source=source,
+            published=published,
+            computed=float(cct_duv(xyz_of_xy(np.array(xy)))[0]),
+            tolerance=tolerance,
+            tolerance_reason=reason,
+        )
+        for key, xy, published, tolerance, reason, source in _WHITES
+    ]
