@@ -23,30 +23,32 @@ from skychart.errors import OutputError, SkychartError
 EXIT_DONE = 0
 EXIT_CHECK_MISSED = 1
 EXIT_WRONG_INPUT = 2
-EXIT_INTERRUPTED = 130
-EXIT_TERMINATED = 143
+EXIT_STOPPED = 128  # plus the number of the signal, as shells count
+
+_STOPPED_BY = {signal.SIGINT: "interrupted", signal.SIGTERM: "stopped by the system"}
 
 
-class _Terminated(BaseException):
-    """The system asked this process to end (SIGTERM)."""
+class _Stopped(BaseException):
+    """A signal asked this process to end."""
+
+    def __init__(self, number: int) -> None:
+        super().__init__(number)
+        self.number = signal.Signals(number)
 
 
 def main(argv: Sequence[str] | None = None) -> int:
-    """Run one command and return its exit code: 0 done, 1 a check missed, 2 wrong input, 130 or 143 stopped."""
+    """Run one command and return its exit code: 0 done, 1 a check missed, 2 wrong input, 130 and 143 stopped."""
     _never_fail_on_a_character(sys.stdout, sys.stderr)
     try:
-        with _sigterm_raises():
+        with _signals_raise():
             options = parse(sys.argv[1:] if argv is None else argv)
             return _COMMANDS[options.command](options)
     except SkychartError as error:
         _complain(*str(error).splitlines())
         return EXIT_WRONG_INPUT
-    except KeyboardInterrupt:
-        _complain("interrupted")
-        return EXIT_INTERRUPTED
-    except _Terminated:
-        _complain("stopped by the system")
-        return EXIT_TERMINATED
+    except _Stopped as stopped:
+        _complain(_STOPPED_BY[stopped.number])
+        return EXIT_STOPPED + stopped.number
 
 
 def run_build(options: argparse.Namespace) -> int:
@@ -125,17 +127,21 @@ def _never_fail_on_a_character(*streams: object) -> None:
 
 
 @contextmanager
-def _sigterm_raises() -> Iterator[None]:
-    """Let SIGTERM unwind like Ctrl-C, so that what is half done is tidied up."""
+def _signals_raise() -> Iterator[None]:
+    """Let Ctrl-C and SIGTERM unwind the stack alike, so that what is half done is tidied up."""
 
     def stop(number: int, frame: FrameType | None) -> NoReturn:
-        raise _Terminated
+        raise _Stopped(number)
 
     if threading.current_thread() is not threading.main_thread():
         yield  # only the main thread may set signal handlers
         return
-    former = signal.signal(signal.SIGTERM, stop)
+    former = {number: signal.getsignal(number) for number in _STOPPED_BY}
+    heeded = [number for number, handler in former.items() if handler is not signal.SIG_IGN]
     try:
+        for number in heeded:
+            signal.signal(number, stop)
         yield
     finally:
-        signal.signal(signal.SIGTERM, former)
+        for number in heeded:
+            signal.signal(number, former[number])

@@ -28,8 +28,8 @@ def reading_text(reading: Reading) -> str:
         ("atmosphere", reading.atmosphere),
         ("sun", f"{reading.solar_elevation_deg:g}° above the horizon, geometric"),
         ("view", f"{reading.view_elevation_deg:g}° up, {reading.relative_azimuth_deg:g}° from the sun's azimuth"),
-        ("luminance", f"{significant(float(reading.luminance_cd_m2), 5)} cd/m²"),
-        ("X, Y, Z", f"{_row(reading.XYZ, significant, 5)} cd/m²"),
+        ("luminance", f"{significant(float(reading.luminance_cd_m2), 4)} cd/m²"),
+        ("X, Y, Z", f"{_row(reading.XYZ, significant, 4)} cd/m²"),
         ("x, y", _row(reading.xy, fixed, 4)),
         ("u′, v′", _row(reading.uv_prime, fixed, 4)),
         ("colour temperature", _temperature(reading)),
@@ -101,7 +101,7 @@ def _polarisation(reading: Reading) -> str:
 
 def _rgb(reading: Reading, space: str) -> str:
     outside = "" if reading.in_gamut[space] else "  (out of gamut)"
-    return f"{_row(reading.rgb[space], significant, 5)} cd/m²{outside}"
+    return f"{_row(reading.rgb[space], significant, 4)} cd/m²{outside}"
 
 
 def _row(values: np.ndarray, write: Callable[[float, int], str], digits: int) -> str:

@@ -1,0 +1,494 @@
+"""The command line: results on standard output, one line for each fault, exit codes, and nothing half written."""
+
+import dataclasses
+import json
+import math
+import os
+import signal
+import subprocess
+import sys
+import textwrap
+from collections.abc import Callable
+from pathlib import Path
+
+import numpy as np
+import pytest
+import skychart.sky.spectral
+from hypothesis import HealthCheck, given, settings
+from hypothesis import strategies as st
+
+import skychart.checks
+import skychart.pages
+from skychart import cli
+from skychart.arguments import COMMANDS, READ_ANGLES, folded_azimuth
+from skychart.checks.check import Check
+from skychart.config import DEFAULT_SETTINGS, AirSettings, Settings, default_toml
+from skychart.pages.write import MARKER, swap_in
+
+READ_KEYS = [
+    *("atmosphere", "solar_elevation_deg", "view_elevation_deg", "relative_azimuth_deg", "luminance_cd_m2", "XYZ"),
+    *("xy", "uv_prime", "cct_k", "duv", "rgb", "srgb_hex", "in_gamut", "polarisation_degree"),
+    "polarisation_angle_deg",
+]
+SPACES = ["srgb", "display-p3", "bt2020", "acescg"]
+READ = ["read", "--sun", "12", "--elevation", "45", "--azimuth", "90"]
+REPOSITORY = Path(__file__).parents[1]
+
+
+class PlainSky:
+    """A sky of single scattering by thin flat air: quick, blue, polarised at right angles to the sun."""
+
+    wavelength_nm = np.arange(360.0, 831.0, 10.0)
+
+    def __init__(self, air: AirSettings) -> None:
+        self.settings = air
+        self.depth = 0.1 * (550 / self.wavelength_nm) ** 4
+
+    def stokes(self, solar_elevation_deg, view_elevation_deg, relative_azimuth_deg, altitude_km=0.0):
+        sun, view, azimuth = np.radians(
+            np.broadcast_arrays(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
+        )
+        cosine = np.sin(sun) * np.sin(view) + np.cos(sun) * np.cos(view) * np.cos(azimuth)
+        intensity = (1 + cosine**2)[..., None] * self.depth / (np.sin(view)[..., None] + 0.02)
+        u = 0.1 * np.sin(azimuth)[..., None] * intensity
+        return np.stack([intensity, (1 - cosine**2)[..., None] * self.depth, u], axis=-2)
+
+    def beam(self, solar_elevation_deg, altitude_km=0.0):
+        sun = np.sin(np.radians(np.asarray(solar_elevation_deg, float)))[..., None]
+        return np.where(sun > 0, np.exp(-self.depth / np.maximum(sun, 0.02)), 0.0)
+
+    def ground_irradiance(self, solar_elevation_deg):
+        sun = np.sin(np.radians(np.asarray(solar_elevation_deg, float)))[..., None]
+        return 0.1 * self.depth + 0 * sun, self.beam(solar_elevation_deg) * np.maximum(sun, 0.0)
+
+
+@pytest.fixture
+def plain_sky(monkeypatch: pytest.MonkeyPatch) -> None:
+    """Let `read` see the quick sky."""
+    monkeypatch.setattr(skychart.sky.spectral, "solve_spectral", PlainSky)
+
+
+@dataclasses.dataclass
+class Outcome:
+    """What a run of the command gave."""
+
+    code: int
+    out: str
+    err: str
+
+    @property
+    def faults(self) -> list[str]:
+        """The lines of standard error without the name of the command, which each must carry."""
+        lines = self.err.splitlines()
+        assert all(line.startswith("skychart: ") for line in lines), self.err
+        return [line.removeprefix("skychart: ") for line in lines]
+
+
+@pytest.fixture
+def skychart_command(capsys: pytest.CaptureFixture[str]) -> Callable[..., Outcome]:
+    """Run the command in this process."""
+
+    def run(*arguments: str) -> Outcome:
+        try:
+            code = cli.main(arguments)
+        except SystemExit as asked_for_help:
+            code = int(asked_for_help.code or 0)
+        return Outcome(code, *capsys.readouterr())
+
+    return run
+
+
+# read
+
+
+@pytest.mark.usefixtures("plain_sky")
+def test_read_json_has_the_fixed_keys_in_their_order(skychart_command) -> None:
+    outcome = skychart_command(*READ, "--json")
+    values = json.loads(outcome.out)
+    assert (outcome.code, outcome.err) == (0, "")
+    assert list(values) == READ_KEYS
+    assert list(values["rgb"]) == list(values["in_gamut"]) == SPACES
+    assert [len(values[key]) for key in ("XYZ", "xy", "uv_prime")] == [3, 2, 2]
+    assert all(len(numbers) == 3 for numbers in values["rgb"].values())
+    assert {type(flag) for flag in values["in_gamut"].values()} == {bool}
+    assert [values[key] for key in READ_KEYS[:4]] == ["molecular", 12, 45, 90]
+    assert values["luminance_cd_m2"] == values["XYZ"][1]
+    assert values["srgb_hex"].startswith("#")
+
+
+@pytest.mark.usefixtures("plain_sky")
+def test_a_colour_temperature_that_does_not_exist_is_null_in_json_and_none_in_words(skychart_command) -> None:
+    values = json.loads(skychart_command(*READ, "--json").out)
+    assert (values["cct_k"], values["duv"]) == (None, None)
+    assert "colour temperature  none (" in skychart_command(*READ).out
+
+
+@pytest.mark.usefixtures("plain_sky")
+def test_read_lists_every_number_with_its_unit_in_one_column(skychart_command) -> None:
+    outcome = skychart_command(*READ)
+    values = json.loads(skychart_command(*READ, "--json").out)
+    lines = dict(line.split("  ", 1) for line in outcome.out.splitlines())
+    lines = {head: value.strip() for head, value in lines.items()}
+    assert lines["sun"] == "12° above the horizon, geometric"
+    assert lines["view"] == "45° up, 90° from the sun's azimuth"
+    luminance, unit = lines["luminance"].split()
+    assert (float(luminance), unit) == (pytest.approx(values["luminance_cd_m2"], rel=5e-4), "cd/m²")
+    assert [float(number) for number in lines["x, y"].split()] == pytest.approx(values["xy"], abs=5e-5)
+    rgb = [float(number) for number in lines["linear BT.2020"].split()[:3]]
+    assert rgb == pytest.approx(values["rgb"]["bt2020"], rel=5e-4)
+    assert lines["sRGB code"].startswith(values["srgb_hex"])
+    starts = {len(line) - len(line.split("  ", 1)[1].lstrip()) for line in outcome.out.splitlines()}
+    assert len(starts) == 1
+
+
+@pytest.mark.usefixtures("plain_sky")
+@pytest.mark.parametrize("azimuth", ["270", "-90", "-270", "+90.0", "9e1"])
+def test_azimuths_fold_by_symmetry(skychart_command, azimuth: str) -> None:
+    folded = skychart_command("read", "--sun", "12", "--elevation", "45", "--azimuth", azimuth, "--json")
+    assert folded.out == skychart_command(*READ, "--json").out
+
+
+@given(azimuth=st.floats(-360, 360))
+def test_a_folded_azimuth_has_the_same_cosine(azimuth: float) -> None:
+    folded = folded_azimuth(azimuth)
+    assert 0 <= folded <= 180
+    assert math.cos(math.radians(folded)) == pytest.approx(math.cos(math.radians(azimuth)), abs=1e-12)
+
+
+@pytest.mark.usefixtures("plain_sky")
+@pytest.mark.parametrize("sun", ["-12", "-1.2e1", "90", "-0"])
+def test_read_takes_the_ends_of_the_range(skychart_command, sun: str) -> None:
+    outcome = skychart_command("read", "--sun", sun, "--elevation", "0", "--azimuth", "-360", "--json")
+    assert outcome.code == 0
+    assert json.loads(outcome.out)["solar_elevation_deg"] == float(sun)
+
+
+SUN, VIEW, AZIMUTH = (f"accepted is {quantity}" for quantity in READ_ANGLES.values())
+FAULTY_LINES = [
+    ("", ["no command given; known: build, read, verify, config"]),
+    ("chart", ["unknown command 'chart'; known: build, read, verify, config"]),
+    ("--version", ["unknown command '--version'; known: build, read, verify, config"]),
+    ("read --sun 95 --elevation 45 --azimuth 90", [f"--sun is 95, {SUN}"]),
+    ("read --sun nan --elevation 45 --azimuth 90", [f"--sun is nan, {SUN}"]),
+    ("read --sun -inf --elevation 45 --azimuth 90", [f"--sun is -inf, {SUN}"]),
+    ("read --sun abc --elevation 45 --azimuth 90", [f"--sun is 'abc', {SUN}"]),
+    ("read --sun= --elevation 45 --azimuth 90", [f"--sun is '', {SUN}"]),
+    ("read --sun --elevation 45 --azimuth 90", [f"--sun has no value, {SUN}"]),
+    ("read --sun 12 --elevation -0.1 --azimuth 90", [f"--elevation is -0.1, {VIEW}"]),
+    ("read --sun 12 --elevation 45 --azimuth 361", [f"--azimuth is 361, {AZIMUTH}"]),
+    ("read --sun 12 --azimuth 90", [f"--elevation is missing, {VIEW}"]),
+    (
+        "read --sun -13 --elevation 91 --atmosphere fog",
+        [
+            f"--sun is -13, {SUN}",
+            f"--elevation is 91, {VIEW}",
+            f"--azimuth is missing, {AZIMUTH}",
+            "unknown atmosphere 'fog'; known: molecular",
+        ],
+    ),
+    ("read --json=yes", ["--json takes no value"]),
+    ("read --elev 3", ["unknown argument '--elev'; 'skychart read --help' lists the known ones"]),
+    ("verify now", ["unknown argument 'now'; 'skychart verify --help' lists the known ones"]),
+    ("build --jobs 0", ["--jobs is '0', accepted is a whole number, 1 to 64"]),
+    ("build --jobs 65", ["--jobs is '65', accepted is a whole number, 1 to 64"]),
+    ("build --jobs -1", ["--jobs is '-1', accepted is a whole number, 1 to 64"]),
+    ("build --jobs 2.5", ["--jobs is '2.5', accepted is a whole number, 1 to 64"]),
+    ("build --jobs ²", ["--jobs is '²', accepted is a whole number, 1 to 64"]),
+    (f"build --jobs {'9' * 5000}", [f"--jobs is '{'9' * 39}..., accepted is a whole number, 1 to 64"]),
+    ("build --jobs", ["--jobs has no value, accepted is a whole number, 1 to 64"]),
+    ("build --out=", ["--out is '', accepted is the name of a folder"]),
+    ("build absent.toml", ["cannot read the configuration absent.toml: No such file or directory"]),
+    ("build --out absent/site", [f"cannot write absent/site: there is no folder {Path.cwd()}/absent"]),
+]
+
+
+@pytest.mark.parametrize(("line", "faults"), FAULTY_LINES)
+def test_a_fault_is_one_clear_line_and_exit_code_2(skychart_command, line: str, faults: list[str]) -> None:
+    outcome = skychart_command(*line.split())
+    assert outcome.faults == faults
+    assert (outcome.code, outcome.out) == (2, "")
+
+
+def test_every_fault_of_a_configuration_is_a_line(skychart_command, tmp_path: Path) -> None:
+    config = tmp_path / "ten.toml"
+    config.write_text("".join(f"fault{n} = {n}\n" for n in range(10)))
+    outcome = skychart_command("build", str(config), "--out", str(tmp_path / "site"))
+    assert (outcome.code, len(outcome.faults)) == (2, 10)
+    assert outcome.faults[9].startswith(f"{config}: unknown key 'fault9'; known: ")
+    assert not (tmp_path / "site").exists()
+
+
+words = st.sampled_from([*COMMANDS, *READ_ANGLES, "--json", "--jobs", "--atmosphere", "--", "-", "-x", "--=", "12", ""])
+without_null = st.text(max_size=8).filter(lambda text: "\0" not in text)
+quickly = settings(suppress_health_check=[HealthCheck.function_scoped_fixture], deadline=None)
+
+
+@quickly
+@given(line=st.lists(words | without_null, max_size=8).filter(lambda line: not {"-h", "--help", "build"} & set(line)))
+@pytest.mark.usefixtures("plain_sky")
+def test_whatever_is_typed_there_is_no_traceback(skychart_command, line: list[str]) -> None:
+    if line[:1] == ["verify"]:
+        line = ["verify", "surplus", *line]
+    outcome = skychart_command(*line)
+    assert outcome.code in (0, 2)
+    assert bool(outcome.faults) == (outcome.code == 2)
+    assert bool(outcome.out) == (outcome.code == 0)
+
+
+angles = st.floats(-400, 400) | st.sampled_from([0.0, 90.0, -12.0, 180.0, math.nan, math.inf, 5e-324])
+
+
+@quickly
+@given(sun=angles, view=angles, azimuth=angles)
+@pytest.mark.usefixtures("plain_sky")
+def test_angles_give_finite_numbers_or_a_clear_fault(skychart_command, sun: float, view: float, azimuth: float) -> None:
+    outcome = skychart_command("read", "--sun", str(sun), "--elevation", str(view), "--azimuth", str(azimuth), "--json")
+    wrong = [not -12 <= sun <= 90, not 0 <= view <= 90, not -360 <= azimuth <= 360]
+    assert [fault.split()[0] for fault in outcome.faults] == [
+        option for option, is_wrong in zip(READ_ANGLES, wrong, strict=True) if is_wrong
+    ]
+    assert outcome.code == (2 if any(wrong) else 0)
+    if not any(wrong):
+        values = json.loads(outcome.out, parse_constant=pytest.fail)
+        assert values["luminance_cd_m2"] > 0
+
+
+# verify
+
+
+def a_check(computed: float, **changes: object) -> Check:
+    """A check of 2 within 1 %."""
+    check = Check(
+        *("two", "Numbers", "twice one", "in base ten", "arithmetic", 2.0),
+        *(computed, 0.01, "stated uncertainty", "1", True),
+    )
+    return dataclasses.replace(check, **changes)
+
+
+@pytest.mark.parametrize(
+    ("computed", "code", "word", "count"),
+    [
+        (2.0, 0, "met", "1 met, 0 missed"),
+        (2.1, 1, "MISSED", "0 met, 1 missed"),
+        (math.nan, 1, "MISSED", "0 met, 1 missed"),
+    ],
+)
+def test_verify_tells_by_word_and_exit_code(
+    skychart_command, monkeypatch: pytest.MonkeyPatch, computed: float, code: int, word: str, count: str
+) -> None:
+    monkeypatch.setattr(skychart.checks, "run_checks", lambda: (a_check(computed),))
+    outcome = skychart_command("verify")
+    assert (outcome.code, outcome.err) == (code, "")
+    row = next(line for line in outcome.out.splitlines() if "twice one" in line)
+    assert row.split()[:2] == [word, "2"]
+    assert row.endswith("±1 %  twice one, in base ten [arithmetic]")
+    assert outcome.out.splitlines()[-1] == f"1 published values, {count}"
+
+
+def test_verify_json_has_every_field_of_a_check(skychart_command, monkeypatch: pytest.MonkeyPatch) -> None:
+    checks = (a_check(2.001), a_check(np.float64(math.nan), key="nan", unit="m", relative=False))
+    monkeypatch.setattr(skychart.checks, "run_checks", lambda: checks)
+    outcome = skychart_command("verify", "--json")
+    first, second = json.loads(outcome.out, parse_constant=pytest.fail)
+    assert outcome.code == 1
+    assert list(first) == [*(field.name for field in dataclasses.fields(Check)), "difference", "passed"]
+    assert (first["computed"], first["difference"], first["passed"]) == (2.001, pytest.approx(0.0005), True)
+    assert (second["computed"], second["difference"], second["passed"]) == (None, None, False)
+
+
+# config and help
+
+
+def test_config_prints_the_default_file(skychart_command) -> None:
+    outcome = skychart_command("config")
+    assert (outcome.code, outcome.out, outcome.err) == (0, default_toml(), "")
+
+
+@pytest.mark.parametrize("flag", ["-h", "--help"])
+def test_help_names_every_command(skychart_command, flag: str) -> None:
+    outcome = skychart_command(flag)
+    assert outcome.code == 0
+    assert COMMANDS
+    for summary, _ in COMMANDS.values():
+        assert summary in " ".join(outcome.out.split())
+
+
+@pytest.mark.parametrize("name", COMMANDS)
+def test_help_of_a_command_explains_every_option_and_gives_an_example_that_runs(
+    skychart_command, monkeypatch: pytest.MonkeyPatch, name: str
+) -> None:
+    outcome = skychart_command(name, "--help")
+    options = [line.split("  ")[0] for line in outcome.out.splitlines() if line.startswith("  -")]
+    assert options
+    assert all(option.strip() in outcome.out.split("options:")[1] for option in options)
+    example = next(line for line in outcome.out.splitlines() if line.startswith("example: "))
+    words = example.removeprefix("example: ").split(">")[0].split()
+    called = []
+    monkeypatch.setitem(cli._COMMANDS, name, lambda options: called.append(options) or 0)
+    assert words[0] == "skychart"
+    assert skychart_command(*words[1:]).code == 0
+    assert [options.command for options in called] == [name]
+
+
+def test_help_gives_range_and_default_of_every_value(skychart_command) -> None:
+    text = " ".join(skychart_command("read", "--help").out.split())
+    for quantity in READ_ANGLES.values():
+        assert f"{quantity.meaning}, {quantity}; needed" in text
+    assert "one of: molecular; default: molecular" in text
+    assert "1 to 64; default: as many as processors" in " ".join(skychart_command("build", "--help").out.split())
+
+
+def test_the_documents_name_every_command() -> None:
+    readme = (REPOSITORY / "README.md").read_text(encoding="utf-8")
+    assert [name for name in COMMANDS if f"skychart {name}" not in readme] == []
+
+
+# build
+
+
+@pytest.fixture
+def builds(monkeypatch: pytest.MonkeyPatch) -> list[tuple[Settings, Path, int]]:
+    """What `build` was asked to build; in place of the pages one file is written."""
+    asked: list[tuple[Settings, Path, int]] = []
+
+    def build_site(wanted: Settings, out: Path, jobs: int, progress: Callable[[str], None]) -> str:
+        asked.append((wanted, out, jobs))
+        progress("half way")
+        swap_in({"index.html": b"a page"}, out)
+        return "done"
+
+    monkeypatch.setattr(skychart.pages, "build_site", build_site)
+    return asked
+
+
+def test_build_without_a_file_takes_the_defaults_and_writes_site(
+    skychart_command, builds, tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    monkeypatch.chdir(tmp_path)
+    outcome = skychart_command("build")
+    assert (outcome.code, outcome.err) == (0, "half way\n")
+    assert builds == [(DEFAULT_SETTINGS, Path("site"), len(os.sched_getaffinity(0)))]
+    assert (tmp_path / "site" / "index.html").read_bytes() == b"a page"
+
+
+def test_build_takes_a_file_a_folder_and_a_number_of_jobs(skychart_command, builds, tmp_path: Path) -> None:
+    config = tmp_path / "skies.toml"
+    config.write_text("solar_elevations_deg = [5]\n")
+    outcome = skychart_command("build", str(config), "--out", str(tmp_path / "charts"), "--jobs", "64")
+    assert outcome.code == 0
+    assert builds == [(Settings(solar_elevations_deg=(5.0,)), tmp_path / "charts", 64)]
+
+
+def test_build_refuses_a_foreign_folder_before_it_computes(skychart_command, builds, tmp_path: Path) -> None:
+    (tmp_path / "notes.txt").write_text("mine")
+    outcome = skychart_command("build", "--out", str(tmp_path))
+    assert outcome.code == 2
+    assert outcome.faults == [f"will not replace {tmp_path}: skychart did not make it; choose another folder"]
+    assert builds == []
+
+
+# signals and broken outputs, in a process of their own
+
+
+def run_program(program: str, *arguments: str, **options: object) -> subprocess.Popen[str]:
+    """Start Python on a program text."""
+    command = [sys.executable, "-c", textwrap.dedent(program), *arguments]
+    return subprocess.Popen(command, stdout=subprocess.PIPE, stderr=subprocess.PIPE, text=True, **options)
+
+
+STOPPED_BUILD = """
+    import os, signal, sys
+    from pathlib import Path
+    import skychart.pages
+    from skychart import cli
+    from skychart.pages.write import swap_in
+    def build_site(settings, out, jobs, progress):
+        progress("half way")
+        write_bytes = Path.write_bytes
+        def strike(path, data):
+            write_bytes(path, data)
+            os.kill(os.getpid(), int(sys.argv[2]))
+        Path.write_bytes = strike
+        swap_in({"index.html": b"new", "other.html": b"new"}, out)
+        return "done"
+    skychart.pages.build_site = build_site
+    sys.exit(cli.main(["build", "--out", sys.argv[1]]))
+"""
+
+
+@pytest.mark.parametrize(
+    ("number", "code", "line"),
+    [(signal.SIGINT, 130, "skychart: interrupted"), (signal.SIGTERM, 143, "skychart: stopped by the system")],
+)
+def test_a_stopped_build_says_so_in_one_line_and_leaves_the_former_site(
+    tmp_path: Path, number: signal.Signals, code: int, line: str
+) -> None:
+    site = tmp_path / "site"
+    swap_in({"index.html": b"former"}, site)
+    process = run_program(STOPPED_BUILD, str(site), str(int(number)))
+    out, err = process.communicate()
+    assert (process.returncode, out, err.splitlines()) == (code, "", ["half way", line])
+    assert sorted(path.name for path in tmp_path.rglob("*")) == [MARKER, "index.html", "site"]
+    assert (site / "index.html").read_bytes() == b"former"
+
+
+def test_the_former_signal_handlers_come_back(skychart_command) -> None:
+    before = [signal.getsignal(number) for number in (signal.SIGINT, signal.SIGTERM)]
+    skychart_command("config")
+    assert [signal.getsignal(number) for number in (signal.SIGINT, signal.SIGTERM)] == before
+
+
+def test_a_signal_that_is_to_be_ignored_stays_so(tmp_path: Path) -> None:
+    def ignore_ctrl_c() -> None:
+        signal.signal(signal.SIGINT, signal.SIG_IGN)
+
+    process = run_program(STOPPED_BUILD, str(tmp_path / "site"), str(int(signal.SIGINT)), preexec_fn=ignore_ctrl_c)
+    out, err = process.communicate()
+    assert (process.returncode, out, err) == (0, "done\n", "half way\n")
+
+
+CONFIG = "import sys; from skychart.cli import main; sys.exit(main(['config']))"
+
+
+def test_a_reader_that_goes_away_is_no_fault() -> None:
+    read_end, write_end = os.pipe()
+    os.close(read_end)
+    process = subprocess.run(
+        [sys.executable, "-c", CONFIG], stdout=write_end, stderr=subprocess.PIPE, text=True, check=False
+    )
+    os.close(write_end)
+    assert (process.returncode, process.stderr) == (0, "")
+
+
+def test_a_full_disk_is_one_line() -> None:
+    with open("/dev/full", "w") as full:
+        process = subprocess.run(
+            [sys.executable, "-c", CONFIG], stdout=full, stderr=subprocess.PIPE, text=True, check=False
+        )
+    assert (process.returncode, process.stderr) == (
+        2,
+        "skychart: cannot print the result: No space left on device\n",
+    )
+
+
+READ_IN_ASCII = """
+    import sys
+    import skychart.sky.spectral
+    from skychart.cli import main
+    sys.exit(main(["read", "--sun", "12", "--elevation", "45", "--azimuth", "90"]))
+"""
+
+
+def test_a_real_reading_has_a_clean_standard_error_even_on_a_terminal_without_the_characters() -> None:
+    environment = os.environ | {"PYTHONIOENCODING": "ascii"}
+    process = run_program(READ_IN_ASCII, env=environment)
+    out, err = process.communicate()
+    assert (process.returncode, err) == (0, "")
+    luminance = next(line for line in out.splitlines() if line.startswith("luminance"))
+    assert luminance.endswith(" cd/m?")
+    assert 500 < float(luminance.split()[1]) < 5000
+
+
+def test_as_a_module_it_is_the_same_command() -> None:
+    process = subprocess.run([sys.executable, "-m", "skychart", "config"], capture_output=True, text=True, check=False)
+    assert (process.returncode, process.stdout) == (0, default_toml())
