@@ -48,6 +48,7 @@ class SunTable:
 
     shells: Shells
     values: NDArray[np.float32]  # (boundary, zenith angle, wavelength)
+    edge: Array  # (boundary,), zenith angle of the shadow's edge in steps of the table
 
     @classmethod
     def of(cls, shells: Shells) -> "SunTable":
@@ -64,20 +65,20 @@ class SunTable:
         for start in range(len(shells.altitude_km)):
             depth = slant_to_space(shells, start, cosine) @ shells.extinction_depth
             values[start] = np.exp(-(depth[low] + part * (depth[low + 1] - depth[low])))
-        return cls(shells, values)
+        horizon = 90 + np.degrees(np.arccos(radius / (radius + shells.altitude_km)))
+        return cls(shells, values, horizon / _STEP_DEG)
 
-    def at(self, boundary: NDArray[np.int_], cos_zenith: Array) -> NDArray[np.float32]:
+    def at(self, boundary: NDArray[np.intp], cos_zenith: Array) -> NDArray[np.float32]:
         """Transmission toward the sun from ``boundary`` (index); the two broadcast to (...); result (..., wavelength)."""
-        boundary, cosine = np.broadcast_arrays(boundary, cos_zenith)
-        clear = lit(self.shells.altitude_km[boundary], cosine, self.shells.planet_radius_km)
         angles = self.values.shape[1]
-        place = np.degrees(np.arccos(np.clip(cosine, -1, 1))) / _STEP_DEG
+        place = np.arccos(cos_zenith) * (180 / np.pi / _STEP_DEG)
+        clear = place <= self.edge[boundary]
         low = np.minimum(place.astype(np.intp), angles - 2)
-        part = (np.minimum(place - low, 1.0) * clear).astype(np.float32)[..., None]
-        rest = clear.astype(np.float32)[..., None] - part
+        part = ((place - low) * clear).astype(np.float32)[..., None]
+        rest = clear[..., None] - part
         flat = self.values.reshape(-1, self.values.shape[2])
-        row = boundary * angles + low
-        return rest * flat[row] + part * flat[row + 1]
+        row = low + boundary * angles
+        return rest * flat.take(row, axis=0) + part * flat.take(row + 1, axis=0)
 
 
 def _computed_angles(uniform: Array) -> Array:

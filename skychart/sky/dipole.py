@@ -62,6 +62,11 @@ def projected_axes(omega: Vector) -> tuple[Vector, Vector, Vector]:
     )
 
 
+def projector_entries(omega: Vector) -> tuple[Array, Array, Array, Array]:
+    """Entries of I - omega omega^T."""
+    return 1 - omega.s**2, -omega.s * omega.rho, 1 - omega.rho**2, 1 - omega.alpha**2
+
+
 def turned_axes(e_rho: Vector, e_alpha: Vector, cosine: Array, sine: Array) -> tuple[Vector, Vector]:
     """The rho and alpha axes of a point whose axes are turned about s by the given angle."""
     return (

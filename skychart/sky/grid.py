@@ -26,9 +26,9 @@ class Grid:
     """
 
     levels: int = 28
-    zenith: int = 8
-    azimuth: int = 8
-    substeps: int = 3
+    zenith: int = 6
+    azimuth: int = 6
+    substeps: int = 5
 
     def azimuths(self) -> tuple[Array, Array, float]:
         """Cosines, sines and the weight of each azimuth, the mirrored half turn counted in."""

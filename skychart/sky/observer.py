@@ -10,8 +10,9 @@ from numpy.typing import NDArray
 
 from skychart.sky import dipole
 from skychart.sky.beam import SunTable
-from skychart.sky.molecular import Field, Shape
+from skychart.sky.molecular import Field
 from skychart.sky.rays import Crossings, crossings
+from skychart.sky.shape import Shape
 from skychart.sky.shells import Shells, tangent_altitude
 
 Array = NDArray[np.float64]

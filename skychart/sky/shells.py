@@ -16,13 +16,19 @@ from skychart.sky.interpolation import monotone_cubic
 
 Array = NDArray[np.float64]
 
+_UPPER_KM = 80.0
 _PATH_NODES, _PATH_WEIGHTS = np.polynomial.legendre.leggauss(4)
 
 
 def level_altitudes(top_km: float, count: int) -> Array:
-    """Altitudes [km] of ``count`` levels from the ground to ``top_km``, closest together at the ground."""
-    x = np.linspace(0.0, 1.0, count)
-    return top_km * (0.25 * x + 0.75 * x**2.5)
+    """Altitudes [km] of ``count`` levels from the ground to ``top_km``, closest together at the ground.
+
+    One level stands for all that lies above 80 km, some 1e-5 of the air.
+    """
+    above = top_km > _UPPER_KM
+    x = np.linspace(0.0, 1.0, count - above)
+    levels = min(top_km, _UPPER_KM) * (0.25 * x + 0.75 * x**2.5)
+    return np.append(levels, top_km) if above else levels
 
 
 def subdivide(altitude_km: Array, parts: int) -> Array:

@@ -9,8 +9,9 @@ from skychart.errors import InputError
 from skychart.sky import beam, dipole
 from skychart.sky.atmosphere import Atmosphere
 from skychart.sky.beam import SunTable
+from skychart.sky.fan import Fan, first_order
 from skychart.sky.grid import Grid
-from skychart.sky.molecular import Fan, Field, first_order, solve_field
+from skychart.sky.molecular import Field, solve_field
 from skychart.sky.observer import Lines, Station, ground_light
 from skychart.sky.shells import Shells, level_altitudes, subdivide
 
@@ -89,8 +90,7 @@ class Sky:
         elevation = within("solar elevation", solar_elevation_deg, LOWEST_SUN_DEG, 90)
         sine = np.sin(np.radians(elevation))
         direct = np.maximum(sine, 0)[..., None] * self.beam(elevation)
-        multiple = ground_light(self.field, self.field.scattered_ground, sine)
-        return self.single_irradiance(elevation) + multiple, direct
+        return self.single_irradiance(elevation) + self.multiple_irradiance(elevation), direct
 
     def single_irradiance(self, solar_elevation_deg: ArrayLike) -> Array:
         """The part of the ground's diffuse irradiance scattered once, (..., wavelength)."""
@@ -99,6 +99,11 @@ class Sky:
         fan = Fan(self.ground.shells, self.grid, 0)
         once = first_order(self.ground.table, fan, np.radians(90 - elevation.ravel()), *coefficients)
         return once.irradiance.reshape(*elevation.shape, -1)
+
+    def multiple_irradiance(self, solar_elevation_deg: ArrayLike) -> Array:
+        """The part of the ground's diffuse irradiance scattered more than once, (..., wavelength)."""
+        elevation = within("solar elevation", solar_elevation_deg, LOWEST_SUN_DEG, 90)
+        return ground_light(self.field, self.field.scattered_ground, np.sin(np.radians(elevation)))
 
     def _station(self, altitude_km: float) -> Station:
         altitude = float(within("altitude", altitude_km, 0, HIGHEST_OBSERVER_KM, "km"))

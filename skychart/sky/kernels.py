@@ -1,0 +1,114 @@
+"""Geometry of one more scattering, binned on the solution's nodes; the same for every wavelength."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from skychart.sky import dipole
+from skychart.sky.fan import Fan
+from skychart.sky.shape import Shape
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True, eq=False)
+class Window:
+    """The run of source nodes that a node's rays can reach: ``first`` (node,) of ``width``."""
+
+    first: NDArray[np.intp]
+    width: int
+
+    @classmethod
+    def of(cls, chi: Array, sine: float) -> "Window":
+        """For rays that turn by less than arcsin ``sine`` about the planet's centre; all nodes beyond a right angle."""
+        nodes = len(chi)
+        if sine >= 1:
+            return cls(np.zeros(nodes, np.intp), nodes)
+        turn = np.arcsin(sine)
+        low = np.maximum(np.searchsorted(chi, chi - turn, side="right") - 1, 0)
+        high = np.minimum(np.searchsorted(chi, chi + turn, side="left"), nodes - 1)
+        width = int((high - low).max()) + 1
+        return cls(np.minimum(low, nodes - width), width)
+
+
+@dataclass(frozen=True, eq=False)
+class Kernels:
+    """Kernels on (crossing, output, node, entry, window of source nodes); ``plain`` has no entry axis.
+
+    Outputs: the four entries, and at the ground its irradiance.
+    """
+
+    level: NDArray[np.intp]
+    weight: Array
+    dipolar: NDArray[np.float32]
+    plain: NDArray[np.float32]
+
+
+def bin_crossings(fan: Fan, some: NDArray[np.bool_], window: Window, chi: Array, shape: Shape) -> Kernels:
+    """Kernels of the fan's crossings ``some`` (ray, 2, level) for sources at ``chi`` [rad]."""
+    crossing = fan.coarse
+    ray, branch, level = np.nonzero(some)
+    omega = fan.sight(chi)
+    cos_there, cosine, sine = dipole.moved(
+        crossing.cos_turn[ray, branch, level][:, None, None], crossing.sin_turn[ray, branch, level][:, None, None],
+        fan.cos_phi, fan.sin_phi, np.cos(chi)[:, None], np.sin(chi)[:, None],
+    )  # fmt: skip
+    node, low, high = shape.weights(level[:, None, None], cos_there)
+    e_s, e_rho, e_alpha = (dipole.Vector(*(c[ray] for c in e)) for e in dipole.projected_axes(omega))
+    there_rho, there_alpha = dipole.turned_axes(e_rho, e_alpha, cosine, sine)
+    solid = fan.solid_angle[ray][:, None, None]
+    columns = [
+        dipole.tensor_entries(e_s, e_s),
+        tuple(2 * entry for entry in dipole.tensor_entries(e_s, there_rho)),
+        dipole.tensor_entries(there_rho, there_rho),
+        dipole.tensor_entries(there_alpha, there_alpha),
+    ]
+    isotropic = dipole.projector_entries(dipole.Vector(*(c[ray] for c in omega)))
+    if fan.level == 0:
+        cosine_weight = np.maximum(fan.cos_zenith, 0)[ray][:, None, None]
+        columns = [(*column, cosine_weight * (column[0] + column[2] + column[3])) for column in columns]
+        isotropic = (*isotropic, 2 * cosine_weight)
+    outputs = len(isotropic)
+    dipolar = np.empty((len(ray), outputs, len(chi), dipole.ENTRIES, window.width), np.float32)
+    place = node - window.first[:, None]
+    low, high = solid * low, solid * high
+    spread = _Spread(place, low, high, window.width, dipole.ENTRIES)
+    for output in range(outputs):
+        dipolar[:, output] = spread.bin([column[output] for column in columns])
+    plain = _Spread(place, low, high, window.width, outputs).bin(isotropic).transpose(0, 2, 1, 3).astype(np.float32, order="C")
+    return Kernels(level, crossing.weight[ray, branch, level], dipolar, plain)
+
+
+def bin_ground(fan: Fan, strikes: NDArray[np.intp], chi: Array, shape: Shape) -> NDArray[np.float32]:
+    """What unit radiance of the ground counts along the rays ``strikes``: (ray, entry, node, node of the ground)."""
+    crossing = fan.coarse
+    omega = fan.sight(chi)
+    cos_there, _, _ = dipole.moved(
+        crossing.ground_cos_turn[strikes][:, None, None], crossing.ground_sin_turn[strikes][:, None, None],
+        fan.cos_phi, fan.sin_phi, np.cos(chi)[:, None], np.sin(chi)[:, None],
+    )  # fmt: skip
+    node, low, high = shape.weights(np.zeros(1, np.intp), cos_there)
+    solid = fan.solid_angle[strikes][:, None, None]
+    entries = [0.5 * solid * entry for entry in dipole.projector_entries(dipole.Vector(*(c[strikes] for c in omega)))]
+    return _Spread(node, low, high, len(chi), dipole.ENTRIES).bin(entries).transpose(0, 2, 1, 3).astype(np.float32)
+
+
+class _Spread:
+    """Adds values on (row, node, azimuth) to the two source nodes each is interpolated between."""
+
+    def __init__(self, node: NDArray[np.intp], low: Array, high: Array, nodes: int, entries: int) -> None:
+        self.size = (node.shape[0], node.shape[1], entries, nodes)
+        row = np.arange(node.shape[0] * node.shape[1]).reshape(*node.shape[:2], 1) * (entries * nodes)
+        place = (row + node)[:, :, None] + nodes * np.arange(entries)[:, None]
+        self.place = np.stack([place, place + 1], axis=3).ravel()
+        self.low, self.high = low, high
+
+    def bin(self, values: Sequence[Array]) -> Array:
+        """(row, node, entry, source node) from one array an entry."""
+        weight = np.empty((*self.size[:3], 2, self.low.shape[2]))
+        for entry, value in enumerate(values):
+            np.multiply(value, self.low, out=weight[:, :, entry, 0])
+            np.multiply(value, self.high, out=weight[:, :, entry, 1])
+        return np.bincount(self.place, weight.ravel(), minlength=int(np.prod(self.size))).reshape(self.size)
