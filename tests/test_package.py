@@ -132,3 +132,11 @@ def test_the_wheel_holds_code_tables_and_templates_and_nothing_else(tmp_path: Pa
     expected = {str(path) if path.parts[0] == "skychart" else f"skychart/{path}" for path in wanted}
     assert packed == expected
     assert {Path(name).suffix for name in packed} >= {".py", ".csv", ".html", ".css"}
+
+
+def test_the_readme_gives_the_two_commands_that_work_alone() -> None:
+    lines = (REPOSITORY / "README.md").read_text(encoding="utf-8").splitlines()
+    commands = [line.strip() for line in lines if line.startswith("    python3 -m venv")]
+    first, second = commands
+    assert first == "python3 -m venv .venv && .venv/bin/pip install -q . && .venv/bin/skychart build"
+    assert second in (REPOSITORY / ".ci" / "run").read_text(encoding="utf-8")
