@@ -69,7 +69,7 @@ class SunTable:
         return cls(shells, values, horizon / _STEP_DEG)
 
     def at(self, boundary: NDArray[np.intp], cos_zenith: Array) -> NDArray[np.float32]:
-        """Transmission toward the sun from ``boundary`` (index); the two broadcast to (...); result (..., wavelength)."""
+        """Transmission toward the sun from ``boundary`` (index), (..., wavelength); arguments broadcast to (...)."""
         angles = self.values.shape[1]
         place = np.arccos(cos_zenith) * (180 / np.pi / _STEP_DEG)
         clear = place <= self.edge[boundary]

@@ -1,10 +1,11 @@
 """Scattering by molecules in the tensor form: light at a point is four numbers in axes fixed by the sun.
 
-Axes at a point: s toward the sun; rho away from the sun's axis, in the plane of s and the local vertical; alpha = s x rho.
+Axes at a point: s toward the sun; rho away from the sun's axis, in the plane of s and the vertical; alpha = s x rho.
 The vertical is cos(chi) s + sin(chi) rho. The coherency tensor of light integrated over the sphere has by symmetry the
-entries ss, s-rho, rho-rho, alpha-alpha alone, in this order. A direction of sight at zenith angle theta and azimuth phi from
-the sun is omega. A source P sends along omega, per unit of scattering optical depth, a Pi P Pi + b tr(P) Pi with
-Pi = I - omega omega^T; a and b follow from the depolarisation ratio (Chandrasekhar 1950, Radiative Transfer, section 18).
+entries ss, s-rho, rho-rho, alpha-alpha alone, in this order. A direction of sight at zenith angle theta and azimuth phi
+from the sun is omega. A source P sends along omega, per unit of scattering optical depth, a Pi P Pi + b tr(P) Pi with
+Pi = I - omega omega^T; a and b follow from the depolarisation ratio
+(Chandrasekhar 1950, Radiative Transfer, section 18).
 """
 
 from typing import NamedTuple
@@ -25,6 +26,10 @@ class Vector(NamedTuple):
     rho: Array
     alpha: Array
 
+    def of(self, index: int | NDArray[np.intp]) -> "Vector":
+        """The vectors at ``index`` of the first axis."""
+        return Vector(self.s[index], self.rho[index], self.alpha[index])
+
 
 def molecular_coefficients(depolarisation: Array) -> tuple[Array, Array]:
     """The coefficients a and b [1/sr] of molecules with the given depolarisation ratio for natural light."""
@@ -41,8 +46,10 @@ def sight(cos_theta: Array, sin_theta: Array, cos_phi: Array, sin_phi: Array, co
     )
 
 
-def moved(cos_turn: Array, sin_turn: Array, cos_phi: Array, sin_phi: Array, cos_chi: Array, sin_chi: Array) -> tuple[Array, Array, Array]:
-    """Cosine of the solar zenith angle at a point along the ray, and cosine and sine of the turn of its axes about s."""
+def moved(
+    cos_turn: Array, sin_turn: Array, cos_phi: Array, sin_phi: Array, cos_chi: Array, sin_chi: Array
+) -> tuple[Array, Array, Array]:
+    """At a point along the ray: cosine of the solar zenith angle, cosine and sine of the turn of its axes about s."""
     cos_there = np.clip(cos_chi * cos_turn + sin_chi * sin_turn * cos_phi, -1, 1)
     outward = sin_chi * cos_turn - cos_chi * sin_turn * cos_phi
     aside = -sin_turn * sin_phi

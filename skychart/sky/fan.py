@@ -51,7 +51,7 @@ class Fan:
 
 @dataclass(frozen=True, eq=False)
 class FirstOrder:
-    """Singly scattered light at a level: ``tensor`` (chi, entry, wavelength), ``irradiance`` (chi, wavelength) on the level's upper side."""
+    """Light scattered once: ``tensor`` (chi, entry, wavelength), ``irradiance`` from above (chi, wavelength)."""
 
     tensor: Array
     irradiance: Array
@@ -72,9 +72,9 @@ def first_order(table: SunTable, fan: Fan, chi: Array, a: Array, b: Array) -> Fi
         cos_there = np.clip(cos_chi * turn[0] + sin_chi * turn[1] * fan.cos_phi, -1, 1)
         beam = table.at(reached[1][:, None, None], cos_there)
         light = np.einsum("qxpl,ql->xpl", beam, fan.fine.weight[ray][reached].astype(np.float32), optimize=False)
-        across = dipole.Vector(*(component[ray] for component in e_rho)), dipole.Vector(*(component[ray] for component in e_alpha))
-        dipolar = [0.5 * (r + t) for r, t in zip(dipole.tensor_entries(across[0], across[0]), dipole.tensor_entries(across[1], across[1]), strict=True)]
-        plain = dipole.projector_entries(dipole.Vector(*(component[ray] for component in omega)))
+        across = [dipole.tensor_entries(axis.of(ray), axis.of(ray)) for axis in (e_rho, e_alpha)]
+        dipolar = [0.5 * (rho + alpha) for rho, alpha in zip(*across, strict=True)]
+        plain = dipole.projector_entries(omega.of(ray))
         weight = fan.solid_angle[ray]
         for entry in range(dipole.ENTRIES):
             tensor[:, entry] += weight * (
@@ -82,5 +82,7 @@ def first_order(table: SunTable, fan: Fan, chi: Array, a: Array, b: Array) -> Fi
             )
         if fan.cos_zenith[ray] > 0:
             phase = dipole.trace(dipolar, 0)
-            irradiance += weight * fan.cos_zenith[ray] * (a * np.einsum("xp,xpl->xl", phase, light) + 2 * b * light.sum(axis=1))
+            irradiance += (
+                weight * fan.cos_zenith[ray] * (a * np.einsum("xp,xpl->xl", phase, light) + 2 * b * light.sum(axis=1))
+            )
     return FirstOrder(tensor, irradiance)

@@ -1,6 +1,7 @@
 """The solver's grid: levels, sun positions, directions."""
 
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 from numpy.typing import NDArray
@@ -13,7 +14,7 @@ _SOLAR_ZENITH_STEPS = ((0, 8), (56, 4), (80, 2), (88, 1), (106, 2), (114, 0))
 
 def solar_zenith_nodes_deg() -> Array:
     """Solar zenith angles [deg] the field is kept at, whole degrees, densest through twilight."""
-    pieces = [np.arange(a, b, step) for (a, step), (b, _) in zip(_SOLAR_ZENITH_STEPS, _SOLAR_ZENITH_STEPS[1:], strict=False)]
+    pieces = [np.arange(a, b, step) for (a, step), (b, _) in pairwise(_SOLAR_ZENITH_STEPS)]
     return np.append(np.concatenate(pieces), _SOLAR_ZENITH_STEPS[-1][0]).astype(float)
 
 

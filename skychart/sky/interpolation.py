@@ -56,12 +56,12 @@ def spline_matrix(x: Array, query: Array) -> Array:
         far_secant = sign * (identity[outer] - identity[inner]) / far
         right[end] = (far * (3 * near + 2 * far) * near_secant + near**2 * far_secant) / (near + far)
     slope = np.linalg.solve(left, right)
-    k = np.clip(np.searchsorted(x, query, side="right") - 1, 0, n - 2)
-    t = ((query - x[k]) / step[k])[:, None]
-    width = step[k][:, None]
-    rise = identity[k + 1] - identity[k]
-    a, b = width * slope[k] - rise, rise - width * slope[k + 1]
-    return identity[k] + t * (rise + (1 - t) * (a * (1 - t) + b * t))
+    low = np.clip(np.searchsorted(x, query, side="right") - 1, 0, n - 2)
+    t = ((query - x[low]) / step[low])[:, None]
+    width = step[low][:, None]
+    rise = identity[low + 1] - identity[low]
+    a, b = width * slope[low] - rise, rise - width * slope[low + 1]
+    return identity[low] + t * (rise + (1 - t) * (a * (1 - t) + b * t))
 
 
 def _monotone_slopes(step: Array, secant: Array) -> Array:

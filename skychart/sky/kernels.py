@@ -56,16 +56,16 @@ def bin_crossings(fan: Fan, some: NDArray[np.bool_], window: Window, chi: Array,
         fan.cos_phi, fan.sin_phi, np.cos(chi)[:, None], np.sin(chi)[:, None],
     )  # fmt: skip
     node, low, high = shape.weights(level[:, None, None], cos_there)
-    e_s, e_rho, e_alpha = (dipole.Vector(*(c[ray] for c in e)) for e in dipole.projected_axes(omega))
+    e_s, e_rho, e_alpha = (axis.of(ray) for axis in dipole.projected_axes(omega))
     there_rho, there_alpha = dipole.turned_axes(e_rho, e_alpha, cosine, sine)
     solid = fan.solid_angle[ray][:, None, None]
-    columns = [
+    columns: list[Sequence[Array]] = [
         dipole.tensor_entries(e_s, e_s),
-        tuple(2 * entry for entry in dipole.tensor_entries(e_s, there_rho)),
+        [2 * entry for entry in dipole.tensor_entries(e_s, there_rho)],
         dipole.tensor_entries(there_rho, there_rho),
         dipole.tensor_entries(there_alpha, there_alpha),
     ]
-    isotropic = dipole.projector_entries(dipole.Vector(*(c[ray] for c in omega)))
+    isotropic: Sequence[Array] = dipole.projector_entries(omega.of(ray))
     if fan.level == 0:
         cosine_weight = np.maximum(fan.cos_zenith, 0)[ray][:, None, None]
         columns = [(*column, cosine_weight * (column[0] + column[2] + column[3])) for column in columns]
@@ -77,7 +77,12 @@ def bin_crossings(fan: Fan, some: NDArray[np.bool_], window: Window, chi: Array,
     spread = _Spread(place, low, high, window.width, dipole.ENTRIES)
     for output in range(outputs):
         dipolar[:, output] = spread.bin([column[output] for column in columns])
-    plain = _Spread(place, low, high, window.width, outputs).bin(isotropic).transpose(0, 2, 1, 3).astype(np.float32, order="C")
+    plain = (
+        _Spread(place, low, high, window.width, outputs)
+        .bin(isotropic)
+        .transpose(0, 2, 1, 3)
+        .astype(np.float32, order="C")
+    )
     return Kernels(level, crossing.weight[ray, branch, level], dipolar, plain)
 
 
@@ -91,7 +96,7 @@ def bin_ground(fan: Fan, strikes: NDArray[np.intp], chi: Array, shape: Shape) ->
     )  # fmt: skip
     node, low, high = shape.weights(np.zeros(1, np.intp), cos_there)
     solid = fan.solid_angle[strikes][:, None, None]
-    entries = [0.5 * solid * entry for entry in dipole.projector_entries(dipole.Vector(*(c[strikes] for c in omega)))]
+    entries = [0.5 * solid * entry for entry in dipole.projector_entries(omega.of(strikes))]
     return _Spread(node, low, high, len(chi), dipole.ENTRIES).bin(entries).transpose(0, 2, 1, 3).astype(np.float32)
 
 
@@ -111,4 +116,5 @@ class _Spread:
         for entry, value in enumerate(values):
             np.multiply(value, self.low, out=weight[:, :, entry, 0])
             np.multiply(value, self.high, out=weight[:, :, entry, 1])
-        return np.bincount(self.place, weight.ravel(), minlength=int(np.prod(self.size))).reshape(self.size)
+        sums = np.bincount(self.place, weight.ravel(), minlength=int(np.prod(self.size)))
+        return np.asarray(sums, dtype=float).reshape(self.size)

@@ -27,7 +27,7 @@ _BLOCK = 11  # wavelengths held at once: some 80 MB each with the default grid
 
 @dataclass(frozen=True, eq=False)
 class Field:
-    """The solved field. ``tensor`` (level, node, entry, wavelength) and ``ground`` (node, wavelength), divided by their shapes.
+    """The solved field: ``tensor`` (level, node, entry, wavelength), ``ground`` (node, wavelength), over their shapes.
 
     ``ground`` is downward irradiance at the ground, direct light included; ``scattered_ground`` that of light scattered
     twice or more (ground reflections count). All per unit solar irradiance.
@@ -41,7 +41,9 @@ class Field:
     scattered_ground: NDArray[np.float32]
 
 
-def solve_field(shells: Shells, table: SunTable, grid: Grid, depolarisation: Array, albedo: Array, typical: int) -> Field:
+def solve_field(
+    shells: Shells, table: SunTable, grid: Grid, depolarisation: Array, albedo: Array, typical: int
+) -> Field:
     """All orders, all sun positions. ``typical``: index of the wavelength whose first order gives the shapes."""
     a, b = dipole.molecular_coefficients(depolarisation)
     node_deg = solar_zenith_nodes_deg()

@@ -3,6 +3,7 @@
 Light scattered once is gathered straight from the beam at every sub-step; the rest from the solved field.
 """
 
+from collections.abc import Iterator
 from dataclasses import dataclass
 
 import numpy as np
@@ -60,7 +61,7 @@ class Station:
         return result
 
     def multiple(self, field: Field, lines: Lines, depolarisation: Array, albedo: Array) -> NDArray[np.float64]:
-        """I, Q, U of light scattered more than once, ground reflections counted as scattering; (line, 3, wavelength) [1/sr]."""
+        """I, Q, U of light scattered more than once, by the ground too; shape (line, 3, wavelength) [1/sr]."""
         a, b = dipole.molecular_coefficients(depolarisation)
         field = _with_level(field, self.shells.altitude_km[self.start])
         levels = np.searchsorted(self.shells.altitude_km, field.level_altitude_km)
@@ -77,7 +78,9 @@ class Station:
             result[chosen] = a * sums[:, :3]
             result[chosen, 0] += 2 * b * sums[:, 3]
             if fan.ground[ray].any():
-                result[chosen, 0] += fan.ground[ray] * albedo / np.pi * self._ground_light(field, fan, ray, lines, chosen)
+                result[chosen, 0] += (
+                    fan.ground[ray] * albedo / np.pi * self._ground_light(field, fan, ray, lines, chosen)
+                )
         return result
 
     def _ground_light(self, field: Field, fan: Crossings, ray: int, lines: Lines, chosen: NDArray[np.intp]) -> Array:
@@ -88,7 +91,7 @@ class Station:
         )  # fmt: skip
         return ground_light(field, field.ground, cos_there)
 
-    def _blocks(self, lines: Lines, boundaries: NDArray[np.intp]):
+    def _blocks(self, lines: Lines, boundaries: NDArray[np.intp]) -> Iterator[tuple[Crossings, int, NDArray[np.intp]]]:
         """Yield (fan of all distinct rays, ray, indices of some lines along it); levels at ``boundaries``."""
         view, which = np.unique(lines.view_cosine, return_inverse=True)
         fan = self._fan(view, boundaries)
@@ -115,8 +118,10 @@ def ground_light(field: Field, values: NDArray[np.float32], cos_chi: Array) -> A
     return low[..., None] * values[node] + high[..., None] * values[node + 1]
 
 
-def _along(fan: Crossings, ray: int, lines: Lines, chosen: NDArray[np.intp]):
-    """Levels crossed (crossing,), and for each line and crossing the cosine of the solar zenith angle and the turn of the axes."""
+def _along(
+    fan: Crossings, ray: int, lines: Lines, chosen: NDArray[np.intp]
+) -> tuple[NDArray[np.intp], Array, Array, Array]:
+    """Levels crossed (crossing,); cosine of the solar zenith angle and turn of the axes, each (line, crossing)."""
     reached = fan.reached[ray]
     phi, chi = lines.relative_azimuth[chosen, None], lines.solar_zenith[chosen, None]
     cos_there, cosine, sine = dipole.moved(
@@ -142,7 +147,9 @@ def _source_coefficients(h: dipole.Vector, v: dipole.Vector, cosine: Array, sine
 
     def turned(x: dipole.Vector) -> dipole.Vector:
         rho, alpha = x.rho[:, None], x.alpha[:, None]
-        return dipole.Vector(np.broadcast_to(x.s[:, None], cosine.shape), cosine * rho + sine * alpha, cosine * alpha - sine * rho)
+        return dipole.Vector(
+            np.broadcast_to(x.s[:, None], cosine.shape), cosine * rho + sine * alpha, cosine * alpha - sine * rho
+        )
 
     def product(x: dipole.Vector, y: dipole.Vector) -> Array:
         return np.stack([x.s * y.s, x.s * y.rho + x.rho * y.s, x.rho * y.rho, x.alpha * y.alpha], axis=-1)
@@ -151,12 +158,14 @@ def _source_coefficients(h: dipole.Vector, v: dipole.Vector, cosine: Array, sine
     return product(here_h, here_h), product(here_v, here_v), product(here_h, here_v)
 
 
-def _interpolated(shape: Shape, values: NDArray[np.float32], level: NDArray[np.intp], cos_chi: Array) -> NDArray[np.float32]:
+def _interpolated(
+    shape: Shape, values: NDArray[np.float32], level: NDArray[np.intp], cos_chi: Array
+) -> NDArray[np.float32]:
     """Field entries at (line, crossing): (line, crossing, entry, wavelength)."""
-    node, low, high = shape.weights(level, cos_chi)
+    node, lower, upper = shape.weights(level, cos_chi)
     rows = values.reshape(-1, *values.shape[2:])
     row = level * values.shape[1] + node
-    low, high = (part[..., None, None].astype(np.float32) for part in (low, high))
+    low, high = (part[..., None, None].astype(np.float32) for part in (lower, upper))
     return low * rows[row] + high * rows[row + 1]
 
 

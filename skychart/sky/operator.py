@@ -24,8 +24,9 @@ _REACHES_DEG = (4.0, 1.0)  # crossings that turn by less about the planet's cent
 class Operator:
     """The operator of some wavelengths. All states are over the shapes.
 
-    ``between`` (wavelength, level, source level, entry x node, source entry x node); ``from_ground`` (wavelength, level,
-    entry x node, ground node); ``to_ground`` (wavelength, source level, ground node, source entry x node).
+    ``between`` (wavelength, level, source level, entry x node, source entry x node);
+    ``from_ground`` (wavelength, level, entry x node, ground node);
+    ``to_ground`` (wavelength, source level, ground node, source entry x node).
     """
 
     def __init__(
@@ -54,14 +55,19 @@ class Operator:
         than 1e-4 of the sum anywhere.
         """
         levels, nodes, entries, count = tensor.shape
-        over_tensor = np.repeat(self.tensor_shape.at_node[:, None], entries, axis=1).reshape(levels, -1).astype(np.float32)
+        over_tensor = (
+            np.repeat(self.tensor_shape.at_node[:, None], entries, axis=1).reshape(levels, -1).astype(np.float32)
+        )
         over_ground = self.ground_shape.at_node[0].astype(np.float32)
         order = (tensor.transpose(3, 0, 2, 1).reshape(count, levels, -1) / over_tensor).astype(np.float32)
         order_ground = (ground.T / over_ground).astype(np.float32)
         total, total_ground = order.copy(), order_ground.copy()
         for _ in range(_MOST_ORDERS):
             order, order_ground = (
-                ((self.between @ order[:, None, ..., None])[..., 0].sum(axis=2) + (self.from_ground @ order_ground[:, None, :, None])[..., 0])
+                (
+                    (self.between @ order[:, None, ..., None])[..., 0].sum(axis=2)
+                    + (self.from_ground @ order_ground[:, None, :, None])[..., 0]
+                )
                 / over_tensor,
                 (self.to_ground @ order[..., None])[..., 0].sum(axis=1) / over_ground,
             )
@@ -91,7 +97,9 @@ class Operator:
                     if fan.level == 0:
                         ground_rows[:, level] += block[:, dipole.ENTRIES :]
                 continue
-            sums = np.zeros((count, levels, dipole.ENTRIES + (fan.level == 0), nodes, dipole.ENTRIES, window.width), np.float32)
+            sums = np.zeros(
+                (count, levels, dipole.ENTRIES + (fan.level == 0), nodes, dipole.ENTRIES, window.width), np.float32
+            )
             for level, block in blocks:
                 sums[:, level] = block
             for x, first in enumerate(window.first):

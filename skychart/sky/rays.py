@@ -82,7 +82,12 @@ def crossings(
 
 
 def _add_turning_segments(
-    weight: Array, scattering: Array, extinction: Array, depth_inward: Array, turns: NDArray[np.bool_], lowest: NDArray[np.int_]
+    weight: Array,
+    scattering: Array,
+    extinction: Array,
+    depth_inward: Array,
+    turns: NDArray[np.bool_],
+    lowest: NDArray[np.int_],
 ) -> None:
     """Segments through the tangent point, from the lowest level reached back to the same level."""
     ray = np.nonzero(turns & (lowest > 0))[0]
@@ -98,7 +103,9 @@ def _segment_weights(scattering: Array, extinction: Array) -> tuple[Array, Array
     thin = extinction < 1e-2
     x = np.where(thin, 1.0, extinction)
     absorbed = -np.expm1(-x)
-    far = np.where(thin, 1 / 2 - extinction * (1 / 3 - extinction * (1 / 8 - extinction / 30)), (absorbed - x * np.exp(-x)) / x**2)
+    far = np.where(
+        thin, 1 / 2 - extinction * (1 / 3 - extinction * (1 / 8 - extinction / 30)), (absorbed - x * np.exp(-x)) / x**2
+    )
     both = np.where(thin, 1 - extinction * (1 / 2 - extinction * (1 / 6 - extinction / 24)), absorbed / x)
     return scattering * (both - far), scattering * far
 

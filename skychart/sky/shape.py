@@ -1,7 +1,7 @@
 """The fall of a field with solar zenith angle, by which it is interpolated.
 
-Between solar zenith nodes a field is interpolated as shape x linear(field / shape): through twilight light falls by a factor
-of ten every two degrees, and the shape (the first order's own fall) carries that.
+Between solar zenith nodes a field is interpolated as shape x linear(field / shape): through twilight light falls by a
+factor of ten every two degrees, and the shape (the first order's own fall) carries that.
 """
 
 from dataclasses import dataclass

@@ -32,7 +32,7 @@ def level_altitudes(top_km: float, count: int) -> Array:
 
 
 def subdivide(altitude_km: Array, parts: int) -> Array:
-    """Each interval of ``altitude_km`` cut into ``parts`` equal ones; the given altitudes stay, at every ``parts``-th place."""
+    """Each interval of ``altitude_km`` cut into ``parts``; the given altitudes stay, at every ``parts``-th place."""
     fraction = np.arange(parts) / parts
     inner = altitude_km[:-1, None] + np.diff(altitude_km)[:, None] * fraction
     return np.append(inner.ravel(), altitude_km[-1])
@@ -82,7 +82,7 @@ class Shells:
 
 
 def tangent_altitude(altitude_km: Array, cos_zenith: Array, planet_radius_km: float) -> Array:
-    """Tangent altitude [km] of the ray that leaves ``altitude_km`` at zenith angle arccos(``cos_zenith``); broadcasts."""
+    """Tangent altitude [km] of the ray from ``altitude_km`` at zenith angle arccos(``cos_zenith``); broadcasts."""
     sine = np.sqrt(np.maximum(0.0, 1 - np.square(cos_zenith)))
     return altitude_km * sine - planet_radius_km * np.square(cos_zenith) / (1 + sine)
 

@@ -38,8 +38,8 @@ class Sky:
 
     Relative azimuth 0 looks toward the sun's azimuth, 180 away from it. Angles broadcast together; the wavelength axis,
     that of the atmosphere, is last. Radiance and irradiance are per unit solar irradiance at the top of the atmosphere.
-    Q is positive where the electric vector is perpendicular to the vertical plane of the line of sight; U where it is
-    turned 45 degrees from the vertical plane, downward and toward increasing azimuth (for the light's own direction of travel).
+    Q is positive where the electric vector is perpendicular to the vertical plane of the line of sight; U is that of
+    Natraj, Li & Yung 2009 (doi:10.1088/0004-637X/691/2/1909): odd in the azimuth, negative toward a low sun's side.
     """
 
     air: Atmosphere
@@ -63,7 +63,11 @@ class Sky:
         return self.single(*view) + self.multiple(*view)
 
     def single(
-        self, solar_elevation_deg: ArrayLike, view_elevation_deg: ArrayLike, relative_azimuth_deg: ArrayLike, altitude_km: float = 0.0
+        self,
+        solar_elevation_deg: ArrayLike,
+        view_elevation_deg: ArrayLike,
+        relative_azimuth_deg: ArrayLike,
+        altitude_km: float = 0.0,
     ) -> Array:
         """The part of ``stokes`` scattered once from the beam."""
         shape, lines = _lines(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
@@ -71,7 +75,11 @@ class Sky:
         return stokes.reshape(*shape, *stokes.shape[1:])
 
     def multiple(
-        self, solar_elevation_deg: ArrayLike, view_elevation_deg: ArrayLike, relative_azimuth_deg: ArrayLike, altitude_km: float = 0.0
+        self,
+        solar_elevation_deg: ArrayLike,
+        view_elevation_deg: ArrayLike,
+        relative_azimuth_deg: ArrayLike,
+        altitude_km: float = 0.0,
     ) -> Array:
         """The part of ``stokes`` scattered more than once or by the ground."""
         shape, lines = _lines(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
@@ -123,7 +131,9 @@ def within(name: str, value: ArrayLike, low: float, high: float, unit: str = "°
     return array
 
 
-def _lines(solar_elevation_deg: ArrayLike, view_elevation_deg: ArrayLike, relative_azimuth_deg: ArrayLike) -> tuple[tuple[int, ...], Lines]:
+def _lines(
+    solar_elevation_deg: ArrayLike, view_elevation_deg: ArrayLike, relative_azimuth_deg: ArrayLike
+) -> tuple[tuple[int, ...], Lines]:
     angles = np.broadcast_arrays(
         within("solar elevation", solar_elevation_deg, LOWEST_SUN_DEG, 90),
         within("view elevation", view_elevation_deg, -90, 90),
