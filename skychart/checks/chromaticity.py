@@ -56,8 +56,6 @@ def _scattered_limits() -> list[Check]:
     limits = (
         ("equal-energy", "equal-energy light scattered as λ⁻⁴", wavelength_nm**-4.0 @ functions, (0.23988, 0.23404),
          "exact identity: a black body of infinite temperature (derived here)", 5e-5, digits),
-        ("sun-power-law", "sunlight scattered as λ⁻⁴", _NODES_NM**-4.0 @ matrix, (0.23442, 0.23422),
-         "ASTM E490 sun (derived here)", 0.0020, another_sun),
         ("sun-air", "sunlight scattered once by thin air", air, (0.23280, 0.23156),
          "ASTM E490 sun, cross-section of Bodhaine et al. 1999 equation 29 (derived here)", 0.0020, another_sun),
     )  # fmt: skip

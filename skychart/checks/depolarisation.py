@@ -25,7 +25,7 @@ def _bates() -> list[Check]:
     columns = load_table("checks/published_king_factor_bates1984").columns
     rows = {nm: (factor, ratio) for nm, factor, ratio in zip(*columns.values(), strict=True)}
     found = []
-    for nm in (400, 500, 600, 700):
+    for nm in (400, 700):
         entry = functools.partial(
             Check, topic=TOPIC, conditions=f"{nm} nm", source=_BATES, tolerance=1e-5,
             tolerance_reason="five printed decimals", unit="1", relative=False,
@@ -59,7 +59,7 @@ def _bucholtz() -> list[Check]:
             unit="1",
             relative=False,
         )
-        for nm in (400, 450, 550, 700)
+        for nm in (450, 550)
     ]
 
 

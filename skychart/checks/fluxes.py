@@ -15,16 +15,18 @@ _SOURCE = (
     "Natraj, Li & Yung 2009, Astrophys. J. 691, 1909 (fluxes derived here from their tables of radiance, "
     "better than 1e-4)"
 )
-_DIRECT_MU0, _BALANCE_MU0 = 0.2, 0.6  # where the direct flux, and the flux at the top, are compared too
+_DIFFUSE_DEPTHS = (0.1, 0.5, 1.0)
+_TOP_MU0 = 0.6  # where the flux at the top, and the balance, are compared
 
 
 def checks(flat: FlatSky) -> tuple[Check, ...]:
-    """Diffuse and direct flux at the ground, flux leaving at the top, and the balance of the three."""
+    """Diffuse flux at the ground, flux leaving at the top, and the balance of these with the direct flux."""
     columns = load_table("checks/published_natraj2009_fluxes").columns
     suns = np.unique(columns["mu0"])
     all_diffuse, all_direct = flat.down_fluxes(suns)
+    all_up = flat.up_flux(_TOP_MU0)
     found = []
-    for tau, mu0, up, diffuse, direct in zip(*columns.values(), strict=True):
+    for tau, mu0, up, diffuse, _ in zip(*columns.values(), strict=True):
         place = np.searchsorted(suns, mu0), CASES.index((tau, 0.0))
         our_diffuse, our_direct = float(all_diffuse[place]), float(all_direct[place])
         key = f"tau{tau:g}-mu0{mu0:g}"
@@ -32,11 +34,10 @@ def checks(flat: FlatSky) -> tuple[Check, ...]:
             f"optical depth {tau:g}, black ground, sun {np.degrees(np.arcsin(mu0)):.1f}° up (μ₀ {mu0:g}), "
             "incident normal flux π"
         )
-        found.append(_flux(f"flux-diffuse-{key}", "Diffuse flux reaching the ground", where, diffuse, our_diffuse))
-        if mu0 == _DIRECT_MU0:
-            found.append(_flux(f"flux-direct-{key}", "Direct flux reaching the ground", where, direct, our_direct))
-        if mu0 == _BALANCE_MU0:
-            our_up = float(flat.up_flux(mu0)[place[1]])
+        if tau in _DIFFUSE_DEPTHS:
+            found.append(_flux(f"flux-diffuse-{key}", "Diffuse flux reaching the ground", where, diffuse, our_diffuse))
+        if mu0 == _TOP_MU0:
+            our_up = float(all_up[place[1]])
             found.append(_flux(f"flux-up-{key}", "Flux leaving at the top", where, up, our_up))
             found.append(_balance(f"flux-balance-{key}", where, (our_up + our_diffuse + our_direct) / (np.pi * mu0)))
     return tuple(found)

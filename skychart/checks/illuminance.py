@@ -47,7 +47,7 @@ def checks(sky: StandardSky) -> tuple[Check, ...]:
 def _check(solar_elevation_deg: int, published: float, computed: float) -> Check:
     high = solar_elevation_deg >= _HIGH_SUN_DEG
     return Check(
-        key=f"illuminance-usno1987-{solar_elevation_deg}",
+        key=f"illuminance-usno1987-sun{solar_elevation_deg:+d}",
         topic=TOPIC,
         quantity="Illuminance by sun and sky, log₁₀ of lux",
         conditions=(

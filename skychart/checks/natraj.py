@@ -19,23 +19,15 @@ POLARISATION_LIMIT = 0.01
 
 _ROWS = (  # Stokes component, optical depth, albedo, mu0, mu, azimuth
     ("I", 0.02, 0.0, 0.1, 1.0, 0),
-    ("I", 0.02, 0.0, 0.8, 0.2, 120),
     ("I", 0.05, 0.0, 0.2, 0.02, 0),
-    ("I", 0.05, 0.0, 0.6, 0.4, 90),
     ("I", 0.1, 0.0, 0.1, 0.1, 180),
     ("I", 0.1, 0.0, 0.6, 0.64, 0),
-    ("I", 0.1, 0.25, 0.6, 0.4, 90),
-    ("I", 0.1, 0.8, 0.2, 1.0, 0),
-    ("I", 0.15, 0.0, 0.4, 0.72, 60),
     ("I", 0.25, 0.0, 0.2, 1.0, 0),
-    ("I", 0.25, 0.0, 0.8, 0.16, 150),
     ("I", 0.25, 0.8, 0.8, 0.4, 90),
     ("I", 0.5, 0.0, 0.1, 1.0, 0),
     ("I", 0.5, 0.0, 0.92, 0.52, 180),
-    ("I", 0.5, 0.25, 0.2, 0.4, 180),
     ("I", 1.0, 0.0, 0.6, 0.84, 60),
     ("Q", 0.1, 0.0, 0.2, 1.0, 0),
-    ("Q", 0.25, 0.0, 0.6, 0.4, 180),
     ("Q", 0.5, 0.0, 0.4, 0.2, 90),
     ("U", 0.1, 0.0, 0.6, 0.64, 60),
     ("U", 0.5, 0.0, 0.8, 0.4, 120),
@@ -53,38 +45,42 @@ def polarisation(stokes: NDArray[np.float64]) -> NDArray[np.float64]:
 
 
 def checks(flat: FlatSky) -> tuple[Check, ...]:
-    """RMS of I, Q, U over the rows of each optical depth, worst polarisation over all rows, and single rows."""
+    """RMS of I over the rows of each optical depth, of Q and U and worst polarisation over all, and single rows."""
     columns, published, computed = flat.table_rows()
     error = (computed - published) / published[:, :1]
-    found = []
+    intensity = []
     for tau, limit in RMS_LIMIT.items():
         rows = columns["tau"] == tau
-        for component, name in enumerate("IQU"):
-            found.append(
-                _aggregate(
-                    key=f"natraj2009-rms-{name}-tau{tau:g}",
-                    quantity=f"RMS difference of {name}, as a share of I",
-                    conditions=f"all {rows.sum()} rows of optical depth {tau:g}",
-                    computed=rms(error[rows, component]),
-                    tolerance=limit,
-                )
+        conditions = f"all {rows.sum()} rows of optical depth {tau:g}"
+        intensity.append(
+            _aggregate(
+                f"rms-I-tau{tau:g}", "RMS difference of I, as a share of I", conditions, rms(error[rows, 0]), limit
             )
-    worst = np.abs(polarisation(computed) - polarisation(published)).max()
-    found.append(
-        _aggregate(
-            key="natraj2009-polarisation",
-            quantity="Greatest difference of the degree of polarisation",
-            conditions=f"all {len(published)} rows",
-            computed=float(worst),
-            tolerance=POLARISATION_LIMIT,
         )
+    conditions = f"all {len(published)} rows"
+    worst = float(np.abs(polarisation(computed) - polarisation(published)).max())
+    return (
+        *intensity,
+        *(
+            _aggregate(
+                f"rms-{name}",
+                f"RMS difference of {name}, as a share of I",
+                conditions,
+                rms(error[:, component]),
+                min(RMS_LIMIT.values()),
+            )
+            for component, name in ((1, "Q"), (2, "U"))
+        ),
+        _aggregate(
+            "polarisation", "Greatest difference of the degree of polarisation", conditions, worst, POLARISATION_LIMIT
+        ),
+        *(_row(flat, *row) for row in _ROWS),
     )
-    return (*found, *(_row(flat, *row) for row in _ROWS))
 
 
 def _aggregate(key: str, quantity: str, conditions: str, computed: float, tolerance: float) -> Check:
     return Check(
-        key=key,
+        key=f"natraj2009-{key}",
         topic=TOPIC,
         quantity=quantity,
         conditions=conditions,

@@ -24,9 +24,9 @@ _SETS = {  # column of the table: source, its own uncertainty, wavelengths compa
     "bogumil2003_223K": (
         "Bogumil et al. 2003, J. Photochem. Photobiol. A 157, 167, 223 K",
         0.031,
-        (500, 550, 575, 602, 650),
+        (500, 550, 602, 650),
     ),
-    "brion1998_295K": ("Brion et al. 1998, J. Atmos. Chem. 30, 291, 295 K", 0.015, (525, 550, 602)),
+    "brion1998_295K": ("Brion et al. 1998, J. Atmos. Chem. 30, 291, 295 K", 0.015, (525, 602)),
 }
 _SHAPES = {  # sets of which only the shape of the band is compared
     "burrows1999_221K": "Burrows et al. 1999, JQSRT 61, 509, 221 K",
@@ -83,7 +83,7 @@ def _shapes() -> list[Check]:
                 unit="1",
                 relative=True,
             )
-            for nm in (550, 575)
+            for nm in (550,)
         ]
     return found
 

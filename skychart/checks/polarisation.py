@@ -18,12 +18,11 @@ MAXIMUM_LIMIT = 0.01
 
 _SOURCE = "Natraj, Li & Yung 2009, Astrophys. J. 691, 1909 ({} derived here from their tables of I, Q, U)"
 _MAXIMA = (  # optical depth, albedo, mu0
-    (0.02, 0.0, 0.6), (0.1, 0.0, 0.2), (0.25, 0.0, 0.6), (0.5, 0.0, 0.2), (1.0, 0.0, 1.0),
-    (0.1, 0.25, 0.4), (0.25, 0.25, 0.8), (0.25, 0.8, 0.4),
+    (0.02, 0.0, 0.6), (0.1, 0.0, 0.2), (0.25, 0.0, 0.6), (1.0, 0.0, 1.0), (0.25, 0.8, 0.4),
 )  # fmt: skip
 _POINTS = (  # optical depth, mu0, name
-    (0.05, 0.8, "babinet"), (0.1, 0.2, "babinet"), (0.1, 0.2, "arago"), (0.1, 0.6, "brewster"), (0.25, 0.4, "babinet"),
-    (0.25, 0.8, "brewster"), (0.25, 0.1, "arago"), (0.5, 0.6, "babinet"), (1.0, 0.6, "brewster"),
+    (0.1, 0.2, "babinet"), (0.1, 0.2, "arago"), (0.1, 0.6, "brewster"), (0.25, 0.4, "babinet"), (0.25, 0.1, "arago"),
+    (1.0, 0.6, "brewster"),
 )  # fmt: skip
 _ARC_STEP_DEG = 0.5
 _POINT_TITLES = {

@@ -1,7 +1,8 @@
 """Shape of the sky's luminance against the CIE standard clear sky.
 
 Source: CIE S 011/E:2003 = ISO 15469:2004, Spatial distribution of daylight, type 12. The standard sky stands for
-measured clear air with some haze, so only features are compared, not values.
+measured clear air with some haze, so only features are compared, not values, and at low suns: at 45 degrees the aureole
+of the standard sky reaches the zenith, and its darkest point lies 11 degrees further from the sun than in air alone.
 """
 
 import functools
@@ -15,7 +16,7 @@ from skychart.checks.standard import StandardSky
 TOPIC = "Shape of the clear sky"
 
 _SOURCE = "CIE S 011/E:2003 = ISO 15469:2004, type 12 (coefficients in copies that agree; value derived here from them)"
-_SUNS_DEG = (15, 30, 45)
+_SUNS_DEG = (15, 30)
 _ARC_DEG = np.arange(2.0, 179.0, 0.5)  # principal plane: 0 the horizon below the sun, 90 the zenith
 _A, _B, _C, _D, _E = -1.0, -0.32, 10.0, -3.0, 0.45
 
@@ -29,7 +30,7 @@ def cie_clear_sky(solar_elevation_deg: float, arc_deg: ArrayLike) -> NDArray[np.
 
 
 def checks(sky: StandardSky) -> tuple[Check, ...]:
-    """Where the darkest point of the principal plane lies, and how dark it is, at three suns."""
+    """Where the darkest point of the principal plane lies, and how dark it is, at two suns."""
     suns = np.array(_SUNS_DEG, dtype=float)
     view = np.minimum(_ARC_DEG, 180 - _ARC_DEG)
     luminance = sky.sky_XYZ(suns[:, None], view, np.where(_ARC_DEG <= 90, 0.0, 180.0))[..., 1]

@@ -1,5 +1,6 @@
 """Light of the default atmosphere, for comparisons with measured skies."""
 
+import dataclasses
 import functools
 
 import numpy as np
@@ -33,9 +34,9 @@ class StandardSky:
         relative_azimuth_deg: ArrayLike,
         altitude_km: float = 0.0,
     ) -> NDArray[np.float64]:
-        """Sky light from a direction [cd/m² in Y], shape (..., 3)."""
-        stokes = self._sky.stokes(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg, altitude_km)
-        return stokes[..., 0, :] @ self._matrix
+        """Sky light from a direction [cd/m² in Y], shape (..., 3), for an observer at any altitude."""
+        seen = dataclasses.replace(self._sky, settings=AirSettings(altitude_km=altitude_km))
+        return seen.stokes(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)[..., 0, :] @ self._matrix
 
     def zenith_luminance(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> NDArray[np.float64]:
         """Luminance of the zenith [cd/m²], shape (...)."""

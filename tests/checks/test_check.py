@@ -4,6 +4,7 @@ import dataclasses
 import math
 
 import pytest
+
 from skychart.checks import Check, all_passed
 
 CHECK = Check(

@@ -1,7 +1,10 @@
 """The typed tables: provenance complete, digits as the formulas behind them demand."""
 
+import itertools
+
 import numpy as np
 import pytest
+
 from skychart.data.tables import load_table, table_names
 
 PUBLISHED = [name for name in table_names() if name.startswith("checks/published_")]
@@ -115,7 +118,7 @@ def test_maximum_polarisation_is_what_the_table_of_natraj_li_and_yung_2009_gives
 def test_coefficients_of_circular_171_join_where_their_ranges_meet() -> None:
     """The published pieces meet within 2 % from 90 to -12 degrees: a slipped digit would tear them apart."""
     pieces = list(zip(*columns("illuminance_usno171").values(), strict=True))
-    for (low, _, *upper), (_, high, *lower) in zip(pieces, pieces[1:], strict=False):
+    for (low, _, *upper), (_, high, *lower) in itertools.pairwise(pieces):
         assert low == high
         above, below = (np.polynomial.polynomial.polyval(low / 90, piece) for piece in (upper, lower))
         assert 10 ** (above - below) == pytest.approx(1, abs=0.02)
