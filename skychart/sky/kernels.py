@@ -1,7 +1,8 @@
 """Geometry of one more scattering, binned on the solution's nodes; the same for every wavelength."""
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 from numpy.typing import NDArray
@@ -37,19 +38,26 @@ class Window:
 class Kernels:
     """Kernels on (crossing, output, node, entry, window of source nodes); ``plain`` has no entry axis.
 
-    Outputs: the four entries, and at the ground its irradiance.
+    Outputs: the four entries, and at the ground its irradiance. Crossings stand in order of their level.
     """
 
+    window: Window
     level: NDArray[np.intp]
     weight: Array
     dipolar: NDArray[np.float32]
     plain: NDArray[np.float32]
 
+    def runs(self) -> Iterator[tuple[int, slice]]:
+        """Each level with the run of its crossings."""
+        starts = np.flatnonzero(np.diff(self.level, prepend=-1))
+        for start, stop in pairwise((*starts, len(self.level))):
+            yield int(self.level[start]), slice(int(start), int(stop))
+
 
 def bin_crossings(fan: Fan, some: NDArray[np.bool_], window: Window, chi: Array, shape: Shape) -> Kernels:
     """Kernels of the fan's crossings ``some`` (ray, 2, level) for sources at ``chi`` [rad]."""
     crossing = fan.coarse
-    ray, branch, level = np.nonzero(some)
+    level, ray, branch = np.nonzero(some.transpose(2, 0, 1))
     omega = fan.sight(chi)
     cos_there, cosine, sine = dipole.moved(
         crossing.cos_turn[ray, branch, level][:, None, None], crossing.sin_turn[ray, branch, level][:, None, None],
@@ -83,7 +91,7 @@ def bin_crossings(fan: Fan, some: NDArray[np.bool_], window: Window, chi: Array,
         .transpose(0, 2, 1, 3)
         .astype(np.float32, order="C")
     )
-    return Kernels(level, crossing.weight[ray, branch, level], dipolar, plain)
+    return Kernels(window, level, crossing.weight[ray, branch, level], dipolar, plain)
 
 
 def bin_ground(fan: Fan, strikes: NDArray[np.intp], chi: Array, shape: Shape) -> NDArray[np.float32]:

@@ -22,8 +22,6 @@ from skychart.sky.shells import Shells
 
 Array = NDArray[np.float64]
 
-_BLOCK = 11  # wavelengths held at once: some 80 MB each with the default grid
-
 
 @dataclass(frozen=True, eq=False)
 class Field:
@@ -56,11 +54,6 @@ def solve_field(
     tensor = np.stack([first.tensor for first in firsts])
     ground = direct + firsts[0].irradiance
     shapes = Shape.of(node_deg, dipole.trace(tensor[..., typical], 2)), Shape.of(node_deg, ground[None, :, typical])
-    solved, lit = np.empty(tensor.shape, np.float32), np.empty(ground.shape, np.float32)
-    for start in range(0, len(a), _BLOCK):
-        block = slice(start, start + _BLOCK)
-        operator = Operator(fans, block, chi, shapes, (a[block], b[block]), albedo[block])
-        solved[..., block], lit[..., block] = operator.sum_orders(tensor[..., block], ground[..., block])
-        del operator
+    solved, lit = Operator(fans, chi, shapes, (a, b), albedo).sum_orders(tensor, ground)
     scattered = lit - ground / shapes[1].at_node[0][:, None]
     return Field(altitude, *shapes, solved, lit, scattered.astype(np.float32))

@@ -1,7 +1,12 @@
-"""One more scattering of the whole field as a dense linear operator, and the sum of all orders."""
+"""One more scattering of the whole field as a dense linear operator, and the sum of all orders.
+
+The binned geometry is kept once; the matrix of each wavelength is made from it in a buffer that is used again, since
+it is the largest thing in memory.
+"""
 
 from collections.abc import Iterator
 from concurrent.futures import ThreadPoolExecutor
+from dataclasses import dataclass
 from itertools import pairwise
 
 import numpy as np
@@ -18,35 +23,44 @@ Single = NDArray[np.float32]
 THREADS = 2
 _LAST_ORDER = 1e-4
 _MOST_ORDERS = 200
-_REACHES_DEG = (4.0, 1.0)  # crossings that turn by less about the planet's centre see few source nodes
+_REACHES_DEG = (10.0, 4.0, 1.0)  # crossings that turn by less about the planet's centre see few source nodes
+
+
+@dataclass(frozen=True, eq=False)
+class Level:
+    """The geometry of all rays from one level: kernels by the reach of their rays, and of the ground seen."""
+
+    kernels: list[Kernels]
+    ground: Single  # (ray, entry, node, ground node)
+    ground_transmission: Array  # (ray, wavelength)
+
+    @classmethod
+    def of(cls, fan: Fan, chi: Array, shapes: tuple[Shape, Shape]) -> "Level":
+        """Bin a fan's crossings for sources at ``chi`` [rad] over the shapes of the tensor and of the ground."""
+        seen = fan.coarse.reached & (fan.coarse.weight.max(axis=3) > 0)
+        reach = np.abs(fan.coarse.sin_turn)
+        kernels = []
+        for nearest, farthest in pairwise((np.inf, *np.sin(np.radians(_REACHES_DEG)), -1.0)):
+            some = seen & (reach < nearest) & (reach >= farthest)
+            if some.any():
+                kernels.append(bin_crossings(fan, some, Window.of(chi, nearest), chi, shapes[0]))
+        strikes = np.nonzero(fan.coarse.ground.any(axis=1))[0]
+        return cls(kernels, bin_ground(fan, strikes, chi, shapes[1]), fan.coarse.ground[strikes])
 
 
 class Operator:
-    """The operator of some wavelengths. All states are over the shapes.
-
-    ``between`` (wavelength, level, source level, entry x node, source entry x node);
-    ``from_ground`` (wavelength, level, entry x node, ground node);
-    ``to_ground`` (wavelength, source level, ground node, source entry x node).
-    """
+    """The operator at every wavelength. States are over the shapes: (level, entry, node), then (ground node)."""
 
     def __init__(
-        self,
-        fans: list[Fan],
-        block: slice,
-        chi: Array,
-        shapes: tuple[Shape, Shape],
-        coefficients: tuple[Array, Array],
-        albedo: Array,
+        self, fans: list[Fan], chi: Array, shapes: tuple[Shape, Shape], coefficients: tuple[Array, Array], albedo: Array
     ) -> None:
-        self.block, self.chi, self.albedo = block, chi, albedo
-        self.tensor_shape, self.ground_shape = shapes
-        self.a, self.b = coefficients
-        count, levels, points = len(albedo), len(fans), dipole.ENTRIES * len(chi)
-        self.between = np.zeros((count, levels, levels, points, points), np.float32)
-        self.from_ground = np.zeros((count, levels, points, len(chi)), np.float32)
-        self.to_ground = np.zeros((count, levels, len(chi), points), np.float32)
+        self.nodes = len(chi)
+        self.rows = dipole.ENTRIES * self.nodes
+        self.coefficients, self.albedo = coefficients, albedo
         with ThreadPoolExecutor(THREADS) as pool:
-            list(pool.map(self._fill, fans))
+            self.levels = list(pool.map(lambda fan: Level.of(fan, chi, shapes), fans))
+        repeated = np.repeat(shapes[0].at_node[:, None], dipole.ENTRIES, axis=1)
+        self.shape = np.append(repeated.ravel(), shapes[1].at_node[0]).astype(np.float32)
 
     def sum_orders(self, tensor: Array, ground: Array) -> tuple[Single, Single]:
         """All orders from the first: ``tensor`` (level, node, entry, wavelength), ``ground`` (node, wavelength).
@@ -54,74 +68,60 @@ class Operator:
         The results have the same shapes and are divided by the Shape's values. Orders are added until one adds less
         than 1e-4 of the sum anywhere.
         """
-        levels, nodes, entries, count = tensor.shape
-        over_tensor = (
-            np.repeat(self.tensor_shape.at_node[:, None], entries, axis=1).reshape(levels, -1).astype(np.float32)
-        )
-        over_ground = self.ground_shape.at_node[0].astype(np.float32)
-        order = (tensor.transpose(3, 0, 2, 1).reshape(count, levels, -1) / over_tensor).astype(np.float32)
-        order_ground = (ground.T / over_ground).astype(np.float32)
-        total, total_ground = order.copy(), order_ground.copy()
-        for _ in range(_MOST_ORDERS):
-            order, order_ground = (
-                (
-                    (self.between @ order[:, None, ..., None])[..., 0].sum(axis=2)
-                    + (self.from_ground @ order_ground[:, None, :, None])[..., 0]
-                )
-                / over_tensor,
-                (self.to_ground @ order[..., None])[..., 0].sum(axis=1) / over_ground,
+        flat = np.concatenate([tensor.transpose(3, 0, 2, 1).reshape(tensor.shape[3], -1), ground.T], axis=1)
+        first = (flat / self.shape).astype(np.float32)
+        with ThreadPoolExecutor(THREADS) as pool:
+            shares = [range(start, len(first), THREADS) for start in range(THREADS)]
+            sums = dict(
+                pair for part in pool.map(lambda share: list(self._sums(share, first)), shares) for pair in part
             )
-            total += order
-            total_ground += order_ground
-            if np.abs(order).max() < _LAST_ORDER * np.abs(total).max():
-                break
-        return total.reshape(count, levels, entries, nodes).transpose(1, 3, 2, 0), total_ground.T
+        total = np.stack([sums[wavelength] for wavelength in range(len(first))])
+        solved = total[:, : -self.nodes].reshape(-1, len(self.levels), dipole.ENTRIES, self.nodes)
+        return solved.transpose(1, 3, 2, 0), total[:, -self.nodes :].T
 
-    def _fill(self, fan: Fan) -> None:
-        """All rows of the fan's level."""
-        count, levels, nodes = len(self.a), self.between.shape[1], len(self.chi)
-        size = count, levels, dipole.ENTRIES, nodes, dipole.ENTRIES, nodes
-        rows = self.between[:, fan.level].reshape(size)
-        ground_rows = self.to_ground.reshape(count, levels, 1, nodes, dipole.ENTRIES, nodes)
-        seen = fan.coarse.reached & (fan.coarse.weight.max(axis=3) > 0)
-        reach = np.abs(fan.coarse.sin_turn)
-        for nearest, farthest in pairwise((np.inf, *np.sin(np.radians(_REACHES_DEG)), -1.0)):
-            some = seen & (reach < nearest) & (reach >= farthest)
-            if not some.any():
-                continue
-            window = Window.of(self.chi, nearest)
-            blocks = self._contract(bin_crossings(fan, some, window, self.chi, self.tensor_shape))
-            if window.width == nodes:
-                for level, block in blocks:
-                    rows[:, level] += block[:, : dipole.ENTRIES]
-                    if fan.level == 0:
-                        ground_rows[:, level] += block[:, dipole.ENTRIES :]
-                continue
-            sums = np.zeros(
-                (count, levels, dipole.ENTRIES + (fan.level == 0), nodes, dipole.ENTRIES, window.width), np.float32
+    def _sums(self, wavelengths: range, first: Single) -> Iterator[tuple[int, Single]]:
+        matrix = np.empty((len(self.shape), len(self.shape)), np.float32)
+        for wavelength in wavelengths:
+            self._fill(matrix, wavelength)
+            order = first[wavelength]
+            total = order.copy()
+            for _ in range(_MOST_ORDERS):
+                order = (matrix @ order) / self.shape
+                total += order
+                if np.abs(order).max() < _LAST_ORDER * np.abs(total).max():
+                    break
+            yield wavelength, total
+
+    def _fill(self, matrix: Single, wavelength: int) -> None:
+        matrix.fill(0)
+        count, size = len(self.levels), (dipole.ENTRIES, self.nodes)
+        to_ground = matrix[-self.nodes :, : -self.nodes].reshape(1, self.nodes, count, *size)
+        for number, level in enumerate(self.levels):
+            own = matrix[number * self.rows : (number + 1) * self.rows]
+            rows = own[:, : -self.nodes].reshape(*size, count, *size)
+            for kernels in level.kernels:
+                sums = self._weighted(kernels, wavelength)
+                for x, first in enumerate(kernels.window.first):
+                    sources = slice(first, first + kernels.window.width)
+                    rows[:, x, ..., sources] += sums[:, : dipole.ENTRIES, x].swapaxes(0, 1)
+                    if number == 0:
+                        to_ground[:, x, ..., sources] += sums[:, dipole.ENTRIES :, x].swapaxes(0, 1)
+            radiance = self.albedo[wavelength] / np.pi * level.ground_transmission[:, wavelength]
+            own[:, -self.nodes :] = np.tensordot(radiance, level.ground, axes=1).reshape(self.rows, self.nodes)
+
+    def _weighted(self, kernels: Kernels, wavelength: int) -> Single:
+        """The kernels with a wavelength's path weights, summed by source level: (level, output, node, entry, window)."""
+        size = kernels.dipolar.shape[1:]
+        sums = np.zeros((len(self.levels), *size), np.float32)
+        a, b = (coefficient[wavelength] for coefficient in self.coefficients)
+        weight = kernels.weight[:, wavelength]
+        dipolar_weight, plain_weight = (a * weight).astype(np.float32), (b * weight).astype(np.float32)
+        traced = [entry for entry, part in enumerate(dipole.TRACE) if part]
+        for level, run in kernels.runs():
+            block = sums[level]
+            np.matmul(
+                dipolar_weight[run], kernels.dipolar[run].reshape(run.stop - run.start, -1), out=block.reshape(-1)
             )
-            for level, block in blocks:
-                sums[:, level] = block
-            for x, first in enumerate(window.first):
-                sources = slice(first, first + window.width)
-                rows[:, :, :, x, :, sources] += sums[:, :, : dipole.ENTRIES, x]
-                if fan.level == 0:
-                    ground_rows[:, :, :, x, :, sources] += sums[:, :, dipole.ENTRIES :, x]
-        strikes = np.nonzero(fan.coarse.ground.any(axis=1))[0]
-        radiance = (self.albedo / np.pi) * fan.coarse.ground[strikes, self.block]
-        lit = np.tensordot(radiance.T, bin_ground(fan, strikes, self.chi, self.ground_shape), axes=1)
-        self.from_ground[:, fan.level] = lit.reshape(count, -1, nodes)
-
-    def _contract(self, kernels: Kernels) -> Iterator[tuple[int, Single]]:
-        """Each source level's kernels weighted and summed: (wavelength, output, node, entry, window)."""
-        count, size = len(self.a), kernels.dipolar.shape[1:]
-        for level in np.unique(kernels.level):
-            here = kernels.level == level
-            weight = kernels.weight[here, self.block].T
-            dipolar = (self.a[:, None] * weight).astype(np.float32) @ kernels.dipolar[here].reshape(here.sum(), -1)
-            plain = (self.b[:, None] * weight).astype(np.float32) @ kernels.plain[here].reshape(here.sum(), -1)
-            block, plain = dipolar.reshape(count, *size), plain.reshape(count, *size[:2], size[3])
-            for entry, traced in enumerate(dipole.TRACE):
-                if traced:
-                    block[..., entry, :] += plain
-            yield int(level), block
+            plain = plain_weight[run] @ kernels.plain[run].reshape(run.stop - run.start, -1)
+            block[..., traced, :] += plain.reshape(*size[:2], 1, size[3])
+        return sums
