@@ -39,7 +39,9 @@ def checks(flat: FlatSky) -> tuple[Check, ...]:
         if mu0 == _TOP_MU0:
             our_up = float(all_up[place[1]])
             found.append(_flux(f"flux-up-{key}", "Flux leaving at the top", where, up, our_up))
-            found.append(_balance(f"flux-balance-{key}", where, (our_up + our_diffuse + our_direct) / (np.pi * mu0)))
+            found.append(
+                _balance(f"flux-balance-{key}", where, float((our_up + our_diffuse + our_direct) / (np.pi * mu0)))
+            )
     return tuple(found)
 
 

@@ -24,7 +24,7 @@ _POINTS = (  # optical depth, mu0, name
     (0.1, 0.2, "babinet"), (0.1, 0.2, "arago"), (0.1, 0.6, "brewster"), (0.25, 0.4, "babinet"), (0.25, 0.1, "arago"),
     (1.0, 0.6, "brewster"),
 )  # fmt: skip
-_ARC_STEP_DEG = 0.5
+_ARC_STEP_DEG = 1.0
 _POINT_TITLES = {
     "babinet": "Babinet point, distance above the sun",
     "brewster": "Brewster point, distance below the sun",

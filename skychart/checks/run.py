@@ -1,5 +1,7 @@
 """Every check, with the physics solved once and shared."""
 
+from collections.abc import Iterable
+
 from skychart.checks import (
     chromaticity,
     colorimetry,
@@ -18,11 +20,15 @@ from skychart.checks import (
 from skychart.checks.check import Check
 from skychart.checks.flat import FlatSky
 from skychart.checks.standard import StandardSky
+from skychart.sky.spectral import SpectralSky
 
 
-def run_checks() -> tuple[Check, ...]:
-    """Every published value beside the computed one, by topic: from the optics of air to the colours of the sky."""
-    flat, standard = FlatSky(), StandardSky()
+def run_checks(solved: Iterable[SpectralSky] = ()) -> tuple[Check, ...]:
+    """Every published value beside the computed one, by topic: from the optics of air to the colours of the sky.
+
+    ``solved``: skies at hand, to spare the time of solving that of the default settings again if it is among them.
+    """
+    flat, standard = FlatSky(), StandardSky(solved)
     return (
         *rayleigh.checks(),
         *depolarisation.checks(flat),

@@ -1,7 +1,7 @@
 """Light of the default atmosphere, for comparisons with measured skies."""
 
 import dataclasses
-import functools
+from collections.abc import Iterable
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -14,13 +14,11 @@ from skychart.sky.spectral import SpectralSky, solve_spectral
 class StandardSky:
     """The molecular sky of the default settings (18 % ground, 300 Dobson units), as CIE 1931 tristimulus values."""
 
-    @functools.cached_property
-    def _sky(self) -> SpectralSky:
-        return solve_spectral(AirSettings())
-
-    @functools.cached_property
-    def _matrix(self) -> NDArray[np.float64]:
-        return tristimulus_matrix(self._sky.wavelength_nm)
+    def __init__(self, solved: Iterable[SpectralSky] = ()) -> None:
+        """Take the sky of the default settings from those already ``solved``, or solve it."""
+        wanted = AirSettings()
+        self._sky = next((sky for sky in solved if sky.settings == wanted), None) or solve_spectral(wanted)
+        self._matrix = tristimulus_matrix(self._sky.wavelength_nm)
 
     def horizontal_XYZ(self, solar_elevation_deg: ArrayLike) -> NDArray[np.float64]:
         """Sun and sky on the horizontal ground [lx in Y], shape (..., 3)."""

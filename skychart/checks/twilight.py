@@ -18,12 +18,14 @@ TOPIC = "Zenith in twilight"
 
 _KOOMEN = "Koomen et al. 1952, J. Opt. Soc. Am. 42, 353, {} (measured; one secondary copy)"
 _CD_M2_PER_CD_FT2 = 10.7639
-_SITES = {  # place as printed, altitude computed for
-    "sacramento_peak": ("Sacramento Peak, 2800 m", 2.8),
-    "maryland": ("Maryland, 30 m, computed at sea level", 0.0),
+_SITES = {  # column of the table: place as printed
+    "sacramento_peak": "Sacramento Peak, 2800 m",
+    "maryland": "Maryland, 30 m, computed at sea level",
 }
-_LOWEST_SUN_DEG = -9
-_PARANAL_KM = 2.6
+_MOUNTAIN_KM = 2.8
+_COMPARED_DEG = (0.0, -3.0, -6.0, -9.0)  # with Koomen's luminances
+_SEA_RATE_DEG = (-3.0, -11.0)
+_MOUNTAIN_RATE_DEG = (-5.0, -10.0)
 
 
 def koomen1952_zenith_luminance(site: str) -> tuple[NDArray[np.float64], NDArray[np.float64]]:
@@ -34,77 +36,82 @@ def koomen1952_zenith_luminance(site: str) -> tuple[NDArray[np.float64], NDArray
 
 def checks(sky: StandardSky) -> tuple[Check, ...]:
     """Luminance at two sites, and the rate at which the zenith darkens."""
-    return (*_koomen(sky), *_koomen_rate(sky), *_patat_rate(sky))
+    sea = _luminances(sky, {*_COMPARED_DEG, *_SEA_RATE_DEG}, 0.0)
+    mountain = _luminances(sky, {*_COMPARED_DEG, *_MOUNTAIN_RATE_DEG}, _MOUNTAIN_KM)
+    return (
+        *_koomen("sacramento_peak", mountain),
+        *_koomen("maryland", sea),
+        _koomen_rate(_darkening(sea, *_SEA_RATE_DEG)),
+        _patat_rate(_darkening(mountain, *_MOUNTAIN_RATE_DEG)),
+    )
 
 
-def _koomen(sky: StandardSky) -> list[Check]:
-    found = []
-    for site, (title, altitude_km) in _SITES.items():
-        elevation, measured = koomen1952_zenith_luminance(site)
-        compared = elevation >= _LOWEST_SUN_DEG
-        computed = sky.zenith_luminance(elevation[compared], altitude_km)
-        found += [
-            Check(
-                key=f"zenith-koomen1952-{site}-sun{sun:+g}",
-                topic=TOPIC,
-                quantity="Zenith luminance, log₁₀ of cd/m²",
-                conditions=f"{title}, sun at {sun:g}°; {published:.3g} against {value:.3g} cd/m² here",
-                source=_KOOMEN.format("Tables I and II"),
-                published=math.log10(published),
-                computed=math.log10(value),
-                tolerance=math.log10(2),
-                tolerance_reason="a factor 2: one or two printed digits, one evening, haze of that air unknown",
-                unit="log₁₀ cd/m²",
-                relative=False,
-            )
-            for sun, published, value in zip(elevation[compared], measured[compared], computed, strict=True)
-        ]
-    return found
+def _luminances(sky: StandardSky, suns_deg: set[float], altitude_km: float) -> dict[float, float]:
+    suns = np.array(sorted(suns_deg))
+    return dict(zip(suns.tolist(), sky.zenith_luminance(suns, altitude_km).tolist(), strict=True))
 
 
-def _koomen_rate(sky: StandardSky) -> list[Check]:
+def _darkening(luminance: dict[float, float], from_deg: float, to_deg: float) -> float:
+    """Mean rate [magnitudes per degree] at which the zenith darkens while the sun sinks."""
+    return 2.5 * math.log10(luminance[from_deg] / luminance[to_deg]) / (from_deg - to_deg)
+
+
+def _koomen(site: str, luminance: dict[float, float]) -> list[Check]:
+    measured = dict(zip(*koomen1952_zenith_luminance(site), strict=True))
     return [
         Check(
-            key="zenith-koomen1952-rate",
+            key=f"zenith-koomen1952-{site}-sun{sun:+g}",
             topic=TOPIC,
-            quantity="Darkening of the zenith per degree of sun",
-            conditions="sea level, mean from a sun of −3° to −11°",
-            source=_KOOMEN.format("abstract: the sky changes by about a factor 10 in 2°"),
-            published=1.25,
-            computed=_darkening(sky, -3.0, -11.0, 0.0),
-            tolerance=0.125,
-            tolerance_reason="10 %: “about”",
-            unit="mag/°",
+            quantity="Zenith luminance, log₁₀ of cd/m²",
+            conditions=(
+                f"{_SITES[site]}, sun at {sun:g}°; published {measured[sun]:.3g} cd/m², "
+                f"computed {luminance[sun]:.3g} cd/m² without haze"
+            ),
+            source=_KOOMEN.format("Tables I and II"),
+            published=math.log10(measured[sun]),
+            computed=math.log10(luminance[sun]),
+            tolerance=math.log10(2),
+            tolerance_reason="a factor 2: one or two printed digits, haze of that air unknown",
+            unit="log₁₀ cd/m²",
             relative=False,
         )
+        for sun in _COMPARED_DEG
     ]
 
 
-def _patat_rate(sky: StandardSky) -> list[Check]:
+def _koomen_rate(computed: float) -> Check:
+    return Check(
+        key="zenith-koomen1952-rate",
+        topic=TOPIC,
+        quantity="Darkening of the zenith per degree of sun",
+        conditions="sea level, mean from a sun of −3° to −11°",
+        source=_KOOMEN.format("abstract: the sky changes by about a factor 10 in 2°"),
+        published=1.25,
+        computed=computed,
+        tolerance=0.125,
+        tolerance_reason="10 %: “about”",
+        unit="mag/°",
+        relative=False,
+    )
+
+
+def _patat_rate(computed: float) -> Check:
     columns = load_table("checks/published_zenith_twilight_patat2006").columns
     (band,) = np.flatnonzero(columns["band"] == "V")
     linear, square, rms_mag = (float(columns[name][band]) for name in ("a1", "a2", "rms_mag"))
-    return [
-        Check(
-            key="zenith-patat2006-rate",
-            topic=TOPIC,
-            quantity="Darkening of the zenith per degree of sun",
-            conditions="Paranal, 2600 m, mean from a sun of −5° to −10°; band V there, luminance here",
-            source=(
-                "Patat, Ugolnikov & Postylyakov 2006, Astron. Astrophys. 455, 385, Table 1, measured "
-                "(derived here from the published fit, read in copies that agree)"
-            ),
-            published=linear + 5 * square,
-            computed=_darkening(sky, -5.0, -10.0, _PARANAL_KM),
-            tolerance=math.sqrt(2) * rms_mag / 5,
-            tolerance_reason=f"the stated scatter of {rms_mag} mag at either end, over 5°",
-            unit="mag/°",
-            relative=False,
-        )
-    ]
-
-
-def _darkening(sky: StandardSky, from_deg: float, to_deg: float, altitude_km: float) -> float:
-    """Mean rate [magnitudes per degree] at which the zenith darkens while the sun sinks."""
-    start, end = sky.zenith_luminance(np.array([from_deg, to_deg]), altitude_km)
-    return float(2.5 * np.log10(start / end) / (from_deg - to_deg))
+    return Check(
+        key="zenith-patat2006-rate",
+        topic=TOPIC,
+        quantity="Darkening of the zenith per degree of sun",
+        conditions="Paranal, 2600 m (computed for 2800 m), sun from −5° to −10°; band V there, luminance here",
+        source=(
+            "Patat, Ugolnikov & Postylyakov 2006, Astron. Astrophys. 455, 385, Table 1, measured "
+            "(derived here from the published fit, read in copies that agree)"
+        ),
+        published=linear + 5 * square,
+        computed=computed,
+        tolerance=math.sqrt(2) * rms_mag / 5,
+        tolerance_reason=f"the stated scatter of {rms_mag} mag at either end, over 5°",
+        unit="mag/°",
+        relative=False,
+    )
