@@ -130,8 +130,8 @@ def _row(check: Check) -> CheckRow:
         source=check.source,
         published=spaced(_value(check.published, decimals)),
         computed=spaced(_value(check.computed, decimals)),
-        difference=_difference(check),
-        tolerance=f"{100 * check.tolerance:.2g} %" if check.relative else spaced(significant(check.tolerance, 2)),
+        difference=_signed(f"{_percent(check.difference)} %" if check.relative else _value(check.difference, decimals)),
+        tolerance=f"{_percent(check.tolerance)} %" if check.relative else spaced(_value(check.tolerance, decimals)),
         reason=check.tolerance_reason,
         unit="" if check.unit == "1" else check.unit,
         verdict="met" if check.passed else "missed",
@@ -150,11 +150,12 @@ def _value(value: float, decimals: int | None) -> str:
     return significant(value, _DIGITS) if decimals is None else fixed(value, decimals)
 
 
-def _difference(check: Check) -> str:
-    if np.isnan(check.difference):
-        return spaced("")
-    text = f"{100 * check.difference:.2g} %" if check.relative else significant(check.difference, 2)
-    return spaced(text) if text.startswith("-") else f"+{text}"
+def _percent(share: float) -> str:
+    return significant(100 * share, 2)
+
+
+def _signed(text: str) -> str:
+    return spaced(text) if text.startswith("-") or not text.strip(" %") else f"+{text}"
 
 
 def _course(survey: Survey) -> LightCourse:

@@ -76,18 +76,18 @@ def _columns(values: Reading, colours: Colours, shown_hex: list[str]) -> list[tu
     def text(key: str, head: str, group: str, cells: list[str]):
         return Column(key, head, "", group), cells
 
-    chroma, balance, light = "Chromaticity", "Colour of light", "Light"
+    balance, light = "Colour of light", "Light"
     found = [
         of("luminance_cd_m2", "Luminance", "cd/m²", light, values.luminance_cd_m2, significant, 4),
         of("ev100", "EV100", "EV", light, colours.ev100, fixed, 2),
         *(
-            of(axis, axis, "cd/m²", "Tristimulus values", values.XYZ[:, i], significant, 4)
+            of(axis, axis, "cd/m²", "CIE XYZ", values.XYZ[:, i], significant, 4)
             for i, axis in enumerate("XYZ")
         ),
-        of("x", "x", "", chroma, values.xy[:, 0], fixed, 4),
-        of("y", "y", "", chroma, values.xy[:, 1], fixed, 4),
-        of("u_prime", "u′", "", chroma, values.uv_prime[:, 0], fixed, 4),
-        of("v_prime", "v′", "", chroma, values.uv_prime[:, 1], fixed, 4),
+        of("x", "x", "", "CIE xy", values.xy[:, 0], fixed, 4),
+        of("y", "y", "", "CIE xy", values.xy[:, 1], fixed, 4),
+        of("u_prime", "u′", "", "CIE u′v′", values.uv_prime[:, 0], fixed, 4),
+        of("v_prime", "v′", "", "CIE u′v′", values.uv_prime[:, 1], fixed, 4),
         of("cct_k", "CCT", "K", balance, values.cct_k, significant, 4),
         of("duv", "Duv", "", balance, values.duv, fixed, 4),
         of("dominant_wavelength_nm", "Dominant", "nm", balance, colours.dominant_wavelength_nm, fixed, 1),
@@ -97,8 +97,8 @@ def _columns(values: Reading, colours: Colours, shown_hex: list[str]) -> list[tu
         for i, channel in enumerate("RGB"):
             key = f"{space}_{channel.lower()}"
             numbers = values.rgb[space][:, i]
-            found.append(of(key, channel, "cd/m²", f"{SPACE_TITLES[space]} linear", numbers, significant, 4))
-    inside = "Inside the gamut of"
+            found.append(of(key, channel, "", f"{SPACE_TITLES[space]} linear", numbers, significant, 4))
+    inside = "Inside"
     for space in GAMUTS:
         cells = ["yes" if flag else "no" for flag in values.in_gamut[space]]
         found.append(text(f"in_{space}", SPACE_TITLES[space], inside, cells))

@@ -6,10 +6,10 @@ import numpy as np
 
 from skychart.charts.columns import Column, NumberTable, number_table
 from skychart.charts.curves import Chromaticities
-from skychart.charts.exposure import exposures, swatches
+from skychart.charts.exposure import Exposure, Swatch, exposures, swatches
 from skychart.charts.numbers import degrees, significant, spaced
 from skychart.charts.reading import Reading, read_colours
-from skychart.charts.sheet import Block, block, rendering_note, sheet_stem
+from skychart.charts.sheet import Block, block, rendering_note, sheet_stem, stops_block
 from skychart.charts.survey import Direction, Survey, azimuth_index, elevation_index
 
 LABELS = (Column("solar_elevation_deg", "Sun elevation", "°", ""),)
@@ -85,15 +85,20 @@ def _bands(survey: Survey, readings: Reading, stems: list[str]) -> tuple[Band, .
     bands = []
     for shown in zip(*by_sun, strict=True):
         colours = [swatches(readings.XYZ[i : i + 1], exposure)[0] for i, exposure in enumerate(shown)]
-        blocks = [
-            block(i, readings, colours[i], stems[i], f"Sun {degrees(float(survey.solar_elevation_deg[i]))}")
-            for i in range(len(colours))
-        ]
+        blocks = [_block(exposure, i, readings, colours[i], stems[i]) for i, exposure in enumerate(shown)]
         bands.append(Band(shown[0].title, _band_note(shown[0].key, shown[0].display_white_cd_m2), tuple(blocks)))
     return tuple(bands)
 
 
+def _block(exposure: Exposure, sun: int, readings: Reading, colour: Swatch, anchor: str) -> Block:
+    """Luminance and chromaticity in the first exposure, distance from display white in the others."""
+    if exposure.key == "own":
+        return block(sun, readings, colour, anchor)
+    return stops_block(float(readings.luminance_cd_m2[sun]), exposure.display_white_cd_m2, colour, anchor)
+
+
 def _band_note(key: str, white: float) -> str:
     if key == "fixed":
-        return f"Display white is {spaced(significant(white, 3))} cd/m² for every sun."
-    return f"Set anew for each sun. {rendering_note(key)}"
+        return f"Display white is {spaced(significant(white, 3))} cd/m² for every sun. Printed: stops from display white."
+    printed = "luminance in cd/m², chromaticity x y" if key == "own" else "stops from the card"
+    return f"Set anew for each sun. {rendering_note(key)} Printed: {printed}."

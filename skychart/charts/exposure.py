@@ -22,7 +22,7 @@ INK_THRESHOLD = 0.179
 
 @dataclass(frozen=True)
 class Swatch:
-    """A colour as the page shows it: sRGB fallback, CSS colour for wide screens, and the ink that reads on it."""
+    """A colour as the page shows it: sRGB code, a CSS colour where sRGB is too small, and the ink that reads on it."""
 
     hex: str
     css: str
@@ -40,14 +40,19 @@ class Exposure:
 
     def screen(self, XYZ: np.ndarray, space: str = "srgb") -> np.ndarray:
         """Encoded channels in 0..1 of absolute `XYZ` [cd m⁻²], shape (..., 3), on a `space` screen."""
-        seen = XYZ if self.white_XYZ is None else balance(XYZ, self.white_XYZ)
-        linear = np.clip(rgb(seen, space) / self.display_white_cd_m2, 0.0, None)
+        linear = np.clip(rgb(self._seen(XYZ), space) / self.display_white_cd_m2, 0.0, None)
         return encode_srgb(linear / np.maximum(linear.max(axis=-1, keepdims=True), 1.0))
 
     def over_range(self, XYZ: np.ndarray) -> np.ndarray:
         """Whether a colour is brighter than an sRGB screen at this exposure can show, shape (...)."""
-        seen = XYZ if self.white_XYZ is None else balance(XYZ, self.white_XYZ)
-        return rgb(seen, "srgb").max(axis=-1) > self.display_white_cd_m2
+        return rgb(self._seen(XYZ), "srgb").max(axis=-1) > self.display_white_cd_m2
+
+    def inside_srgb(self, XYZ: np.ndarray) -> np.ndarray:
+        """Whether a colour's chromaticity lies inside sRGB, shape (...)."""
+        return rgb(self._seen(XYZ), "srgb").min(axis=-1) >= 0
+
+    def _seen(self, XYZ: np.ndarray) -> np.ndarray:
+        return XYZ if self.white_XYZ is None else balance(XYZ, self.white_XYZ)
 
 
 def exposures(sky_XYZ: np.ndarray, card_XYZ: np.ndarray) -> tuple[Exposure, Exposure, Exposure]:
@@ -69,14 +74,15 @@ def swatches(XYZ: np.ndarray, exposure: Exposure) -> tuple[Swatch, ...]:
     """Swatches of `XYZ`, shape (n, 3)."""
     bytes_srgb = np.rint(exposure.screen(XYZ) * 255).astype(int)
     wide = exposure.screen(XYZ, "display-p3")
+    beyond = ~exposure.inside_srgb(XYZ)
     luminance = _relative_luminance(bytes_srgb / 255)
     return tuple(
         Swatch(
             hex="#{:02x}{:02x}{:02x}".format(*code),
-            css="color(display-p3 {:.3f} {:.3f} {:.3f})".format(*channels).replace(" 0.", " ."),
+            css="color(display-p3 {:.3f} {:.3f} {:.3f})".format(*channels).replace(" 0.", " .") if more else "",
             ink="dark" if bright > INK_THRESHOLD else "light",
         )
-        for code, channels, bright in zip(bytes_srgb, wide, luminance, strict=True)
+        for code, channels, more, bright in zip(bytes_srgb, wide, beyond, luminance, strict=True)
     )
 
 

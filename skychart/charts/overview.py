@@ -12,7 +12,7 @@ from skychart.charts.reading import read_colours
 from skychart.charts.sheet import sheet_stem
 from skychart.charts.survey import DIRECTIONS, Survey, azimuth_index, elevation_index
 
-BANDS = (("toward", "Toward the sun", 0.0), ("beside", "Beside the sun, 90°", 90.0), ("away", "Away from the sun", 180.0))
+BANDS = (("toward", "Toward the sun", 0.0), ("beside", "Beside the sun", 90.0), ("away", "Away from the sun", 180.0))
 _COLUMNS = (
     Column("sun_lx", "Sun", "lx", "Level ground"),
     Column("sky_lx", "Sky", "lx", "Level ground"),
@@ -39,11 +39,10 @@ class DayBand:
 
 @dataclass(frozen=True)
 class DayColumn:
-    """A column of the picture: where it leads and what it is, in words."""
+    """A column of the picture: its sun, and the stem of the sheet it leads to."""
 
     label: str
     stem: str
-    title: str
 
 
 @dataclass(frozen=True)
@@ -63,9 +62,7 @@ def overview(survey: Survey) -> Overview:
     own = [exposures(sky, card)[0] for sky, card in zip(survey.sky_XYZ, survey.card_XYZ, strict=True)]
     bands = [DayBand(key, title, survey.stokes_XYZ[:, :, azimuth_index(at), 0]) for key, title, at in BANDS]
     rows = _rows(survey)
-    columns = [
-        DayColumn(row.labels[0], row.anchor, f"Sun {row.labels[0]}: zenith {row.cells[5]} cd/m²") for row in rows
-    ]
+    columns = [DayColumn(row.labels[0], row.anchor) for row in rows]
     return Overview(survey.air.name, tuple(columns), tuple(own), tuple(bands), _COLUMNS, rows)
 
 

@@ -21,18 +21,20 @@ class Sky(Protocol):
     """What charts ask of a sky; `skychart.sky.spectral.SpectralSky` is one."""
 
     settings: AirSettings
-    wavelength_nm: np.ndarray
+
+    @property
+    def wavelength_nm(self) -> np.ndarray:
+        """Wavelengths of all spectra [nm], ascending, shape (wavelength,)."""
 
     def stokes(
         self,
         solar_elevation_deg: np.ndarray | float,
         view_elevation_deg: np.ndarray | float,
         relative_azimuth_deg: np.ndarray | float,
-        altitude_km: float = 0.0,
     ) -> np.ndarray:
         """I, Q, U of the diffuse light per unit solar irradiance [sr⁻¹], shape (..., 3, wavelength)."""
 
-    def beam(self, solar_elevation_deg: np.ndarray | float, altitude_km: float = 0.0) -> np.ndarray:
+    def beam(self, solar_elevation_deg: np.ndarray | float) -> np.ndarray:
         """Direct transmission, shape (..., wavelength)."""
 
     def ground_irradiance(self, solar_elevation_deg: np.ndarray | float) -> tuple[np.ndarray, np.ndarray]:
@@ -73,7 +75,7 @@ def reading(
     """
     angles = np.broadcast_arrays(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
     matrix = tristimulus_matrix(sky.wavelength_nm, observer)
-    stokes_XYZ = sky.stokes(*angles, altitude_km=sky.settings.altitude_km) @ matrix
+    stokes_XYZ = sky.stokes(*angles) @ matrix
     diffuse, direct = sky.ground_irradiance(angles[0])
     card_luminance = ((diffuse + direct) @ matrix)[..., 1] / np.pi
     return read_colours(sky.settings.name, *angles, stokes_XYZ, card_luminance)[0]

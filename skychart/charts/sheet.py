@@ -21,23 +21,22 @@ from skychart.charts.reading import Reading, read_colours
 from skychart.charts.survey import Survey, azimuth_index, elevation_index
 from skychart.colour.differences import uv_prime
 
-TABLE_ELEVATION_DEG = (90.0, 75.0, 60.0, 45.0, 30.0, 20.0, 10.0, 5.0, 2.0, 0.0)
-TABLE_AZIMUTH_DEG = (0.0, 15.0, 30.0, 45.0, 60.0, 90.0, 120.0, 150.0, 180.0)
+TABLE_ELEVATION_DEG = (90.0, 60.0, 45.0, 30.0, 20.0, 10.0, 5.0, 2.0, 0.0)
+TABLE_AZIMUTH_DEG = (0.0, 15.0, 30.0, 60.0, 90.0, 135.0, 180.0)
 LABELS = (
     Column("view_elevation_deg", "View elevation", "°", ""),
-    Column("relative_azimuth_deg", "Azimuth from the sun", "°", ""),
+    Column("relative_azimuth_deg", "Azimuth", "°", ""),
 )
 DEEP_TWILIGHT_DEG = -6.0
 
 
 @dataclass(frozen=True)
 class Block:
-    """A block of the swatch table: its colour, the lines printed in it, its row and its name in words."""
+    """A block of the swatch table: its colour, the lines printed in it, and the anchor of its row of numbers."""
 
     swatch: Swatch
     lines: tuple[str, ...]
     anchor: str
-    title: str
     span: int = 1
 
 
@@ -51,7 +50,7 @@ class BlockRow:
 
 @dataclass(frozen=True)
 class Rendering:
-    """How one picture is shown, in words; `ink` reads on its middle."""
+    """How one picture is shown, in words; `ink` reads where its circles are labelled."""
 
     exposure: Exposure
     white: str
@@ -129,11 +128,18 @@ def sun_uv(survey: Survey, sun: int) -> np.ndarray | None:
     return uv_prime(survey.beam_XYZ[sun]) if survey.sun_XYZ[sun, 1] > 0 else None
 
 
-def block(reading_index: int, readings: Reading, swatch: Swatch, anchor: str, title: str, span: int = 1) -> Block:
+def block(reading_index: int, readings: Reading, swatch: Swatch, anchor: str, span: int = 1) -> Block:
     """A block that prints luminance and chromaticity."""
     luminance = spaced(significant(float(readings.luminance_cd_m2[reading_index]), 3))
     x, y = (fixed(float(value), 3).removeprefix("0") for value in readings.xy[reading_index])
-    return Block(swatch, (luminance, f"{x} {y}"), anchor, f"{title}: {luminance} cd/m², x {x}, y {y}", span)
+    return Block(swatch, (luminance, f"{x} {y}"), anchor, span)
+
+
+def stops_block(luminance_cd_m2: float, display_white_cd_m2: float, swatch: Swatch, anchor: str) -> Block:
+    """A block that prints how far its luminance lies from display white."""
+    stops = float(np.log2(luminance_cd_m2 / display_white_cd_m2))
+    text = spaced(fixed(stops, 1))
+    return Block(swatch, (text if stops < 0 else f"+{text}", "stops"), anchor)
 
 
 def rendering_note(key: str) -> str:
@@ -156,16 +162,12 @@ def _block_rows(
     rows = []
     for view in TABLE_ELEVATION_DEG:
         blocks = [
-            block(i, readings, colours[i], anchors[i], _title(*views[i]), len(TABLE_AZIMUTH_DEG) if view == 90 else 1)
+            block(i, readings, colours[i], anchors[i], len(TABLE_AZIMUTH_DEG) if view == 90 else 1)
             for i in range(len(views))
             if views[i][0] == view
         ]
         rows.append(BlockRow(degrees(view), tuple(blocks)))
     return tuple(rows)
-
-
-def _title(view: float, azimuth: float) -> str:
-    return "Zenith" if view == 90 else f"{view:g}° up, {azimuth:g}° from the sun"
 
 
 def _rendering(exposure: Exposure, sky_XYZ: np.ndarray) -> Rendering:
@@ -174,5 +176,5 @@ def _rendering(exposure: Exposure, sky_XYZ: np.ndarray) -> Rendering:
     if screen.max() < 0.5 / 255:
         note = "Every direction is darker than the first step of an 8-bit screen: black on this scale."
     white = f"{spaced(significant(exposure.display_white_cd_m2, 3))} cd/m²"
-    middle = float(np.median(screen))
-    return Rendering(exposure, white, note, "dark" if middle > 0.45 else "light")
+    behind_labels = sky_XYZ[elevation_index(45), azimuth_index(180)]
+    return Rendering(exposure, white, note, swatches(behind_labels[None], exposure)[0].ink)

@@ -70,13 +70,10 @@ class Survey:
 def survey(sky: Sky, solar_elevation_deg: tuple[float, ...], observer: str) -> Survey:
     """Ask `sky` for every direction at every sun elevation [deg]."""
     suns = np.array(solar_elevation_deg, float)
-    altitude = sky.settings.altitude_km
     matrix = tristimulus_matrix(sky.wavelength_nm, observer)
-    stokes = sky.stokes(
-        suns[:, None, None], VIEW_ELEVATION_DEG[:, None], RELATIVE_AZIMUTH_DEG, altitude_km=altitude
-    )
+    stokes = sky.stokes(suns[:, None, None], VIEW_ELEVATION_DEG[:, None], RELATIVE_AZIMUTH_DEG)
     diffuse, direct = sky.ground_irradiance(suns)
-    beam = sky.beam(suns, altitude_km=altitude)
+    beam = sky.beam(suns)
     solar = _solar_about(sky.wavelength_nm)
     rows = [elevation_index(direction.view_elevation_deg) for direction in DIRECTIONS]
     columns = [azimuth_index(direction.relative_azimuth_deg) for direction in DIRECTIONS]

@@ -18,7 +18,7 @@ from skychart.charts.ground import Ground
 from skychart.charts.numbers import rounded
 from skychart.charts.reading import Reading
 
-_DIGITS = 5
+_DIGITS = 4
 
 
 def table_csv(table: NumberTable, remarks: tuple[str, ...]) -> bytes:
@@ -51,7 +51,7 @@ def readings_json(
 
 
 def plain(value: Any) -> Any:
-    """Arrays as lists, numbers to five significant digits, nan as None."""
+    """Arrays as lists, numbers to four significant digits, nan as None."""
     if isinstance(value, dict):
         return {key: plain(entry) for key, entry in value.items()}
     if isinstance(value, np.ndarray):

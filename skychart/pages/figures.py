@@ -60,7 +60,7 @@ _CHROMATICITY = _Plan(
     CHROMATICITY_IN,
     "Chromaticity",
     "CIE 1976 u′v′ with gamut triangles and the daylight locus from 4000 K to 25 000 K; dots are the blocks, in their "
-    "own colours. The small diagram enlarges the part they lie in.",
+    "own colours. The frame in the small diagram shows the part enlarged.",
     "u prime v prime diagram with the blocks of this page, gamut triangles and the daylight locus",
 )
 _PLANE = _Plan(

@@ -12,11 +12,12 @@ from skychart.charts.checks import Methods
 from skychart.charts.direction import DirectionSheet
 from skychart.charts.overview import DayBand, Overview
 from skychart.charts.sheet import Sheet
+from skychart.export.png import srgb_png
 from skychart.export.tables import readings_json, table_csv
 from skychart.pages.environment import environment, render
 from skychart.pages.figures import direction_figures, light_figure, sheet_figures
 from skychart.pages.site import METHODS_PATH, SITE_TITLE, Atlas, Link, describe_air, neighbours, sun_in_words
-from skychart.plots.picture import DOME_PIXELS, RIM_PIXELS, day_png, dome_png
+from skychart.plots.picture import DOME_PIXELS, OVERLAP_PIXELS, RIM_PIXELS, day_band, half_dome
 
 _DAY_COLUMN_PIXELS = 32
 _DAY_HEIGHT_PIXELS = 160
@@ -25,10 +26,11 @@ _DOME_RADIUS = 100
 
 @dataclass(frozen=True)
 class Dome:
-    """Where the all-sky pictures of a sheet lie, and how they and the sun sit on a disc of radius 100."""
+    """Where the pictures of one side of the sky lie, and how they and the sun sit on a disc of radius 100."""
 
     pictures: dict[str, str]
-    half: float
+    left: float
+    top: float
     sun_y: float
 
 
@@ -55,8 +57,8 @@ def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
     figures, files = sheet_figures(chart)
     pictures = {shown.exposure.key: f"{stem}-{shown.exposure.key}.png" for shown in chart.renderings}
     for shown in chart.renderings:
-        files[pictures[shown.exposure.key]] = dome_png(chart.sky_XYZ, shown.exposure)
-    half = _DOME_RADIUS * DOME_PIXELS / (DOME_PIXELS - 2 * RIM_PIXELS)
+        files[pictures[shown.exposure.key]] = srgb_png(half_dome(chart.sky_XYZ, shown.exposure))
+    pixel = _DOME_RADIUS / (DOME_PIXELS / 2 - RIM_PIXELS)
     sun_y = _DOME_RADIUS * (90 - chart.solar_elevation_deg) / 90
     about = _about(atlas, chart.atmosphere) | {"solar_elevation_deg": chart.solar_elevation_deg}
     exports, downloads = _exports(stem, title, about, chart.table, (chart.readings, chart.ground, chart.spectra))
@@ -67,7 +69,7 @@ def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
         "air": atlas.air(chart.atmosphere),
         "switch": atlas.switch(chart.atmosphere, chart.stem),
         "ruler": ruler,
-        "dome": Dome(pictures, round(half, 2), round(sun_y, 2)),
+        "dome": Dome(pictures, round(-OVERLAP_PIXELS * pixel, 2), round(-DOME_PIXELS / 2 * pixel, 2), round(sun_y, 2)),
         "figures": figures,
         "downloads": downloads,
     }
@@ -149,7 +151,7 @@ def _pages() -> Environment:
 
 
 def _band_png(chart: Overview, band: DayBand) -> bytes:
-    return day_png(band.XYZ, chart.exposures, _DAY_COLUMN_PIXELS, _DAY_HEIGHT_PIXELS)
+    return srgb_png(day_band(band.XYZ, chart.exposures, _DAY_COLUMN_PIXELS, _DAY_HEIGHT_PIXELS))
 
 
 def _about(atlas: Atlas, atmosphere: str) -> dict[str, Any]:

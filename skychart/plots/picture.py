@@ -1,47 +1,49 @@
-"""Pictures of the sky as PNG: the whole dome, and the day as one band.
+"""Pixels of the sky: one side of the dome, and the day as one band.
 
 Between the nodes of the survey the logarithms of the tristimulus values are interpolated by cubic splines, which
 keeps both a glow over five decades and its colour smooth.
 """
 
-import io
-
 import numpy as np
-from matplotlib.image import imsave
 
 from skychart.charts.exposure import Exposure
 from skychart.charts.survey import RELATIVE_AZIMUTH_DEG, VIEW_ELEVATION_DEG
 
-DOME_PIXELS = 240
+DOME_PIXELS = 160
 RIM_PIXELS = 2
+OVERLAP_PIXELS = 1
 _SURROUND_BYTE = 0x77
 _FLOOR = 1e-12
 _STEPS = 181
 
 
-def dome_png(sky_XYZ: np.ndarray, exposure: Exposure) -> bytes:
-    """All-sky picture of `sky_XYZ` (view elevation, azimuth, XYZ) on the survey's grid.
+def half_dome(sky_XYZ: np.ndarray, exposure: Exposure) -> np.ndarray:
+    """The side of the sky to the right of the sun, of `sky_XYZ` (view elevation, azimuth, XYZ) on the survey's grid.
 
-    Equidistant, zenith in the middle, horizon `RIM_PIXELS` inside the edge, the sun's azimuth downward.
+    Equidistant, horizon `RIM_PIXELS` inside the edge, the sun's azimuth downward, the zenith in the middle of the
+    left edge but for `OVERLAP_PIXELS` of the other side, which is the mirror image. 8-bit sRGB, (height, width, 3).
     """
     fine = _refined(sky_XYZ)
     offset = np.arange(DOME_PIXELS) - (DOME_PIXELS - 1) / 2
-    right, down = np.meshgrid(offset, offset)
+    right, down = np.meshgrid(offset[DOME_PIXELS // 2 - OVERLAP_PIXELS :], offset)
     radius = np.hypot(right, down) / (DOME_PIXELS / 2 - RIM_PIXELS)
     elevation = np.clip(90 * (1 - radius), 0, 90)
     azimuth = np.degrees(np.arctan2(np.abs(right), down))
     channels = np.rint(exposure.screen(_bilinear(fine, elevation * 2, azimuth)) * 255)
     channels[radius > 1 + RIM_PIXELS / DOME_PIXELS] = _SURROUND_BYTE
-    return _png(channels.astype(np.uint8))
+    return channels.astype(np.uint8)
 
 
-def day_png(band_XYZ: np.ndarray, exposures: tuple[Exposure, ...], column_pixels: int, height: int) -> bytes:
-    """A band of the day: `band_XYZ` (sun, view elevation, XYZ), a column for each sun, zenith at the top."""
+def day_band(band_XYZ: np.ndarray, exposures: tuple[Exposure, ...], column_pixels: int, height: int) -> np.ndarray:
+    """A band of the day: `band_XYZ` (sun, view elevation, XYZ), a column for each sun, zenith at the top.
+
+    8-bit sRGB, shape (height, width, 3).
+    """
     elevation = np.linspace(90, 0, height)
     values = np.exp(np.einsum("ev,svx->sex", spline(VIEW_ELEVATION_DEG, elevation), _log(band_XYZ)))
     columns = [exposure.screen(column) for exposure, column in zip(exposures, values, strict=True)]
     channels = np.rint(np.stack(columns, axis=1) * 255).astype(np.uint8)
-    return _png(np.repeat(channels, column_pixels, axis=1))
+    return np.repeat(channels, column_pixels, axis=1)
 
 
 def spline(nodes: np.ndarray, points: np.ndarray, flat_ends: bool = False) -> np.ndarray:
@@ -90,9 +92,3 @@ def _bilinear(fine: np.ndarray, row: np.ndarray, column: np.ndarray) -> np.ndarr
 
 def _log(XYZ: np.ndarray) -> np.ndarray:
     return np.log(np.maximum(XYZ, _FLOOR))
-
-
-def _png(channels: np.ndarray) -> bytes:
-    buffer = io.BytesIO()
-    imsave(buffer, channels, format="png", metadata={"Software": None}, pil_kwargs={"optimize": True})
-    return buffer.getvalue()

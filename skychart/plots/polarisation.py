@@ -2,13 +2,13 @@
 
 import numpy as np
 from matplotlib.axes import Axes
-from matplotlib.collections import LineCollection
 from matplotlib.figure import Figure
+from matplotlib.patches import Circle
 
 from skychart.charts.curves import Polarisation
-from skychart.plots.frame import INK, MUTED, RULE, figure_svg, note
+from skychart.plots.frame import INK, MUTED, RULE, figure_svg, write
 
-SIZE_IN = (5.0, 5.0)
+SIZE_IN = (5.8, 5.0)
 _REACH = 1.16
 _LEVELS = (0.2, 0.4, 0.6, 0.8)
 _TICK_LENGTH = 0.15
@@ -18,17 +18,17 @@ def polarisation_svg(chart: Polarisation) -> bytes:
     """Figure of the whole sky, zenith in the middle, sun toward the bottom; both sides are mirror images."""
 
     def draw(figure: Figure) -> None:
-        axes = figure.add_axes((0, 0, 1, 1), aspect="equal")
-        axes.set_xlim(-_REACH, _REACH)
-        axes.set_ylim(-_REACH, _REACH)
+        axes = figure.add_axes((0, 0, 1, 1))
+        across = _REACH * SIZE_IN[0] / SIZE_IN[1]
+        axes.set(xlim=(-across, across), ylim=(-_REACH, _REACH))
         axes.axis("off")
         _grid(axes)
         _contours(axes, chart)
         _ticks(axes, chart)
         _sun(axes, chart.sun_elevation_deg)
-        note(axes, 0.01, 0.02, f"largest {chart.largest:.2f}", color=MUTED)
+        write(figure, 0.12, 0.12, f"largest degree {chart.largest:.2f}", color=MUTED)
 
-    return figure_svg(*SIZE_IN, draw)
+    return figure_svg(SIZE_IN, draw)
 
 
 def fisheye(view_elevation_deg: np.ndarray, relative_azimuth_deg: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
@@ -39,12 +39,11 @@ def fisheye(view_elevation_deg: np.ndarray, relative_azimuth_deg: np.ndarray) ->
 
 
 def _grid(axes: Axes) -> None:
-    around = np.linspace(0, 360, 73)
     for elevation in (30, 60):
-        axes.plot(*fisheye(elevation, around), color=RULE, linewidth=0.6)
-    axes.plot(*fisheye(0, around), color=MUTED, linewidth=0.9)
+        axes.add_patch(Circle((0, 0), (90 - elevation) / 90, fill=False, edgecolor=RULE, linewidth=0.6))
+    axes.add_patch(Circle((0, 0), 1, fill=False, edgecolor=MUTED, linewidth=0.9))
     axes.plot([-1, 1, np.nan, 0, 0], [0, 0, np.nan, -1, 1], color=RULE, linewidth=0.6)
-    for x, y, text in ((0, -1.09, "0°"), (1.08, 0, "90°"), (-1.08, 0, "90°"), (0, 1.07, "180°")):
+    for x, y, text in ((-0.1, -1.07, "0°"), (1.08, 0, "90°"), (-1.08, 0, "90°"), (0, 1.07, "180°")):
         axes.text(x, y, text, ha="center", va="center")
 
 
@@ -59,7 +58,7 @@ def _contours(axes: Axes, chart: Polarisation) -> None:
 
 def _ticks(axes: Axes, chart: Polarisation) -> None:
     """Ticks as long as the degree; on the other side of the sun the angle has the other sign."""
-    segments = []
+    ends: list[np.ndarray] = []
     for elevation, azimuth, degree, angle in chart.ticks:
         for side in (1, -1) if 0 < azimuth < 180 else (1,):
             centre = np.array(fisheye(elevation, side * azimuth))
@@ -68,8 +67,8 @@ def _ticks(axes: Axes, chart: Polarisation) -> None:
             outward = np.array([np.sin(turned), -np.cos(turned)])
             tilt = np.radians(side * angle)
             half = 0.5 * _TICK_LENGTH * degree * (np.cos(tilt) * across - np.sin(tilt) * outward)
-            segments.append([centre - half, centre + half])
-    axes.add_collection(LineCollection(segments, colors=INK, linewidths=1.7, capstyle="butt"))
+            ends += [centre - half, centre + half, np.full(2, np.nan)]
+    axes.plot(*np.array(ends).T, color=INK, linewidth=1.7, solid_capstyle="butt")
 
 
 def _sun(axes: Axes, elevation_deg: float) -> None:

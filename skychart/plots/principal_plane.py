@@ -1,67 +1,51 @@
 """Luminance, chromaticity and polarisation along the principal plane, one above the other."""
 
-import numpy as np
-from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 
 from skychart.charts.curves import PrincipalPlane
-from skychart.plots.frame import MUTED, Scale, add_axes, curve, figure_svg, key, log_ticks, note
+from skychart.plots.frame import MUTED, Box, Panel, Scale, figure_svg, log_scale
 
-SIZE_IN = (6.4, 6.2)
-_LEFT_IN, _WIDTH_IN = 0.62, 5.6
+SIZE_IN = (5.8, 6.0)
+_LEFT_IN, _WIDTH_IN, _HEIGHT_IN = 0.6, 4.9, 1.42
+_BOTTOMS_IN = (4.28, 2.38, 0.48)
 _ARC_TICKS = (0, 30, 60, 90, 120, 150, 180)
 _ARC_LABELS = ("0°", "30°", "60°", "zenith", "60°", "30°", "0°")
 _ARC_TITLE = "View elevation, from below the sun to the horizon opposite"
+_CHROMA_TICKS = (0.1, 0.2, 0.3, 0.4, 0.5, 0.6)
+_CHROMA = Scale(0.1, 0.6, _CHROMA_TICKS, tuple(f"{tick:.1f}" for tick in _CHROMA_TICKS), "Chromaticity")
+_DEGREE = Scale(
+    -0.25,
+    1.0,
+    (-0.25, 0, 0.25, 0.5, 0.75, 1.0),
+    ("−0.25", "0", "0.25", "0.5", "0.75", "1"),
+    "Degree of polarisation, negative: electric vector in the plane",
+)
 
 
 def principal_plane_svg(chart: PrincipalPlane) -> bytes:
     """Figure of three panels over the same arc."""
 
     def draw(figure: Figure) -> None:
-        _luminance(figure, chart)
-        _chromaticity(figure, chart)
-        _polarisation(figure, chart)
+        luminance = _panel(figure, 0, log_scale(chart.luminance_cd_m2, "Luminance, cd/m²", most=5), chart)
+        luminance.curve(chart.arc_deg, chart.luminance_cd_m2)
+        if chart.sun_arc_deg >= 0:
+            luminance.text(chart.sun_arc_deg, luminance.y.high, "sun", (0.04, -0.03), va="top", color=MUTED)
+        chroma = _panel(figure, 1, _CHROMA, chart)
+        for number in range(2):
+            chroma.curve(chart.arc_deg, chart.uv[:, 1 - number], number)
+            chroma.text(180, chart.uv[-1, 1 - number], ("v′", "u′")[number], (0.06, 0), va="center")
+        degree = _panel(figure, 2, _DEGREE, chart)
+        degree.curve(chart.arc_deg, chart.degree)
 
-    return figure_svg(*SIZE_IN, draw)
+    return figure_svg(SIZE_IN, draw)
 
 
-def _luminance(figure: Figure, chart: PrincipalPlane) -> None:
-    low = 10.0 ** np.floor(np.log10(chart.luminance_cd_m2.min()))
-    high = 10.0 ** np.ceil(np.log10(chart.luminance_cd_m2.max()))
-    ticks, labels = log_ticks(low, high)
-    axes = _panel(figure, 4.4, 1.5, Scale(low, high, ticks, labels, "Luminance, cd/m²", log=True), "")
-    curve(axes, chart.arc_deg, chart.luminance_cd_m2)
+def _panel(figure: Figure, number: int, y: Scale, chart: PrincipalPlane) -> Panel:
+    """The panel at a place from the top; the lowest carries the arc's labels, all mark the sun."""
+    lowest = number == len(_BOTTOMS_IN) - 1
+    labels = _ARC_LABELS if lowest else ("",) * len(_ARC_TICKS)
+    x = Scale(0, 180, _ARC_TICKS, labels, _ARC_TITLE if lowest else "")
+    panel = Panel(figure, Box(_LEFT_IN, _BOTTOMS_IN[number], _WIDTH_IN, _HEIGHT_IN), x, y)
     if chart.sun_arc_deg >= 0:
-        note(axes, chart.sun_arc_deg / 180 + 0.01, 0.93, "sun", color=MUTED)
-    _mark_sun(axes, chart)
-
-
-def _chromaticity(figure: Figure, chart: PrincipalPlane) -> None:
-    ticks = (0.1, 0.2, 0.3, 0.4, 0.5, 0.6)
-    scale = Scale(0.1, 0.6, ticks, tuple(f"{tick:.1f}" for tick in ticks), "Chromaticity")
-    axes = _panel(figure, 2.4, 1.5, scale, "")
-    for number in range(2):
-        curve(axes, chart.arc_deg, chart.uv[:, 1 - number], number)
-    key(axes, (_LEFT_IN, 2.4, _WIDTH_IN, 1.5), (4.6, 0.9), ("v′", "u′"))
-    _mark_sun(axes, chart)
-
-
-def _polarisation(figure: Figure, chart: PrincipalPlane) -> None:
-    ticks = (-0.2, 0, 0.2, 0.4, 0.6, 0.8, 1.0)
-    labels = ("−0.2", "0", "0.2", "0.4", "0.6", "0.8", "1")
-    title = "Degree of polarisation, negative where the electric vector lies in the plane"
-    axes = _panel(figure, 0.48, 1.42, Scale(-0.3, 1.0, ticks, labels, title), _ARC_TITLE)
-    curve(axes, chart.arc_deg, chart.degree)
-    _mark_sun(axes, chart)
-
-
-def _panel(figure: Figure, bottom_in: float, height_in: float, y: Scale, title: str) -> Axes:
-    labels = _ARC_LABELS if title else ("",) * len(_ARC_TICKS)
-    return add_axes(
-        figure, (_LEFT_IN, bottom_in, _WIDTH_IN, height_in), Scale(0, 180, _ARC_TICKS, labels, title), y
-    )
-
-
-def _mark_sun(axes: Axes, chart: PrincipalPlane) -> None:
-    if chart.sun_arc_deg >= 0:
-        axes.axvline(chart.sun_arc_deg, color=MUTED, linewidth=0.8, linestyle=(0, (2, 2)), zorder=1)
+        panel.line([chart.sun_arc_deg] * 2, [y.low, y.high], color=MUTED, linewidth=0.8, linestyle=(0, (2, 2)))
+    return panel

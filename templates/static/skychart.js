@@ -48,10 +48,8 @@
   };
 
   const nameOf = (line) => {
-    if (!line.joint) {
-      return ["Light", "Colour of light"].includes(line.group) ? line.heads[0] : `${line.group} ${line.heads[0]}`;
-    }
-    return line.heads[0] === "R" ? line.group : line.heads.join(" ");
+    const plain = ["Light", "Colour of light"].includes(line.group);
+    return line.joint ? line.group : plain ? line.heads[0] : `${line.group} ${line.heads[0]}`;
   };
 
   const element = (tag, text) => {
@@ -67,20 +65,22 @@
     }
     const list = document.createElement("dl");
     for (const line of linesOf(head.columns, cells)) {
-      const value = element("dd", line.values.join("  "));
+      const name = element("dt", nameOf(line));
       if (line.unit) {
-        value.append(" ", element("span", line.unit));
+        name.append(" ", element("small", line.unit));
       }
-      list.append(element("dt", nameOf(line)), value);
+      const pair = document.createElement("div");
+      pair.append(name, element("dd", line.values.join("  ")));
+      list.append(pair);
     }
     const title = head.labels.map((label, i) => `${label} ${labelCells[i]}°`).join(", ");
-    readout.replaceChildren(element("h3", title), list);
+    readout.replaceChildren(element("h3", title.charAt(0) + title.slice(1).toLowerCase()), list);
   };
 
   const followBlocks = (readout) => {
     const head = readTable(document.getElementById("numbers"));
-    const blocks = [...document.querySelectorAll("a[data-row]")];
-    const display = (block) => show(readout, head, document.getElementById(block.dataset.row));
+    const blocks = [...document.querySelectorAll(".blocks td a")];
+    const display = (block) => show(readout, head, document.getElementById(block.hash.slice(1)));
     let chosen = blocks[0];
     const choose = (block) => {
       chosen.removeAttribute("aria-current");

@@ -15,7 +15,7 @@ class FakeSky:
             -(((self.wavelength_nm - 600) / 60) ** 2)
         )
 
-    def stokes(self, solar_elevation_deg, view_elevation_deg, relative_azimuth_deg, altitude_km=0.0):
+    def stokes(self, solar_elevation_deg, view_elevation_deg, relative_azimuth_deg):
         """Single scattering by molecules, shape (..., 3, wavelength)."""
         sun, view, azimuth = np.radians(
             np.broadcast_arrays(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
@@ -31,7 +31,7 @@ class FakeSky:
         q, u = degree * np.cos(turn), degree * np.sin(turn)
         return np.stack([intensity, intensity * q[..., None], intensity * u[..., None]], axis=-2)
 
-    def beam(self, solar_elevation_deg, altitude_km=0.0):
+    def beam(self, solar_elevation_deg):
         """Flat-air transmission, nothing once the sun is below the horizon."""
         sine = np.sin(np.radians(np.asarray(solar_elevation_deg, float)))[..., None]
         return np.where(sine >= 0, np.exp(-self.depth / (np.maximum(sine, 0) + 0.02)), 0.0)
