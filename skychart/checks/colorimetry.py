@@ -31,7 +31,7 @@ _CIEDE2000 = (
     ((2.0776, 0.0795, -1.1350), (0.9033, -0.0636, -0.5514), 0.9082),
 )
 _ITP = ((0.4885468072, -0.04739350675, 0.07475401302), (0.4899203231, -0.04567508203, 0.07361341775), 1.42657228)
-_CMF = {450: (0.3362, 0.0380, 1.77211), 555: (0.5120501, 1.0, 0.0057500), 600: (1.0622, 0.6310, 0.0008)}
+_CMF = {("z", 450): 1.77211, ("y", 450): 0.0380, ("x", 555): 0.5120501, ("y", 600): 0.6310}
 
 
 def checks() -> tuple[Check, ...]:
@@ -59,12 +59,12 @@ def _check(
 
 def _observer() -> Iterable[Row]:
     wavelength_nm, functions = colour_matching_functions("cie-1931-2")
-    for nm, published in _CMF.items():
-        for axis, value, computed in zip("xyz", published, functions[wavelength_nm == nm][0], strict=True):
-            yield (
-                f"cie1931-{axis}-{nm}", f"Colour-matching function {axis}̄", f"CIE 1931, {nm} nm",
-                "CIE 015 (machine-readable copy, cross-checked)", value, computed, 5e-7, "printed digits",
-            )  # fmt: skip
+    for (axis, nm), published in _CMF.items():
+        yield (
+            f"cie1931-{axis}-{nm}", f"Colour-matching function {axis}̄", f"CIE 1931, {nm} nm",
+            "CIE 015 (machine-readable copy, cross-checked)",
+            published, float(functions[wavelength_nm == nm, "xyz".index(axis)][0]), 5e-7, "printed digits",
+        )  # fmt: skip
 
 
 def _spaces() -> Iterable[Row]:

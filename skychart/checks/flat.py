@@ -54,7 +54,7 @@ class FlatSky:
 
     def stokes(self, mu0: ArrayLike, mu: ArrayLike, phi_deg: ArrayLike) -> NDArray[np.float64]:
         """I, Q, U of the tables at cosines of zenith angles and azimuth [degrees], shape (..., 3, case)."""
-        return np.pi * self.sky.stokes(_elevation_deg(mu0), _elevation_deg(mu), phi_deg)
+        return np.pi * self.sky.stokes(elevation_deg(mu0), elevation_deg(mu), phi_deg)
 
     @functools.cached_property
     def grid(self) -> NDArray[np.float64]:
@@ -63,7 +63,7 @@ class FlatSky:
 
     def down_fluxes(self, mu0: ArrayLike) -> tuple[NDArray[np.float64], NDArray[np.float64]]:
         """Diffuse and direct flux reaching the ground, incident normal flux pi, each of shape (..., case)."""
-        diffuse, direct = self.sky.ground_irradiance(_elevation_deg(mu0))
+        diffuse, direct = self.sky.ground_irradiance(elevation_deg(mu0))
         return np.pi * diffuse, np.pi * direct
 
     def up_flux(self, mu0: float) -> NDArray[np.float64]:
@@ -71,7 +71,7 @@ class FlatSky:
         node, weight = np.polynomial.legendre.leggauss(_UP_NODES)
         mu, mu_weight = 0.5 * (node + 1), 0.5 * weight
         phi_deg = (np.arange(_UP_NODES) + 0.5) * 180 / _UP_NODES
-        light = self.sky.stokes(_elevation_deg(mu0), -_elevation_deg(mu)[:, None], phi_deg, altitude_km=_TOP_KM)
+        light = self.sky.stokes(elevation_deg(mu0), -elevation_deg(mu)[:, None], phi_deg, altitude_km=_TOP_KM)
         intensity = np.pi * light[..., 0, :].mean(axis=1)
         return 2 * np.pi * (mu * mu_weight) @ intensity
 
@@ -98,5 +98,6 @@ class FlatSky:
         return columns, np.stack([columns[name] for name in "IQU"], axis=-1), computed
 
 
-def _elevation_deg(cosine_of_zenith_angle: ArrayLike) -> NDArray[np.float64]:
+def elevation_deg(cosine_of_zenith_angle: ArrayLike) -> NDArray[np.float64]:
+    """Elevation [degrees] of a direction with a cosine of the zenith angle as the tables give it, any shape."""
     return np.degrees(np.arcsin(np.asarray(cosine_of_zenith_angle, dtype=float)))

@@ -6,7 +6,7 @@ Source: integrated from the tables of Natraj, Li & Yung 2009.
 import numpy as np
 
 from skychart.checks.check import Check
-from skychart.checks.flat import CASES, FlatSky
+from skychart.checks.flat import CASES, FlatSky, elevation_deg
 from skychart.data.tables import load_table
 
 TOPIC = "Fluxes of the flat molecular sky"
@@ -29,11 +29,9 @@ def checks(flat: FlatSky) -> tuple[Check, ...]:
     for tau, mu0, up, diffuse, _ in zip(*columns.values(), strict=True):
         place = np.searchsorted(suns, mu0), CASES.index((tau, 0.0))
         our_diffuse, our_direct = float(all_diffuse[place]), float(all_direct[place])
-        key = f"tau{tau:g}-mu0{mu0:g}"
-        where = (
-            f"optical depth {tau:g}, black ground, sun {np.degrees(np.arcsin(mu0)):.1f}° up (μ₀ {mu0:g}), "
-            "incident normal flux π"
-        )
+        sun = elevation_deg(mu0)
+        key = f"tau{tau:g}-sun{sun:.1f}"
+        where = f"optical depth {tau:g}, black ground, sun {sun:.1f}° up (μ₀ {mu0:g}), incident normal flux π"
         if tau in _DIFFUSE_DEPTHS:
             found.append(_flux(f"flux-diffuse-{key}", "Diffuse flux reaching the ground", where, diffuse, our_diffuse))
         if mu0 == _TOP_MU0:

@@ -7,7 +7,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from skychart.checks.check import Check
-from skychart.checks.flat import RMS_LIMIT, FlatSky
+from skychart.checks.flat import RMS_LIMIT, FlatSky, elevation_deg
 
 TOPIC = "Flat molecular sky, all orders, polarised"
 SOURCE = (
@@ -99,13 +99,14 @@ def _row(flat: FlatSky, component: str, tau: float, albedo: float, mu0: float, m
     wanted = {"tau": tau, "albedo": albedo, "mu0": mu0, "mu": mu, "phi_deg": phi_deg}
     (row,) = np.flatnonzero(np.all([columns[name] == value for name, value in wanted.items()], axis=0))
     place = "IQU".index(component)
+    sun, view = elevation_deg(mu0), elevation_deg(mu)
     return Check(
-        key=f"natraj2009-{component}-tau{tau:g}-albedo{albedo:g}-mu0{mu0:g}-mu{mu:g}-phi{phi_deg}",
+        key=f"natraj2009-{component}-tau{tau:g}-albedo{albedo:g}-sun{sun:.1f}-view{view:.1f}-azimuth{phi_deg}",
         topic=TOPIC,
         quantity=f"{component}, as π × radiance over irradiance",
         conditions=(
-            f"optical depth {tau:g}, ground albedo {albedo:g}, sun {np.degrees(np.arcsin(mu0)):.1f}° up (μ₀ {mu0:g}), "
-            f"view {np.degrees(np.arcsin(mu)):.1f}° up (μ {mu:g}), {phi_deg}° from the sun's azimuth"
+            f"optical depth {tau:g}, ground albedo {albedo:g}, sun {sun:.1f}° up (μ₀ {mu0:g}), "
+            f"view {view:.1f}° up (μ {mu:g}), {phi_deg}° from the sun's azimuth"
         ),
         source=SOURCE,
         published=float(published[row, place]),

@@ -7,7 +7,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from skychart.checks.check import Check
-from skychart.checks.flat import CASES, MU0, FlatSky
+from skychart.checks.flat import CASES, MU0, FlatSky, elevation_deg
 from skychart.checks.natraj import polarisation
 from skychart.data.tables import load_table
 
@@ -45,8 +45,8 @@ def checks(flat: FlatSky) -> tuple[Check, ...]:
         _maximum("all", f"greatest difference, all {len(maximum)} entries", 0.0, maximum_worst),
         *(
             _maximum(
-                f"tau{tau:g}-albedo{albedo:g}-mu0{mu0:g}",
-                f"optical depth {tau:g}, ground albedo {albedo:g}, sun {_sun_deg(mu0):.1f}° up",
+                f"tau{tau:g}-albedo{albedo:g}-sun{elevation_deg(mu0):.1f}",
+                f"optical depth {tau:g}, ground albedo {albedo:g}, sun {elevation_deg(mu0):.1f}° up",
                 maximum[tau, albedo, mu0],
                 maximum_computed[tau, albedo, mu0],
             )
@@ -55,9 +55,9 @@ def checks(flat: FlatSky) -> tuple[Check, ...]:
         _neutral_point("all", "Neutral points", f"greatest difference, all {len(point)} entries", 0.0, point_worst),
         *(
             _neutral_point(
-                f"{name}-tau{tau:g}-mu0{mu0:g}",
+                f"{name}-tau{tau:g}-sun{elevation_deg(mu0):.1f}",
                 _POINT_TITLES[name],
-                f"optical depth {tau:g}, black ground, sun {_sun_deg(mu0):.1f}° up",
+                f"optical depth {tau:g}, black ground, sun {elevation_deg(mu0):.1f}° up",
                 point[tau, mu0, name],
                 point_computed[tau, mu0, name],
             )
@@ -96,7 +96,7 @@ def neutral_points(flat: FlatSky) -> tuple[Points, Points]:
     computed: Points = {}
     for mu0 in sorted({mu0 for _, mu0, _ in published}):
         second = flat.stokes(mu0, mu, np.where(arc_deg <= 90, 0.0, 180.0))[:, 1]
-        sun = _sun_deg(mu0)
+        sun = float(elevation_deg(mu0))
         for tau in sorted({tau for tau, _, _ in published}):
             ratio = second[:, CASES.index((tau, 0.0))]
             above, below = arc_deg > sun, (arc_deg < sun)[::-1]
@@ -113,10 +113,6 @@ def _first_rise(place: NDArray[np.float64], value: NDArray[np.float64]) -> float
         return float("nan")
     i = rises[0]
     return float(place[i] + (place[i + 1] - place[i]) * value[i] / (value[i] - value[i + 1]))
-
-
-def _sun_deg(mu0: float) -> float:
-    return float(np.degrees(np.arcsin(mu0)))
 
 
 def _maximum(key: str, conditions: str, published: float, computed: float) -> Check:
