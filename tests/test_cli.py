@@ -13,17 +13,18 @@ from pathlib import Path
 
 import numpy as np
 import pytest
-import skychart.sky.spectral
-from hypothesis import HealthCheck, given, settings
+from hypothesis import HealthCheck, example, given, settings
 from hypothesis import strategies as st
 
 import skychart.checks
 import skychart.pages
+import skychart.sky.spectral
 from skychart import cli
 from skychart.arguments import COMMANDS, READ_ANGLES, folded_azimuth
 from skychart.checks.check import Check
 from skychart.config import DEFAULT_SETTINGS, AirSettings, Settings, default_toml
 from skychart.pages.write import MARKER, swap_in
+from skychart.sky.spectral import SpectralSky, solve_spectral
 
 READ_KEYS = [
     *("atmosphere", "solar_elevation_deg", "view_elevation_deg", "relative_azimuth_deg", "luminance_cd_m2", "XYZ"),
@@ -471,24 +472,63 @@ def test_a_full_disk_is_one_line() -> None:
     )
 
 
-READ_IN_ASCII = """
-    import sys
-    import skychart.sky.spectral
-    from skychart.cli import main
-    sys.exit(main(["read", "--sun", "12", "--elevation", "45", "--azimuth", "90"]))
-"""
-
-
-def test_a_real_reading_has_a_clean_standard_error_even_on_a_terminal_without_the_characters() -> None:
-    environment = os.environ | {"PYTHONIOENCODING": "ascii"}
-    process = run_program(READ_IN_ASCII, env=environment)
-    out, err = process.communicate()
-    assert (process.returncode, err) == (0, "")
-    luminance = next(line for line in out.splitlines() if line.startswith("luminance"))
-    assert luminance.endswith(" cd/m?")
-    assert 500 < float(luminance.split()[1]) < 5000
-
-
 def test_as_a_module_it_is_the_same_command() -> None:
     process = subprocess.run([sys.executable, "-m", "skychart", "config"], capture_output=True, text=True, check=False)
     assert (process.returncode, process.stdout) == (0, default_toml())
+
+
+# the real sky: solved twice in all, for that takes seconds
+
+
+@pytest.fixture(scope="module")
+def bright_sky() -> SpectralSky:
+    """A real sky at the far ends of its settings."""
+    return solve_spectral(AirSettings("bright", ozone_du=600, ground_albedo=1))
+
+
+@pytest.fixture
+def reads_bright_sky(bright_sky: SpectralSky, monkeypatch: pytest.MonkeyPatch) -> None:
+    """Let `read` see the sky that is solved already."""
+    monkeypatch.setattr(skychart.sky.spectral, "solve_spectral", lambda air: bright_sky)
+
+
+@settings(quickly, max_examples=25)
+@given(sun=st.floats(-12, 90), view=st.floats(0, 90), azimuth=st.floats(-360, 360))
+@example(sun=-12.0, view=0.0, azimuth=180.0)
+@example(sun=90.0, view=90.0, azimuth=-0.0)
+@pytest.mark.usefixtures("reads_bright_sky")
+def test_every_reading_of_a_real_sky_is_finite(skychart_command, sun: float, view: float, azimuth: float) -> None:
+    outcome = skychart_command(*f"read --sun={sun} --elevation={view} --azimuth={azimuth} --json".split())
+    values = json.loads(outcome.out, parse_constant=pytest.fail)
+    absent = {key for key, value in values.items() if value is None}
+    assert (outcome.code, outcome.err) == (0, "")
+    assert absent in (set(), {"cct_k", "duv"}) or values["polarisation_degree"] < 1e-6
+    assert min(values["XYZ"]) > 0
+    assert 0 <= values["polarisation_degree"] <= 1
+
+
+def readme_block(start: str, end: str) -> str:
+    """The lines of the README after the one that begins with `start`, up to the one that begins with `end`."""
+    lines = (REPOSITORY / "README.md").read_text(encoding="utf-8").splitlines()
+    first = next(number for number, line in enumerate(lines) if line.startswith(start))
+    last = next(number for number, line in enumerate(lines) if number > first and line.startswith(end))
+    return textwrap.dedent("\n".join(lines[first + 1 : last])).strip() + "\n"
+
+
+@pytest.mark.usefixtures("reads_bright_sky")
+def test_the_python_of_the_readme_runs(capsys: pytest.CaptureFixture[str]) -> None:
+    exec(readme_block("```python", "```"), {})
+    assert len(capsys.readouterr().out.splitlines()) == 3
+
+
+def test_the_reading_in_the_readme_is_what_is_printed_even_on_a_terminal_without_the_characters() -> None:
+    process = subprocess.run(
+        [sys.executable, "-m", "skychart", *READ],
+        env=os.environ | {"PYTHONIOENCODING": "ascii"},
+        capture_output=True,
+        text=True,
+        check=False,
+    )
+    expected = readme_block("    $ .venv/bin/skychart read", "`--sun`")
+    assert (process.returncode, process.stderr) == (0, "")
+    assert process.stdout == expected.encode("ascii", "replace").decode("ascii")
