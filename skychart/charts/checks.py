@@ -168,9 +168,7 @@ def _course(survey: Survey) -> LightCourse:
         illuminance_lx=np.pi * survey.card_XYZ[:, 1],
         zenith_cd_m2=survey.stokes_XYZ[:, elevation_index(90), 0, 0, 1],
         published_illuminance=MeasuredLight("published, USNO Circular 171", fine, usno1987_illuminance(fine)),
-        measured_zenith=tuple(
-            MeasuredLight(title, at[at >= low], values[at >= low]) for title, at, values in measured
-        ),
+        measured_zenith=tuple(MeasuredLight(title, at[at >= low], values[at >= low]) for title, at, values in measured),
     )
 
 

@@ -1,6 +1,6 @@
 """The numbers every sheet gives of a colour: one list of columns for pages, CSV and the block in focus."""
 
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -22,6 +22,10 @@ class Column:
     head: str
     unit: str
     group: str
+
+
+_Writer = Callable[[float, int], str]
+_Cells = tuple[Column, list[str]]
 
 
 @dataclass(frozen=True)
@@ -55,8 +59,8 @@ class NumberTable:
 
 def number_table(
     label_columns: tuple[Column, ...],
-    anchors: list[str],
-    labels: list[tuple[str, ...]],
+    anchors: Sequence[str],
+    labels: Sequence[tuple[str, ...]],
     values: Reading,
     colours: Colours,
     shown_hex: list[str],
@@ -67,23 +71,20 @@ def number_table(
     return NumberTable(label_columns, columns, tuple(Row(*row) for row in rows))
 
 
-def _columns(values: Reading, colours: Colours, shown_hex: list[str]) -> list[tuple[Column, list[str]]]:
+def _columns(values: Reading, colours: Colours, shown_hex: list[str]) -> list[_Cells]:
     """Every column with its cells, in the order of reading."""
 
-    def of(key: str, head: str, unit: str, group: str, numbers: np.ndarray, write: Callable, digits: int):
+    def of(key: str, head: str, unit: str, group: str, numbers: np.ndarray, write: _Writer, digits: int) -> _Cells:
         return Column(key, head, unit, group), [write(float(number), digits) for number in numbers]
 
-    def text(key: str, head: str, group: str, cells: list[str]):
+    def text(key: str, head: str, group: str, cells: list[str]) -> _Cells:
         return Column(key, head, "", group), cells
 
     balance, light = "Colour of light", "Light"
     found = [
         of("luminance_cd_m2", "Luminance", "cd/m²", light, values.luminance_cd_m2, significant, 4),
         of("ev100", "EV100", "EV", light, colours.ev100, fixed, 2),
-        *(
-            of(axis, axis, "cd/m²", "CIE XYZ", values.XYZ[:, i], significant, 4)
-            for i, axis in enumerate("XYZ")
-        ),
+        *(of(axis, axis, "cd/m²", "CIE XYZ", values.XYZ[:, i], significant, 4) for i, axis in enumerate("XYZ")),
         of("x", "x", "", "CIE xy", values.xy[:, 0], fixed, 4),
         of("y", "y", "", "CIE xy", values.xy[:, 1], fixed, 4),
         of("u_prime", "u′", "", "CIE u′v′", values.uv_prime[:, 0], fixed, 4),

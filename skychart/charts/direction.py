@@ -99,6 +99,8 @@ def _block(exposure: Exposure, sun: int, readings: Reading, colour: Swatch, anch
 
 def _band_note(key: str, white: float) -> str:
     if key == "fixed":
-        return f"Display white is {spaced(significant(white, 3))} cd/m² for every sun. Printed: stops from display white."
+        return (
+            f"Display white is {spaced(significant(white, 3))} cd/m² for every sun. Printed: stops from display white."
+        )
     printed = "luminance in cd/m², chromaticity x y" if key == "own" else "stops from the card"
     return f"Set anew for each sun. {rendering_note(key)} Printed: {printed}."

@@ -20,7 +20,9 @@ DEFAULT_OBSERVER = "cie-1931-2"
 class Sky(Protocol):
     """What charts ask of a sky; `skychart.sky.spectral.SpectralSky` is one."""
 
-    settings: AirSettings
+    @property
+    def settings(self) -> AirSettings:
+        """The air it was solved for."""
 
     @property
     def wavelength_nm(self) -> np.ndarray:
@@ -78,7 +80,8 @@ def reading(
     stokes_XYZ = sky.stokes(*angles) @ matrix
     diffuse, direct = sky.ground_irradiance(angles[0])
     card_luminance = ((diffuse + direct) @ matrix)[..., 1] / np.pi
-    return read_colours(sky.settings.name, *angles, stokes_XYZ, card_luminance)[0]
+    sun, view, azimuth = angles
+    return read_colours(sky.settings.name, sun, view, azimuth, stokes_XYZ, card_luminance)[0]
 
 
 def read_colours(

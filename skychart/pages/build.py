@@ -113,6 +113,11 @@ class _Here(Executor):
 def _leave_with_parent() -> None:
     """In a worker: leave interrupts to the parent, and end when it ends, however it does."""
     signal.signal(signal.SIGINT, signal.SIG_IGN)
+    threading.Thread(target=_end_with_parent, daemon=True).start()
+
+
+def _end_with_parent() -> None:
     parent = multiprocessing.parent_process()
     if parent is not None:
-        threading.Thread(target=lambda: (parent.join(), os._exit(1)), daemon=True).start()
+        parent.join()
+        os._exit(1)

@@ -1,5 +1,7 @@
 """CIE 1976 diagram: an enlarged part around the colours, and the whole with the gamuts."""
 
+from typing import Any
+
 import numpy as np
 from matplotlib.figure import Figure
 
@@ -13,11 +15,12 @@ _SMALL = Box(4.42, 3.06, 1.25, 1.25)
 _KEY_AT_IN = (4.42, 2.7)
 _KEY_STEP_IN = 0.19
 _GAMUT_DASHES = {"srgb": "-", "display-p3": (0, (5, 1.5)), "bt2020": (0, (1.2, 1.2))}
-_MARK = {"linestyle": "none", "markeredgecolor": INK, "markerfacecolor": "white"}
+_MARK: dict[str, Any] = {"linestyle": "none", "markeredgecolor": INK, "markerfacecolor": "white"}
 _D65 = _MARK | {"marker": "+", "markersize": 8, "markeredgewidth": 1.1}
 _SUN = _MARK | {"marker": "*", "markersize": 10, "markeredgewidth": 0.9}
 _STEPS = (0.01, 0.02, 0.05, 0.1)
 _MOST_STEPS = 5
+_MARGIN_STEPS = 0.15
 _U = Scale(0.0, 0.64, (), (), "")
 _V = Scale(0.0, 0.64, (), (), "whole diagram")
 
@@ -51,7 +54,8 @@ def _data(panel: Panel, chart: Chromaticities) -> None:
     """Dots in the colours they stand for; for one direction through the day joined in the order of the suns."""
     if chart.track:
         panel.line(*chart.sky_uv.T, linewidth=0.6)
-    panel.dots(*chart.sky_uv.T, chart.sky_hex, size_pt=6.5)
+    u, v = chart.sky_uv.T
+    panel.dots(u, v, chart.sky_hex, size_pt=6.5)
     if chart.sun_uv is not None:
         panel.line(chart.sun_uv[:1], chart.sun_uv[1:], **_SUN)
 
@@ -68,9 +72,9 @@ def _scales(chart: Chromaticities) -> tuple[Scale, Scale]:
     low, high = chart.sky_uv.min(axis=0), chart.sky_uv.max(axis=0)
     reach = max(float((high - low).max()), _STEPS[0])
     step = next((step for step in _STEPS if reach / step <= _MOST_STEPS - 1), _STEPS[-1])
-    starts = np.floor(low / step)
-    count = int((np.ceil(high / step) - starts).max())
-    return tuple(_scale(name, start, count, step) for name, start in zip(("u′", "v′"), starts, strict=True))
+    starts = np.floor(low / step - _MARGIN_STEPS)
+    count = int((np.ceil(high / step + _MARGIN_STEPS) - starts).max())
+    return _scale("u′", starts[0], count, step), _scale("v′", starts[1], count, step)
 
 
 def _scale(name: str, start: float, count: int, step: float) -> Scale:
@@ -80,7 +84,7 @@ def _scale(name: str, start: float, count: int, step: float) -> Scale:
 
 def _key(figure: Figure, chart: Chromaticities) -> None:
     outline = {"color": MUTED, "linewidth": 0.9}
-    entries = [
+    entries: list[tuple[str, dict[str, Any]]] = [
         ("sRGB", outline | {"linestyle": _GAMUT_DASHES["srgb"]}),
         ("Display P3", outline | {"linestyle": _GAMUT_DASHES["display-p3"]}),
         ("BT.2020", outline | {"linestyle": _GAMUT_DASHES["bt2020"]}),

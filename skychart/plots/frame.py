@@ -8,9 +8,10 @@ import io
 import math
 import re
 from collections import Counter
-from collections.abc import Callable, Iterator, Sequence
+from collections.abc import Callable, Iterator, Mapping, Sequence
 from contextlib import contextmanager
 from dataclasses import dataclass
+from typing import Any
 
 import matplotlib as mpl
 import numpy as np
@@ -33,7 +34,7 @@ WEIGHTS = (1.7, 1.3, 1.3, 1.5, 1.2, 0.7)
 _FONT = "DejaVu Sans"
 _FONT_ON_PAGE = "system-ui,sans-serif"
 _FONT_SIZE = 9
-_STYLE = {
+_STYLE: dict[Any, Any] = {
     "svg.fonttype": "none",
     "svg.hashsalt": "skychart",
     "font.family": _FONT,
@@ -91,7 +92,7 @@ class Panel:
         across, up = self.x.share(x), self.y.share(y)
         return self.box.left + self.box.width * across, self.box.bottom + self.box.height * up
 
-    def line(self, x: np.ndarray, y: np.ndarray, **style: object) -> None:
+    def line(self, x: np.ndarray, y: np.ndarray, **style: Any) -> None:
         """A line or marks in data coordinates; `style` as of matplotlib's Line2D."""
         self._add(Line2D(*self.place(x, y), **({"color": INK, "solid_capstyle": "butt"} | style)))
 
@@ -109,7 +110,7 @@ class Panel:
         found.set_transform(Affine2D())
         self._add(found, placed=True)
 
-    def text(self, x: float, y: float, text: str, shift_in: tuple[float, float] = (0, 0), **style: object) -> None:
+    def text(self, x: float, y: float, text: str, shift_in: tuple[float, float] = (0, 0), **style: Any) -> None:
         """A text at data coordinates, shifted by inches."""
         at_x, at_y = self.place(np.array(x), np.array(y))
         write(self.figure, float(at_x) + shift_in[0], float(at_y) + shift_in[1], text, **style)
@@ -163,16 +164,16 @@ def figure_svg(size_in: tuple[float, float], draw: Callable[[Figure], None]) -> 
     return _lean(buffer.getvalue()).encode("utf-8")
 
 
-def write(figure: Figure, x_in: float, y_in: float, text: str, **style: object) -> None:
+def write(figure: Figure, x_in: float, y_in: float, text: str, **style: Any) -> None:
     """A text at a place on the figure [in]; `style` as of matplotlib's Text."""
     figure.add_artist(Text(x_in, y_in, text, transform=figure.dpi_scale_trans, **style))
 
 
-def key_line(figure: Figure, x_in: float, y_in: float, name: str, style: dict[str, object]) -> None:
+def key_line(figure: Figure, x_in: float, y_in: float, name: str, style: Mapping[str, Any]) -> None:
     """A short line or mark in `style` with its name, from a place on the figure [in]."""
     mark = "marker" in style
     x = [x_in + _KEY_LINE_IN / 2] if mark else [x_in, x_in + _KEY_LINE_IN]
-    shown = {"color": INK, "solid_capstyle": "butt"} | style
+    shown = {"color": INK, "solid_capstyle": "butt", **style}
     figure.add_artist(Line2D(x, [y_in] * len(x), transform=figure.dpi_scale_trans, **shown))
     write(figure, x_in + _KEY_LINE_IN + 0.08, y_in, name, va="center_baseline")
 
@@ -206,6 +207,7 @@ def _lean(svg: str) -> str:
     svg = re.sub(r"<[^>]*>", lambda tag: re.sub(r"(?<![\w.#])-?\d+\.\d+(?![\w.])", _short, tag.group()), svg)
     svg = re.sub(r' transform="rotate\(-?0 [^)]*\)"', "", svg)
     svg = re.sub(r' d="([^"]*)"', lambda path: f' d="{_joined(path.group(1))}"', svg)
+    svg = re.sub(r'<path d="M[\d.]+ [\d.]+"[^>]*/>', "", svg)  # the line through a single marker
     svg = re.sub(r'<g id="[^"]*">', "<g>", svg)
     count = 1
     while count:

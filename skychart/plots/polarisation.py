@@ -1,6 +1,7 @@
 """All-sky figure of polarisation: contours of its degree, and ticks along the electric vector."""
 
 import numpy as np
+from numpy.typing import ArrayLike
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 from matplotlib.patches import Circle
@@ -31,7 +32,7 @@ def polarisation_svg(chart: Polarisation) -> bytes:
     return figure_svg(SIZE_IN, draw)
 
 
-def fisheye(view_elevation_deg: np.ndarray, relative_azimuth_deg: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
+def fisheye(view_elevation_deg: ArrayLike, relative_azimuth_deg: ArrayLike) -> tuple[np.ndarray, np.ndarray]:
     """Place on the equidistant all-sky disc of radius 1: x to the right, y up, the sun's azimuth downward."""
     radius = (90 - np.asarray(view_elevation_deg)) / 90
     azimuth = np.radians(relative_azimuth_deg)
@@ -72,5 +73,5 @@ def _ticks(axes: Axes, chart: Polarisation) -> None:
 
 
 def _sun(axes: Axes, elevation_deg: float) -> None:
-    x, y = fisheye(np.array(elevation_deg), np.array(0.0))
+    x, y = fisheye(elevation_deg, 0.0)
     axes.plot([x], [y], marker="o", markersize=8, markerfacecolor="white", markeredgecolor=INK, markeredgewidth=1.2)

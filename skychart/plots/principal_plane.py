@@ -1,5 +1,6 @@
 """Luminance, chromaticity and polarisation along the principal plane, one above the other."""
 
+import numpy as np
 from matplotlib.figure import Figure
 
 from skychart.charts.curves import PrincipalPlane
@@ -47,5 +48,7 @@ def _panel(figure: Figure, number: int, y: Scale, chart: PrincipalPlane) -> Pane
     x = Scale(0, 180, _ARC_TICKS, labels, _ARC_TITLE if lowest else "")
     panel = Panel(figure, Box(_LEFT_IN, _BOTTOMS_IN[number], _WIDTH_IN, _HEIGHT_IN), x, y)
     if chart.sun_arc_deg >= 0:
-        panel.line([chart.sun_arc_deg] * 2, [y.low, y.high], color=MUTED, linewidth=0.8, linestyle=(0, (2, 2)))
+        panel.line(
+            np.full(2, chart.sun_arc_deg), np.array([y.low, y.high]), color=MUTED, linewidth=0.8, linestyle=(0, (2, 2))
+        )
     return panel

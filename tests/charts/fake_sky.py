@@ -11,9 +11,7 @@ class FakeSky:
     def __init__(self, settings: AirSettings) -> None:
         self.settings = settings
         self.wavelength_nm = np.arange(360.0, 831.0, 10.0)
-        self.depth = 0.1 * (550.0 / self.wavelength_nm) ** 4 + 0.03 * np.exp(
-            -(((self.wavelength_nm - 600) / 60) ** 2)
-        )
+        self.depth = 0.1 * (550.0 / self.wavelength_nm) ** 4 + 0.03 * np.exp(-(((self.wavelength_nm - 600) / 60) ** 2))
 
     def stokes(self, solar_elevation_deg, view_elevation_deg, relative_azimuth_deg):
         """Single scattering by molecules, shape (..., 3, wavelength)."""
