@@ -55,10 +55,11 @@ def run_build(options: argparse.Namespace) -> int:
     """Compute the charts and put the site in place of the former one."""
     out, jobs = out_folder(options), job_count(options)
     settings = load_settings(Path(options.config)) if options.config is not None else DEFAULT_SETTINGS
-    from skychart.pages import build_site
     from skychart.pages.write import check_replaceable
 
     check_replaceable(out)
+    from skychart.pages import build_site
+
     report = build_site(settings, out, jobs, _progress)
     _hand_out(f"{report}\n")
     return EXIT_DONE

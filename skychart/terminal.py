@@ -89,7 +89,9 @@ def _aligned(cells: Sequence[str], widths: Sequence[int]) -> str:
 def _temperature(reading: Reading) -> str:
     if math.isnan(reading.cct_k):
         return f"{NONE} (beyond 100000 K, or more than 0.05 away from the Planckian locus)"
-    return f"{significant(float(reading.cct_k), 4)} K, Duv {reading.duv:+.4f}"
+    temperature = float(reading.cct_k)
+    digits = 4 if temperature < 10_000 else 3 if temperature < 30_000 else 2  # a step in chromaticity widens there
+    return f"{significant(temperature, digits)} K, Duv {reading.duv:+.4f}"
 
 
 def _polarisation(reading: Reading) -> str:

@@ -21,10 +21,12 @@ import skychart.pages
 import skychart.sky.spectral
 from skychart import cli
 from skychart.arguments import COMMANDS, READ_ANGLES, folded_azimuth
+from skychart.charts.reading import reading
 from skychart.checks.check import Check
 from skychart.config import DEFAULT_SETTINGS, AirSettings, Settings, default_toml
 from skychart.pages.write import MARKER, swap_in
 from skychart.sky.spectral import SpectralSky, solve_spectral
+from skychart.terminal import reading_text
 
 READ_KEYS = [
     *("atmosphere", "solar_elevation_deg", "view_elevation_deg", "relative_azimuth_deg", "luminance_cd_m2", "XYZ"),
@@ -122,6 +124,15 @@ def test_a_colour_temperature_that_does_not_exist_is_null_in_json_and_none_in_wo
     values = json.loads(skychart_command(*READ, "--json").out)
     assert (values["cct_k"], values["duv"]) == (None, None)
     assert "colour temperature  none (" in skychart_command(*READ).out
+
+
+@pytest.mark.parametrize(
+    ("cct_k", "text"), [(6504.4, "6504 K"), (12345.0, "12300 K"), (94321.0, "94000 K"), (99999.0, "100000 K")]
+)
+def test_a_colour_temperature_has_as_many_digits_as_are_true(cct_k: float, text: str) -> None:
+    blue = reading(PlainSky(AirSettings()), 12.0, 45.0, 90.0)
+    warmer = dataclasses.replace(blue, cct_k=np.asarray(cct_k), duv=np.asarray(-0.001))
+    assert f"colour temperature  {text}, Duv -0.0010\n" in reading_text(warmer)
 
 
 @pytest.mark.usefixtures("plain_sky")
