@@ -9,7 +9,7 @@ from skychart.sky.shells import Shells, tangent_altitude
 
 Array = NDArray[np.float64]
 
-_STEP_DEG = 0.125
+_STEP_DEG = 0.0625
 # Columns are computed on these coarser steps where the air mass hardly bends: (up to this zenith angle, every)
 _COMPUTED = ((60.0, 1.0), (85.0, 0.25))
 
@@ -41,7 +41,7 @@ def transmission(shells: Shells, start: int, cos_zenith: Array) -> Array:
 
 @dataclass(frozen=True, eq=False)
 class SunTable:
-    """Transmission toward the sun, tabulated on (boundary, solar zenith angle every 0.125 degrees, wavelength).
+    """Transmission toward the sun, tabulated on (boundary, solar zenith angle every 1/16 degree, wavelength).
 
     Beyond the shadow's edge the table goes on smoothly, so that interpolation knows no edge; ``at`` cuts it exactly.
     """

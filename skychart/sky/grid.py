@@ -26,7 +26,7 @@ class Grid:
     many between; ``azimuth`` directions on half a turn; ``substeps`` parts of each layer for the direct beam.
     """
 
-    levels: int = 28
+    levels: int = 32
     zenith: int = 6
     azimuth: int = 6
     substeps: int = 5

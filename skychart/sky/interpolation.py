@@ -71,9 +71,9 @@ def _monotone_slopes(step: Array, secant: Array) -> Array:
         return slope
     before, after = secant[:-1], secant[1:]
     one, two = 2 * step[1:] + step[:-1], step[1:] + 2 * step[:-1]
-    same_sign = before * after > 0
-    safe = np.where(same_sign, one / np.where(same_sign, before, 1) + two / np.where(same_sign, after, 1), 1)
-    slope[1:-1] = np.where(same_sign, (one + two) / safe, 0.0)
+    product = before * after
+    same_sign = product > 0
+    slope[1:-1] = np.where(same_sign, (one + two) * product / np.where(same_sign, one * after + two * before, 1), 0.0)
     for end, near, far in ((0, 0, 1), (-1, -1, -2)):
         raw = ((2 * step[near] + step[far]) * secant[near] - step[near] * secant[far]) / (step[near] + step[far])
         limited = np.where(np.abs(raw) > 3 * np.abs(secant[near]), 3 * secant[near], raw)

@@ -16,6 +16,7 @@ from skychart.sky import dipole
 from skychart.sky.beam import SunTable
 from skychart.sky.fan import Fan, first_order
 from skychart.sky.grid import Grid, solar_zenith_nodes_deg
+from skychart.sky.interpolation import spline_matrix
 from skychart.sky.operator import THREADS, Operator
 from skychart.sky.shape import Shape
 from skychart.sky.shells import Shells
@@ -27,8 +28,9 @@ Array = NDArray[np.float64]
 class Field:
     """The solved field: ``tensor`` (level, node, entry, wavelength), ``ground`` (node, wavelength), over their shapes.
 
-    ``ground`` is downward irradiance at the ground, direct light included; ``scattered_ground`` that of light scattered
-    twice or more (ground reflections count). All per unit solar irradiance.
+    Nodes are whole degrees here: once solved, field over shape is smooth in solar zenith angle, and a cubic spline
+    through the solver's nodes makes it finer for observers.
+    ``ground`` is downward irradiance at the ground, direct light included. All per unit solar irradiance.
     """
 
     level_altitude_km: Array
@@ -36,7 +38,6 @@ class Field:
     ground_shape: Shape
     tensor: NDArray[np.float32]
     ground: NDArray[np.float32]
-    scattered_ground: NDArray[np.float32]
 
 
 def solve_field(
@@ -55,5 +56,7 @@ def solve_field(
     ground = direct + firsts[0].irradiance
     shapes = Shape.of(node_deg, dipole.trace(tensor[..., typical], 2)), Shape.of(node_deg, ground[None, :, typical])
     solved, lit = Operator(fans, chi, shapes, (a, b), albedo).sum_orders(tensor, ground)
-    scattered = lit - ground / shapes[1].at_node[0][:, None]
-    return Field(altitude, *shapes, solved, lit, scattered.astype(np.float32))
+    tensor_shape, ground_shape = (shape.every_degree() for shape in shapes)
+    refine = spline_matrix(node_deg, tensor_shape.node_deg).astype(np.float32)
+    fine = np.einsum("fn,lnew->lfew", refine, solved, optimize=True)
+    return Field(altitude, tensor_shape, ground_shape, fine, refine @ lit)

@@ -89,7 +89,8 @@ class Station:
             np.cos(lines.relative_azimuth[chosen]), np.sin(lines.relative_azimuth[chosen]),
             np.cos(lines.solar_zenith[chosen]), np.sin(lines.solar_zenith[chosen]),
         )  # fmt: skip
-        return ground_light(field, field.ground, cos_there)
+        node, low, high = field.ground_shape.weights(np.zeros((), np.intp), cos_there)
+        return low[:, None] * field.ground[node] + high[:, None] * field.ground[node + 1]
 
     def _blocks(self, lines: Lines, boundaries: NDArray[np.intp]) -> Iterator[tuple[Crossings, int, NDArray[np.intp]]]:
         """Yield (fan of all distinct rays, ray, indices of some lines along it); levels at ``boundaries``."""
@@ -110,12 +111,6 @@ class Station:
         )
         start = int(np.searchsorted(boundaries, self.start))
         return crossings(shells.altitude_km[boundaries], scattering, extinction, start, view, shells.planet_radius_km)
-
-
-def ground_light(field: Field, values: NDArray[np.float32], cos_chi: Array) -> Array:
-    """Interpolate ground values (node, wavelength), kept over the ground's shape, at ``cos_chi`` (...)."""
-    node, low, high = field.ground_shape.weights(np.zeros(1, np.intp), cos_chi)
-    return low[..., None] * values[node] + high[..., None] * values[node + 1]
 
 
 def _along(
@@ -188,5 +183,4 @@ def _with_level(field: Field, altitude_km: float) -> Field:
         ground_shape=field.ground_shape,
         tensor=insert(field.tensor),
         ground=field.ground,
-        scattered_ground=field.scattered_ground,
     )

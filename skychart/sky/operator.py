@@ -110,7 +110,7 @@ class Operator:
             own[:, -self.nodes :] = np.tensordot(radiance, level.ground, axes=1).reshape(self.rows, self.nodes)
 
     def _weighted(self, kernels: Kernels, wavelength: int) -> Single:
-        """The kernels with a wavelength's path weights, summed by source level: (level, output, node, entry, window)."""
+        """Kernels with one wavelength's path weights, summed by source level: (level, output, node, entry, window)."""
         size = kernels.dipolar.shape[1:]
         sums = np.zeros((len(self.levels), *size), np.float32)
         a, b = (coefficient[wavelength] for coefficient in self.coefficients)

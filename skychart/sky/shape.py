@@ -9,7 +9,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from skychart.sky.interpolation import monotone_cubic
+from skychart.sky.interpolation import spline_matrix
 
 Array = NDArray[np.float64]
 
@@ -27,11 +27,15 @@ class Shape:
 
     @classmethod
     def of(cls, node_deg: Array, values: Array) -> "Shape":
-        """From positive ``values`` (level, node); floored at 1e-7 of the largest."""
-        log = np.log(np.maximum(values, _FLOOR * values.max())).T
+        """From ``values`` >= 0 (level, node): a cubic spline of their logarithm, 1e-7 of the largest added."""
+        log = np.log(values + _FLOOR * values.max())
         query = np.arange(0, node_deg[-1] + _STEP_DEG, _STEP_DEG)
-        fine, _ = monotone_cubic(node_deg, log, query)
-        return cls(node_deg, np.exp(log.T), np.exp(fine.T))
+        return cls(node_deg, np.exp(log), np.exp(log @ spline_matrix(node_deg, query).T))
+
+    def every_degree(self) -> "Shape":
+        """The same curves, taken off at every whole degree."""
+        steps = round(1 / _STEP_DEG)
+        return Shape(np.arange(self.node_deg[-1] + 1), self.fine[:, ::steps], self.fine)
 
     def weights(self, level: NDArray[np.int_], cos_chi: Array) -> tuple[NDArray[np.intp], Array, Array]:
         """Lower node of each point and what a field divided by the shape counts at it and at the next node.

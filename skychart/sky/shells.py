@@ -27,7 +27,7 @@ def level_altitudes(top_km: float, count: int) -> Array:
     """
     above = top_km > _UPPER_KM
     x = np.linspace(0.0, 1.0, count - above)
-    levels = min(top_km, _UPPER_KM) * (0.25 * x + 0.75 * x**2.5)
+    levels = min(top_km, _UPPER_KM) * (0.2 * x + 0.8 * x**2.5)
     return np.append(levels, top_km) if above else levels
 
 

@@ -1,18 +1,18 @@
 """The solved sky of one atmosphere, for every sun and direction."""
 
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from skychart.errors import InputError
-from skychart.sky import beam, dipole
+from skychart.sky import beam
 from skychart.sky.atmosphere import Atmosphere
 from skychart.sky.beam import SunTable
-from skychart.sky.fan import Fan, first_order
 from skychart.sky.grid import Grid
 from skychart.sky.molecular import Field, solve_field
-from skychart.sky.observer import Lines, Station, ground_light
+from skychart.sky.observer import Lines, Station
 from skychart.sky.shells import Shells, level_altitudes, subdivide
 
 Array = NDArray[np.float64]
@@ -95,23 +95,21 @@ class Sky:
 
     def ground_irradiance(self, solar_elevation_deg: ArrayLike) -> tuple[Array, Array]:
         """Diffuse and direct irradiance of the horizontal ground, each (..., wavelength)."""
-        elevation = within("solar elevation", solar_elevation_deg, LOWEST_SUN_DEG, 90)
-        sine = np.sin(np.radians(elevation))
-        direct = np.maximum(sine, 0)[..., None] * self.beam(elevation)
-        return self.single_irradiance(elevation) + self.multiple_irradiance(elevation), direct
+        diffuse = self.single_irradiance(solar_elevation_deg) + self.multiple_irradiance(solar_elevation_deg)
+        return diffuse, self.direct_irradiance(solar_elevation_deg)
 
-    def single_irradiance(self, solar_elevation_deg: ArrayLike) -> Array:
-        """The part of the ground's diffuse irradiance scattered once, (..., wavelength)."""
-        elevation = within("solar elevation", solar_elevation_deg, LOWEST_SUN_DEG, 90)
-        coefficients = dipole.molecular_coefficients(self.air.depolarisation)
-        fan = Fan(self.ground.shells, self.grid, 0)
-        once = first_order(self.ground.table, fan, np.radians(90 - elevation.ravel()), *coefficients)
-        return once.irradiance.reshape(*elevation.shape, -1)
+    def direct_irradiance(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
+        """Irradiance of a horizontal plane by the sun itself, (..., wavelength)."""
+        transmission = self.beam(solar_elevation_deg, altitude_km)
+        return np.maximum(np.sin(np.radians(solar_elevation_deg)), 0)[..., None] * transmission
 
-    def multiple_irradiance(self, solar_elevation_deg: ArrayLike) -> Array:
-        """The part of the ground's diffuse irradiance scattered more than once, (..., wavelength)."""
-        elevation = within("solar elevation", solar_elevation_deg, LOWEST_SUN_DEG, 90)
-        return ground_light(self.field, self.field.scattered_ground, np.sin(np.radians(elevation)))
+    def single_irradiance(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
+        """Irradiance of a horizontal plane by light scattered once, (..., wavelength)."""
+        return _hemisphere(self.single, solar_elevation_deg, altitude_km)
+
+    def multiple_irradiance(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
+        """Irradiance of a horizontal plane by light scattered more than once or by the ground, (..., wavelength)."""
+        return _hemisphere(self.multiple, solar_elevation_deg, altitude_km)
 
     def _station(self, altitude_km: float) -> Station:
         altitude = float(within("altitude", altitude_km, 0, HIGHEST_OBSERVER_KM, "km"))
@@ -120,6 +118,17 @@ class Sky:
             return Station(self.ground.shells, self.ground.table, int(np.searchsorted(boundaries, altitude)))
         shells = Shells.of(self.air, np.sort(np.append(boundaries, altitude)))
         return Station(shells, SunTable.of(shells), int(np.searchsorted(shells.altitude_km, altitude)))
+
+
+def _hemisphere(stokes: Callable[..., Array], solar_elevation_deg: ArrayLike, altitude_km: float) -> Array:
+    """Sum of radiance times cosine over 16 zenith angles, clustered at the horizon, and 8 azimuths of the half turn."""
+    quadrature = Grid(zenith=16, azimuth=8)
+    cosine, weight = (part[: quadrature.zenith] for part in quadrature.cosines(0.0))
+    cos_phi, _, phi_weight = quadrature.azimuths()
+    sun = np.asarray(solar_elevation_deg, dtype=float)[..., None, None]
+    view = np.degrees(np.arcsin(cosine))[:, None], np.degrees(np.arccos(cos_phi))
+    radiance = stokes(sun, *view, altitude_km)[..., 0, :]
+    return np.einsum("...zpl,z->...l", radiance, cosine * weight * phi_weight)
 
 
 def within(name: str, value: ArrayLike, low: float, high: float, unit: str = "°") -> Array:

@@ -1,10 +1,12 @@
 """The sky of one atmosphere on the nodes that colour is made from.
 
 Light scattered once is computed at every node; light scattered more often at eleven wavelengths, its logarithm carried
-to the nodes by a cubic spline (and the ratios Q/I, U/I likewise).
+to the nodes by a cubic spline (and the ratios Q/I, U/I likewise). A spline cannot see the ozone bands between its
+knots: of each logarithm that multiple of the ozone cross-section is split off which leaves the smoothest rest.
 """
 
 from dataclasses import dataclass, replace
+from functools import cache
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -57,39 +59,44 @@ class SpectralSky:
         return self.once.beam(solar_elevation_deg, self.settings.altitude_km)
 
     def ground_irradiance(self, solar_elevation_deg: ArrayLike) -> tuple[Array, Array]:
-        """Diffuse and direct irradiance of the horizontal ground per unit solar irradiance, each (..., 48)."""
-        multiple = _to_nodes(self.every_order.multiple_irradiance(solar_elevation_deg))
-        elevation = np.asarray(solar_elevation_deg, dtype=float)
-        direct = np.maximum(np.sin(np.radians(elevation)), 0)[..., None] * self.once.beam(elevation)
-        return self.once.single_irradiance(elevation) + multiple, direct
+        """Diffuse and direct irradiance of a horizontal plane per unit solar irradiance, each (..., 48)."""
+        place = solar_elevation_deg, self.settings.altitude_km
+        multiple = _to_nodes(self.every_order.multiple_irradiance(*place))
+        return self.once.single_irradiance(*place) + multiple, self.once.direct_irradiance(*place)
 
 
 def solve_spectral(settings: AirSettings) -> SpectralSky:
     """Solve the sky of ``settings``. Raises InputError."""
     sky = solve(_air(settings, MULTIPLE_NM))
     air = _air(settings, NODES_NM)
-    air = replace(air, absorption_depth=_fitted_ozone(air, settings.ozone_du))
+    ozone = gases.ozone_layers(air.level_altitude_km, settings.ozone_du)
+    air = replace(air, absorption_depth=ozone[:, None] * _fitted_ozone())
     shells = Shells.of(air, sky.ground.shells.altitude_km)
     return SpectralSky(settings, sky, Sky(air, sky.grid, Station(shells, SunTable.of(shells), 0), sky.field))
+
+
+def _to_nodes(light: Array) -> Array:
+    """Positive ``light`` (..., 11) at the wavelengths of multiple scattering carried to the nodes, (..., 48)."""
+    log = np.log(np.maximum(light, _DARKEST))
+    bands = gases.ozone_cross_section(MULTIPLE_NM)
+    bends = np.diff(bands, n=3)
+    depth = (np.diff(log, n=3) @ bends / (bends @ bends))[..., None]
+    return np.exp((log - depth * bands) @ _SPLINE.T + depth * _fitted_ozone())
 
 
 _SPLINE = spline_matrix(MULTIPLE_NM, NODES_NM)
 
 
-def _to_nodes(light: Array) -> Array:
-    return np.exp(np.log(np.maximum(light, _DARKEST)) @ _SPLINE.T)
-
-
-def _air(settings: AirSettings, wavelength_nm: Array) -> Atmosphere:
-    return Atmosphere.standard(wavelength_nm, settings.ozone_du, settings.ground_albedo)
-
-
-def _fitted_ozone(air: Atmosphere, ozone_du: float) -> Array:
-    """Ozone depths (layer, wavelength) whose spline through the nodes follows the 1 nm table best, in least squares.
+@cache
+def _fitted_ozone() -> Array:
+    """Ozone cross-section [m2] on the nodes whose spline follows the 1 nm table best, in least squares.
 
     Sampled at the nodes alone, the Chappuis bands' structure would move the direct light by 2e-4 in xy.
     """
     fine = np.arange(NODES_NM[0], NODES_NM[-1] + 1)
-    spline = spline_matrix(NODES_NM, fine)
-    fitted, *_ = np.linalg.lstsq(spline, gases.ozone_cross_section(fine), rcond=None)
-    return gases.ozone_layers(air.level_altitude_km, ozone_du)[:, None] * np.maximum(fitted, 0)
+    fitted, *_ = np.linalg.lstsq(spline_matrix(NODES_NM, fine), gases.ozone_cross_section(fine), rcond=None)
+    return np.maximum(fitted, 0)
+
+
+def _air(settings: AirSettings, wavelength_nm: Array) -> Atmosphere:
+    return Atmosphere.standard(wavelength_nm, settings.ozone_du, settings.ground_albedo)
