@@ -106,8 +106,8 @@ def _columns(values: Reading, colours: Colours, shown_hex: list[str]) -> list[_C
     degree, angle = values.polarisation_degree, values.polarisation_angle_deg
     return [
         *found,
-        of("polarisation_degree", "Degree", "", "Polarisation", degree, fixed, 3),
-        of("polarisation_angle_deg", "Angle", "°", "Polarisation", angle, fixed, 1),
+        of("polarisation_degree", "degree", "", "Polarisation", degree, fixed, 3),
+        of("polarisation_angle_deg", "angle", "°", "Polarisation", angle, fixed, 1),
         text("shown_hex", "as shown", "sRGB code", shown_hex),
         text("srgb_hex", "card white", "sRGB code", [str(code) for code in values.srgb_hex]),
     ]

@@ -5,6 +5,7 @@ import math
 MISSING = "—"
 _THIN_SPACE = "\u2009"
 _MINUS = "\u2212"
+_SUPERSCRIPT = str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹")
 
 
 def fixed(value: float, decimals: int) -> str:
@@ -34,15 +35,18 @@ def rounded(value: float, digits: int) -> float | None:
 
 
 def spaced(text: str) -> str:
-    """A plain number as it is read on a page: true minus, thin spaces from five digits on, dash for none."""
+    """A plain number as it is read on a page: true minus, thin spaces from five digits on, powers, dash for none."""
     if not text:
         return MISSING
+    mantissa, power, exponent = text.partition("e")
+    if power:
+        return f"{spaced(mantissa)}\u202f×\u202f10{str(int(exponent)).translate(_SUPERSCRIPT)}"
     sign, body = (_MINUS, text[1:]) if text.startswith("-") else ("", text)
     whole, point, decimals = body.partition(".")
     if whole.isdigit() and len(whole) > 4:
         first = len(whole) % 3 or 3
         whole = _THIN_SPACE.join([whole[:first], *(whole[i : i + 3] for i in range(first, len(whole), 3))])
-    return f"{sign}{whole}{point}{decimals.replace('e-', f'e{_MINUS}')}"
+    return f"{sign}{whole}{point}{decimals}"
 
 
 def degrees(value: float) -> str:

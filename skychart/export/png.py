@@ -11,6 +11,7 @@ import numpy as np
 _SIGNATURE = b"\x89PNG\r\n\x1a\n"
 _TRUECOLOUR = 2
 _PERCEPTUAL = b"\0"
+_LEVEL = 7  # 9 takes four times as long for 2 % fewer bytes
 
 
 def srgb_png(pixels: np.ndarray) -> bytes:
@@ -28,7 +29,7 @@ def _packed(pixels: np.ndarray, filter_type: int) -> bytes:
     start = np.zeros_like(np.take(pixels, [0], axis=axis))
     rows = np.diff(pixels, axis=axis, prepend=start).reshape(len(pixels), -1)
     marked = np.insert(rows, 0, filter_type, axis=1)
-    return zlib.compress(marked.tobytes(), 9)
+    return zlib.compress(marked.tobytes(), _LEVEL)
 
 
 def _chunk(name: bytes, data: bytes) -> bytes:

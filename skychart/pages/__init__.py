@@ -1,5 +1,17 @@
-"""The HTML pages: from finished chart data to a folder of files that opens from disk."""
+"""The HTML pages: from finished chart data to a folder of files that opens from disk.
 
-from skychart.pages.build import BuildReport, build_site
+`build_site` and `BuildReport` are fetched when first asked for: figures take seconds to import, which nobody who
+only writes or checks a folder should wait for.
+"""
+
+from typing import Any
 
 __all__ = ["BuildReport", "build_site"]
+
+
+def __getattr__(name: str) -> Any:
+    if name not in __all__:
+        raise AttributeError(f"module {__name__!r} has no attribute {name!r}")
+    from skychart.pages import build
+
+    return getattr(build, name)

@@ -1,14 +1,9 @@
 """Build the site: solve each atmosphere, make all chart data, render sheets side by side, write once at the end."""
 
-import multiprocessing
-import os
-import signal
-import threading
 from collections.abc import Callable
-from concurrent.futures import Executor, Future, ProcessPoolExecutor, as_completed
+from concurrent.futures import Executor, Future, as_completed
 from dataclasses import dataclass, replace
 from pathlib import Path
-from typing import Any
 
 from skychart.charts.checks import methods
 from skychart.charts.direction import direction_sheet
@@ -20,6 +15,7 @@ from skychart.config import Settings
 from skychart.pages.environment import static_files
 from skychart.pages.render import direction_files, methods_files, sheet_files, start_files
 from skychart.pages.site import Atlas, make_atlas
+from skychart.pages.workers import workers
 from skychart.pages.write import swap_in
 from skychart.sky.spectral import solve_spectral
 
@@ -49,19 +45,15 @@ def build_site(settings: Settings, out: Path, jobs: int, progress: Callable[[str
     settings = replace(settings, solar_elevations_deg=tuple(sorted(settings.solar_elevations_deg)))
     atlas = make_atlas(settings)
     files = static_files()
-    with _workers(jobs) as pool:
-        try:
-            checking = pool.submit(run_checks)
-            surveys = [_survey(settings, number, progress) for number in range(len(settings.atmospheres))]
-            rendering = [work for found in surveys for work in _submit_pages(pool, atlas, found)]
-            for count, done in enumerate(as_completed(rendering), start=1):
-                files |= done.result()
-                progress(f"page {count} of {len(rendering)}")
-            progress("comparing with published values")
-            checks = checking.result()
-        except BaseException:
-            pool.shutdown(wait=False, cancel_futures=True)
-            raise
+    with workers(jobs) as pool:
+        checking = pool.submit(run_checks)
+        surveys = [_survey(settings, number, progress) for number in range(len(settings.atmospheres))]
+        rendering = [work for found in surveys for work in _submit_pages(pool, atlas, found)]
+        for count, done in enumerate(as_completed(rendering), start=1):
+            files |= done.result()
+            progress(f"page {count} of {len(rendering)}")
+        progress("comparing with published values")
+        checks = checking.result()
     files |= methods_files(atlas, methods(checks, surveys[0]))
     progress("writing")
     swap_in(files, out)
@@ -91,33 +83,3 @@ def _submit_pages(pool: Executor, atlas: Atlas, found: Survey) -> list[Future[di
         *(pool.submit(sheet_files, atlas, elevation_sheet(found, sun)) for sun in suns),
         *(pool.submit(direction_files, atlas, direction_sheet(found, view)) for view in DIRECTIONS),
     ]
-
-
-def _workers(jobs: int) -> Executor:
-    """Fresh processes, the same way on every system; with one job the work is done here."""
-    if jobs == 1:
-        return _Here()
-    return ProcessPoolExecutor(jobs, multiprocessing.get_context("spawn"), _leave_with_parent)
-
-
-class _Here(Executor):
-    """Does each piece of work as it is handed in."""
-
-    def submit(self, task: Callable[..., Any], /, *arguments: Any, **named: Any) -> Future[Any]:
-        """A finished future of `task`; what the task raises is raised here."""
-        done: Future[Any] = Future()
-        done.set_result(task(*arguments, **named))
-        return done
-
-
-def _leave_with_parent() -> None:
-    """In a worker: leave interrupts to the parent, and end when it ends, however it does."""
-    signal.signal(signal.SIGINT, signal.SIG_IGN)
-    threading.Thread(target=_end_with_parent, daemon=True).start()
-
-
-def _end_with_parent() -> None:
-    parent = multiprocessing.parent_process()
-    if parent is not None:
-        parent.join()
-        os._exit(1)

@@ -30,7 +30,7 @@ def half_dome(sky_XYZ: np.ndarray, exposure: Exposure) -> np.ndarray:
     elevation = np.clip(90 * (1 - radius), 0, 90)
     azimuth = np.degrees(np.arctan2(np.abs(right), down))
     channels = np.rint(exposure.screen(_bilinear(fine, elevation * 2, azimuth)) * 255)
-    channels[radius > 1 + RIM_PIXELS / DOME_PIXELS] = _SURROUND_BYTE
+    channels[radius > 1 + 4 * RIM_PIXELS / DOME_PIXELS] = _SURROUND_BYTE
     return channels.astype(np.uint8)
 
 

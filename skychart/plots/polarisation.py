@@ -1,10 +1,10 @@
 """All-sky figure of polarisation: contours of its degree, and ticks along the electric vector."""
 
 import numpy as np
-from numpy.typing import ArrayLike
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 from matplotlib.patches import Circle
+from numpy.typing import ArrayLike
 
 from skychart.charts.curves import Polarisation
 from skychart.plots.frame import INK, MUTED, RULE, figure_svg, write

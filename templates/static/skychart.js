@@ -6,6 +6,7 @@
   const isPlain = (event) => !(event.altKey || event.ctrlKey || event.metaKey || event.shiftKey);
 
   const stepBySheet = (ruler) => {
+    document.querySelector("[data-keys]").hidden = false;
     document.addEventListener("keydown", (event) => {
       const rel = { ArrowLeft: "prev", ArrowRight: "next" }[event.key];
       const free = document.activeElement === document.body || ruler.contains(document.activeElement);

@@ -43,6 +43,7 @@ def test_spaced_is_for_reading():
     assert spaced("-108400.5") == "−108\u2009400.5"
     assert spaced("9999") == "9999"
     assert spaced("12345678") == "12\u2009345\u2009678"
+    assert spaced("-1.673e-26") == "−1.673\u202f×\u202f10⁻²⁶"
     assert spaced("") == "—"
 
 
