@@ -8,6 +8,7 @@ import signal
 import subprocess
 import sys
 import textwrap
+import time
 from collections.abc import Callable
 from pathlib import Path
 
@@ -486,6 +487,25 @@ def test_a_full_disk_is_one_line() -> None:
 def test_as_a_module_it_is_the_same_command() -> None:
     process = subprocess.run([sys.executable, "-m", "skychart", "config"], capture_output=True, text=True, check=False)
     assert (process.returncode, process.stdout) == (0, default_toml())
+
+
+def test_ctrl_c_while_workers_start_is_one_line_and_they_end_with_the_build(tmp_path: Path) -> None:
+    config = tmp_path / "one.toml"
+    config.write_text("solar_elevations_deg = [30]\n")
+    swap_in({"index.html": b"former"}, tmp_path / "site")
+    with subprocess.Popen(
+        [sys.executable, "-m", "skychart", "build", str(config), "--out", str(tmp_path / "site"), "--jobs", "2"],
+        stderr=subprocess.PIPE,
+        text=True,
+        start_new_session=True,
+    ) as process:
+        assert process.stderr is not None
+        assert process.stderr.readline() == "molecular: solving\n"
+        time.sleep(0.5)  # by now the workers are importing
+        os.killpg(process.pid, signal.SIGINT)  # what a terminal does on Ctrl-C
+        rest = process.stderr.read()  # ends when the last worker has closed it
+    assert (rest, process.returncode) == ("skychart: interrupted\n", 130)
+    assert (tmp_path / "site" / "index.html").read_bytes() == b"former"
 
 
 # the real sky: solved twice in all, for that takes seconds

@@ -23,6 +23,9 @@ def workers(jobs: int) -> Iterator[Executor]:
     context = multiprocessing.get_context("spawn")
     leash, held = context.Pipe(duplex=False)
     pool = ProcessPoolExecutor(jobs, context, _stay_on, (leash,))
+    with _interrupts_held():
+        for _ in range(jobs):
+            pool.submit(os.getpid)  # starts a worker
     try:
         yield pool
     except BaseException:
@@ -32,6 +35,19 @@ def workers(jobs: int) -> Iterator[Executor]:
         pool.shutdown(cancel_futures=True)
         held.close()
         leash.close()
+
+
+@contextmanager
+def _interrupts_held() -> Iterator[None]:
+    """Processes started within inherit the block: Ctrl-C is for the parent, even while they are still importing."""
+    if not hasattr(signal, "pthread_sigmask"):
+        yield
+        return
+    former = signal.pthread_sigmask(signal.SIG_BLOCK, {signal.SIGINT})
+    try:
+        yield
+    finally:
+        signal.pthread_sigmask(signal.SIG_SETMASK, former)
 
 
 class _Here(Executor):
