@@ -1,0 +1,89 @@
+"""Flat air for the local solver: each place taken as flat, its direct light as it truly arrives."""
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from skychart.sky.haze import Haze
+
+Array = NDArray[np.float64]
+
+_ISOTROPIC = 1e-6
+
+
+@dataclass(frozen=True, eq=False)
+class FlatAir:
+    """Layers of molecules, absorbing gas and haze over a Lambert ground, under many suns at once.
+
+    ``rayleigh_depth``, ``absorption_depth``: vertical optical depth of each layer from the ground up, shape (layer,
+    wavelength). ``haze``: its depths in the same layers. ``depolarisation``, ``ground_albedo``: (wavelength,).
+    ``solar_zenith_angle`` [rad]: (sun,). ``beam``: transmission from the sun to each layer boundary, the ground first,
+    (layer + 1, sun, wavelength); it need not be that of flat layers, and may be 0 in the planet's shadow.
+    ``scaled_beam``: the same where the haze's optical depth is reduced by the part ``peak_fraction`` of its scattering,
+    as the closure has it. Trusted to be in range: they come from a checked Atmosphere.
+    """
+
+    rayleigh_depth: Array
+    absorption_depth: Array
+    haze: Haze
+    depolarisation: Array
+    ground_albedo: Array
+    solar_zenith_angle: Array
+    beam: Array
+    scaled_beam: Array
+
+
+@dataclass(frozen=True, eq=False)
+class Optics:
+    """What the equations of transfer need of the air, with a part of the haze's scattering taken for unscattered.
+
+    ``scattering`` (species, layer, wavelength), molecules first, and ``extinction`` (layer, wavelength): vertical
+    optical depths. ``moments`` (moment, wavelength) of the haze's phase function. ``beam`` (boundary, sun, wavelength).
+    """
+
+    scattering: Array
+    extinction: Array
+    moments: Array
+    beam: Array
+
+
+def peak_fraction(haze: Haze) -> Array:
+    """Part of the haze's scattering that the closure takes for unscattered, the asymmetry squared; (wavelength,).
+
+    Joseph, Wiscombe & Weinman 1976, The delta-Eddington approximation, doi:10.1175/1520-0469(1976)033<2452:TDEAFR>2.0.CO;2.
+    """
+    return haze.moments(2)[1] ** 2
+
+
+def unscaled(air: FlatAir, moments: int) -> Optics:
+    """The air as it is, with so many moments of the phase function."""
+    return _optics(air, air.haze.moments(moments), np.zeros_like(air.depolarisation), air.beam)
+
+
+def delta_m(air: FlatAir, moments: int) -> Optics:
+    """The haze's forward peak, all that ``moments`` moments cannot hold, taken for unscattered.
+
+    Wiscombe 1977, The delta-M method, doi:10.1175/1520-0469(1977)034<1408:TDMRYA>2.0.CO;2.
+    """
+    values = air.haze.moments(moments + 1)
+    fraction = np.maximum(values[-1], 0)
+    whole = peak_fraction(air.haze)
+    power = np.where(whole > _ISOTROPIC, fraction / np.maximum(whole, _ISOTROPIC), 0)
+    lit = air.beam > 0
+    beam = np.where(lit, air.beam * (air.scaled_beam / np.where(lit, air.beam, 1)) ** power, 0)
+    return _optics(air, (values[:-1] - fraction) / (1 - fraction), fraction, beam)
+
+
+def delta_eddington(air: FlatAir) -> Optics:
+    """The haze with two moments, the square of its asymmetry taken for unscattered."""
+    asymmetry = air.haze.moments(2)[1]
+    moments = np.array([np.ones_like(asymmetry), asymmetry / (1 + asymmetry)])
+    return _optics(air, moments, peak_fraction(air.haze), air.scaled_beam)
+
+
+def _optics(air: FlatAir, moments: Array, fraction: Array, beam: Array) -> Optics:
+    haze = air.haze.depth * air.haze.single_scattering_albedo * (1 - fraction)
+    absorbed = air.absorption_depth + air.haze.depth * (1 - air.haze.single_scattering_albedo)
+    scattering = np.stack([air.rayleigh_depth, haze])
+    return Optics(scattering, scattering.sum(axis=0) + absorbed, moments, beam)

@@ -1,0 +1,88 @@
+"""What an observer in flat air sees besides the light scattered once: one exact scattering of a solved field.
+
+The light that falls on a point is the field's, plus the beam its scaled haze let pass but the true haze does not,
+scaled beam minus true beam, in the sun's direction. It is scattered by the full phase function and gathered along the
+line of sight with the true extinction. Of the full field this is the multiply scattered light; of the closure it is the
+same in the closure's geometry-independent approximation.
+"""
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
+
+from skychart.sky.dipole import molecular_coefficients
+from skychart.sky.local import tensor
+from skychart.sky.local.air import FlatAir, unscaled
+from skychart.sky.local.field import FlatField, leading_radiance
+from skychart.sky.local.paths import beam_averages, from_ground, path_weights
+from skychart.sky.local.streams import scattering_kernel
+from skychart.sky.local.system import HAZE, MOLECULES
+
+Array = NDArray[np.float64]
+
+
+@dataclass(frozen=True, eq=False)
+class FlatLight:
+    """Light scattered more than once, seen along ``view_cosine`` (view,), cosines of the zenith angle of sight.
+
+    ``tensor`` (sun, view, entry, wavelength): the molecules' tensor averaged along the line of sight (entries as in
+    FlatField), ``haze`` (sun, view, mode, wavelength) [1/sr]: light sent by the haze, in cosine modes of azimuth;
+    ``peak`` (sun, view, wavelength): what the phase function at the angle from the sun multiplies [1/sr] to give the
+    light that the haze scatters from the beam's remainder; ``ground`` (sun, view, wavelength) [1/sr]: the lit ground.
+    """
+
+    air: FlatAir
+    view_cosine: Array
+    tensor: Array
+    haze: Array
+    peak: Array
+    ground: Array
+
+    def stokes(self, sun: ArrayLike, view: ArrayLike, relative_azimuth: ArrayLike) -> Array:
+        """I, Q, U [1/sr] per unit solar irradiance, (..., 3, wavelength), haze light and the ground's unpolarised.
+
+        ``sun`` and ``view`` are indices, ``relative_azimuth`` [rad] from the sun's; they broadcast to (...). Q > 0 where
+        the electric vector is perpendicular to the vertical plane of sight.
+        """
+        azimuth = np.asarray(relative_azimuth, dtype=float)
+        cosine, cos_sun = self.view_cosine[view], np.cos(self.air.solar_zenith_angle)[sun]
+        cosine, cos_sun, azimuth = np.broadcast_arrays(cosine, cos_sun, azimuth)
+        light = tensor.stokes(
+            self.tensor[sun, view], cosine, azimuth, *molecular_coefficients(self.air.depolarisation)
+        )
+        modes = np.cos(azimuth[..., None] * np.arange(self.haze.shape[2]))
+        angle = cosine * cos_sun + np.sqrt((1 - cosine**2) * (1 - cos_sun**2)) * np.cos(azimuth)
+        light[..., 0, :] += (
+            (modes[..., None, :] @ self.haze[sun, view])[..., 0, :]
+            + self.peak[sun, view] * self.air.haze.phase_at(angle)
+            + self.ground[sun, view]
+        )
+        return light
+
+
+def one_scattering(field: FlatField, view_cosine: Array, boundary: int = 0) -> FlatLight:
+    """One exact scattering of ``field`` as seen from ``boundary`` along ``view_cosine`` (view,), not 0."""
+    air, streams = field.air, field.streams
+    optics = unscaled(air, streams.moments)
+    weights = path_weights(optics.scattering, optics.extinction, view_cosine)[:, :, :, boundary]
+    passed, kept = (
+        beam_averages(optics.scattering, optics.extinction, view_cosine, beam)[:, :, :, boundary]
+        for beam in (field.optics.beam, air.beam)
+    )
+    remainder = passed - kept
+    kernel = scattering_kernel(optics.moments, streams, view_cosine, len(field.moments))
+    incident = leading_radiance(field, streams.cosine)
+    along = np.einsum("wvk,mwskn->mwvsn", weights[HAZE][..., field.hazy], incident, optimize=True)
+    haze = np.einsum("mwvs,mwvsn->nvmw", kernel, along, optimize=True)
+    molecules = np.einsum("wvk,knew->nvew", weights[MOLECULES], field.tensor, optimize=True)
+    molecules += np.einsum("wvn,en->nvew", remainder[MOLECULES], tensor.of_beam(np.cos(air.solar_zenith_angle)))
+    below = from_ground(optics.extinction, view_cosine)[:, :, boundary]
+    return FlatLight(
+        air=air,
+        view_cosine=view_cosine,
+        tensor=molecules,
+        haze=haze,
+        peak=np.moveaxis(remainder[HAZE], 0, 2).swapaxes(0, 1) / (4 * np.pi),
+        ground=np.einsum("wv,nw->nvw", below, air.ground_albedo / np.pi * field.ground),
+    )
