@@ -130,8 +130,8 @@ def _row(check: Check) -> CheckRow:
         source=check.source,
         published=spaced(_value(check.published, decimals)),
         computed=spaced(_value(check.computed, decimals)),
-        difference=_signed(f"{_percent(check.difference)} %" if check.relative else _value(check.difference, decimals)),
-        tolerance=f"{_percent(check.tolerance)} %" if check.relative else spaced(_value(check.tolerance, decimals)),
+        difference=_signed(_in_percent(check, check.difference) or _value(check.difference, decimals)),
+        tolerance=spaced(_in_percent(check, check.tolerance) or _value(check.tolerance, decimals)),
         reason=check.tolerance_reason,
         unit="" if check.unit == "1" else check.unit,
         verdict="met" if check.passed else "missed",
@@ -143,6 +143,11 @@ def _decimals(check: Check) -> int | None:
     size = check.tolerance * abs(check.published) if check.relative else check.tolerance
     if max(abs(check.published), abs(check.computed)) >= 1e6 or size < 1e-7:
         return None
+    return _decimals_of(size)
+
+
+def _decimals_of(size: float) -> int:
+    """Decimals that show a tenth of `size`."""
     return int(np.clip(1 - np.floor(np.log10(size)), 0, 8))
 
 
@@ -150,12 +155,15 @@ def _value(value: float, decimals: int | None) -> str:
     return significant(value, _DIGITS) if decimals is None else fixed(value, decimals)
 
 
-def _percent(share: float) -> str:
-    return significant(100 * share, 2)
+def _in_percent(check: Check, share: float) -> str:
+    """A share in per cent, to a tenth of the tolerance; nothing if the check is not relative or it is nan."""
+    if not check.relative or np.isnan(share):
+        return ""
+    return f"{fixed(100 * share, _decimals_of(100 * check.tolerance))} %"
 
 
 def _signed(text: str) -> str:
-    return spaced(text) if text.startswith("-") or not text.strip(" %") else f"+{text}"
+    return spaced(text) if text.startswith("-") or not text else f"+{spaced(text)}"
 
 
 def _course(survey: Survey) -> LightCourse:

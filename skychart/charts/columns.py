@@ -83,7 +83,7 @@ def _columns(values: Reading, colours: Colours, shown_hex: list[str]) -> list[_C
     balance, light = "Colour of light", "Light"
     found = [
         of("luminance_cd_m2", "Luminance", "cd/m²", light, values.luminance_cd_m2, significant, 4),
-        of("ev100", "EV100", "EV", light, colours.ev100, fixed, 2),
+        of("ev100", "EV100", "", light, colours.ev100, fixed, 2),
         *(of(axis, axis, "cd/m²", "CIE XYZ", values.XYZ[:, i], significant, 4) for i, axis in enumerate("XYZ")),
         of("x", "x", "", "CIE xy", values.xy[:, 0], fixed, 4),
         of("y", "y", "", "CIE xy", values.xy[:, 1], fixed, 4),
@@ -99,10 +99,7 @@ def _columns(values: Reading, colours: Colours, shown_hex: list[str]) -> list[_C
             key = f"{space}_{channel.lower()}"
             numbers = values.rgb[space][:, i]
             found.append(of(key, channel, "", f"{SPACE_TITLES[space]} linear", numbers, significant, 4))
-    inside = "Inside"
-    for space in GAMUTS:
-        cells = ["yes" if flag else "no" for flag in values.in_gamut[space]]
-        found.append(text(f"in_{space}", SPACE_TITLES[space], inside, cells))
+    found.append(text("smallest_gamut", "gamut", "Smallest", _smallest_gamuts(values.in_gamut)))
     degree, angle = values.polarisation_degree, values.polarisation_angle_deg
     return [
         *found,
@@ -111,3 +108,10 @@ def _columns(values: Reading, colours: Colours, shown_hex: list[str]) -> list[_C
         text("shown_hex", "as shown", "sRGB code", shown_hex),
         text("srgb_hex", "card white", "sRGB code", [str(code) for code in values.srgb_hex]),
     ]
+
+
+def _smallest_gamuts(in_gamut: dict[str, np.ndarray]) -> list[str]:
+    """For each colour the first of sRGB, Display P3 and BT.2020 that holds it, or none."""
+    flags = zip(*(in_gamut[space] for space in GAMUTS), strict=True)
+    titles = [SPACE_TITLES[space] for space in GAMUTS]
+    return [next((title for title, inside in zip(titles, row, strict=True) if inside), "none") for row in flags]

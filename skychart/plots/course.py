@@ -20,13 +20,13 @@ def course_svg(chart: Course) -> bytes:
 
     def draw(figure: Figure) -> None:
         luminance = _panel(figure, 0, log_scale(chart.luminance_cd_m2, "Luminance, cd/m²"), chart)
-        luminance.curve(chart.solar_elevation_deg, chart.luminance_cd_m2)
+        _course(luminance, chart, chart.luminance_cd_m2)
         chroma = _panel(figure, 1, _CHROMA, chart)
         for number in range(2):
-            chroma.curve(chart.solar_elevation_deg, chart.uv[:, 1 - number], number)
+            _course(chroma, chart, chart.uv[:, 1 - number], number)
             chroma.text(chroma.x.high, chart.uv[-1, 1 - number], ("v′", "u′")[number], (0.06, 0), va="center")
         degree = _panel(figure, 2, _DEGREE, chart)
-        degree.curve(chart.solar_elevation_deg, chart.degree)
+        _course(degree, chart, chart.degree)
 
     return figure_svg(SIZE_IN, draw)
 
@@ -38,6 +38,12 @@ def sun_scale(solar_elevation_deg: np.ndarray, labelled: bool = True) -> Scale:
     ticks = [tick for tick in range(-90, 91, 10) if low <= tick <= high]
     labels = [f"{tick}".replace("-", "−") if labelled else "" for tick in ticks]
     return Scale(low, high, ticks, labels, "Sun elevation, degrees" if labelled else "")
+
+
+def _course(panel: Panel, chart: Course, values: np.ndarray, number: int = 0) -> None:
+    """A curve with a mark at each sun that was computed."""
+    panel.curve(chart.solar_elevation_deg, values, number)
+    panel.line(chart.solar_elevation_deg, values, linestyle="none", marker="o", markersize=3)
 
 
 def _panel(figure: Figure, number: int, y: Scale, chart: Course) -> Panel:

@@ -213,6 +213,7 @@ def _lean(svg: str) -> str:
     while count:
         svg, count = re.subn(r"<g>((?:(?!<g\b|</g>).)*)</g>", r"\1", svg, flags=re.DOTALL)
     svg = re.sub(r' style="fill: (#\w+); ([^"]*)"', r' fill="\1" style="\2"', svg)
+    svg = re.sub(r'style="[^"]*"', lambda style: style.group().replace(": ", ":").replace("; ", ";"), svg)
     return re.sub(r"\s*\n\s*", "\n", _classed(_renamed(svg)))
 
 
@@ -236,7 +237,7 @@ def _classed(svg: str) -> str:
     """Styles that occur more than once as classes of the figure's own stylesheet."""
     uses = Counter(re.findall(r' style="([^"]*)"', svg))
     names = {style: f"s{number}" for number, style in enumerate(style for style, count in uses.items() if count > 1)}
-    rules = "".join(f".{name}{{{style.replace(': ', ':').replace('; ', ';')}}}" for style, name in names.items())
+    rules = "".join(f".{name}{{{style}}}" for style, name in names.items())
 
     def named(match: re.Match[str]) -> str:
         name = names.get(match.group(1))
