@@ -1,5 +1,6 @@
 """Direct light: transmission from any altitude toward the sun, the planet's shadow exact."""
 
+from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass
 
 import numpy as np
@@ -9,22 +10,23 @@ from skychart.sky.shells import Shells, tangent_altitude
 
 Array = NDArray[np.float64]
 
+THREADS = 2  # numpy lets other threads work; more would not pay
 _STEP_DEG = 0.0625
-# Columns are computed on these coarser steps where the air mass hardly bends: (up to this zenith angle, every)
-_COMPUTED = ((60.0, 1.0), (85.0, 0.25))
+# Columns are computed on coarser steps, as the air mass bends little over them: (up to this zenith angle, every)
+_COMPUTED = ((60.0, 1.0), (75.0, 0.5), (85.0, 0.25))
 
 
-def slant_to_space(shells: Shells, start: int, cos_zenith: Array) -> Array:
-    """Slant factor of each layer from boundary ``start`` outward to space.
+def _depth_above(shells: Shells, start: int, cos_zenith: Array) -> Array:
+    """Optical depth from boundary ``start`` to space for rays that go up, ``cos_zenith`` >= 0: (..., wavelength)."""
+    tangent = tangent_altitude(shells.altitude_km[start], cos_zenith, shells.planet_radius_km)
+    return shells.slant_factors(tangent, start) @ shells.extinction_depth[start:]
 
-    ``cos_zenith`` has shape (...), the result (..., layer). A ray that would meet the ground is given the path of one
-    that grazes it; see ``lit`` for the shadow.
-    """
-    altitude = shells.altitude_km[start]
-    tangent = tangent_altitude(altitude, cos_zenith, shells.planet_radius_km)
-    down = np.asarray(cos_zenith)[..., None] < 0
-    crossings = np.where(np.arange(len(shells.altitude_km) - 1) >= start, 1.0, np.where(down, 2.0, 0.0))
-    return crossings * shells.slant_factors(np.where(down[..., 0], np.maximum(tangent, 0.0), tangent))
+
+def _depth_around(shells: Shells, start: int, cos_zenith: Array) -> Array:
+    """The same for rays that go down first, twice through the layers below; none is lower than one that grazes."""
+    tangent = np.maximum(tangent_altitude(shells.altitude_km[start], cos_zenith, shells.planet_radius_km), 0.0)
+    crossings = np.where(np.arange(len(shells.extinction_depth)) >= start, 1.0, 2.0)
+    return shells.slant_factors(tangent) @ (crossings[:, None] * shells.extinction_depth)
 
 
 def lit(altitude_km: Array, cos_zenith: Array, planet_radius_km: float) -> NDArray[np.bool_]:
@@ -34,9 +36,11 @@ def lit(altitude_km: Array, cos_zenith: Array, planet_radius_km: float) -> NDArr
 
 def transmission(shells: Shells, start: int, cos_zenith: Array) -> Array:
     """Transmission from boundary ``start`` toward the sun, shape (..., wavelength); 0 in the shadow."""
-    depth = slant_to_space(shells, start, cos_zenith) @ shells.extinction_depth
-    clear = lit(shells.altitude_km[start], cos_zenith, shells.planet_radius_km)
-    return np.where(clear[..., None], np.exp(-depth), 0.0)
+    cosine = np.asarray(cos_zenith, dtype=float)
+    up = _depth_above(shells, start, np.maximum(cosine, 0))
+    around = _depth_around(shells, start, np.minimum(cosine, 0))
+    clear = lit(shells.altitude_km[start], cosine, shells.planet_radius_km)
+    return np.where(clear[..., None], np.exp(-np.where(cosine[..., None] >= 0, up, around)), 0.0)
 
 
 @dataclass(frozen=True, eq=False)
@@ -62,9 +66,14 @@ class SunTable:
         low = np.minimum(place.astype(int), len(computed) - 2)
         part = (place - low)[:, None]
         cosine = np.cos(np.radians(computed))
-        for start in range(len(shells.altitude_km)):
-            depth = slant_to_space(shells, start, cosine) @ shells.extinction_depth
+        up = cosine >= 0
+
+        def fill(start: int) -> None:
+            depth = np.concatenate([_depth_above(shells, start, cosine[up]), _depth_around(shells, start, cosine[~up])])
             values[start] = np.exp(-(depth[low] + part * (depth[low + 1] - depth[low])))
+
+        with ThreadPoolExecutor(THREADS) as pool:
+            list(pool.map(fill, range(len(shells.altitude_km))))
         horizon = 90 + np.degrees(np.arccos(radius / (radius + shells.altitude_km)))
         return cls(shells, values, horizon / _STEP_DEG)
 

@@ -8,10 +8,12 @@ from numpy.typing import NDArray
 from skychart.sky import dipole
 from skychart.sky.beam import SunTable
 from skychart.sky.grid import Grid
-from skychart.sky.rays import crossings
+from skychart.sky.rays import Crossings, crossings
 from skychart.sky.shells import Shells, tangent_altitude
 
 Array = NDArray[np.float64]
+
+_HIGH_SUN_DEG = 78.0
 
 
 class Fan:
@@ -19,7 +21,7 @@ class Fan:
 
     def __init__(self, shells: Shells, grid: Grid, level: int) -> None:
         self.start = level * grid.substeps
-        self.level = level
+        self.level, self.parts = level, grid.substeps
         radius = shells.planet_radius_km
         altitude = shells.altitude_km[self.start]
         dip_cosine = np.sqrt(altitude * (2 * radius + altitude)) / (radius + altitude)
@@ -58,31 +60,43 @@ class FirstOrder:
 
 
 def first_order(table: SunTable, fan: Fan, chi: Array, a: Array, b: Array) -> FirstOrder:
-    """Gather the light scattered once from the beam at solar zenith angles ``chi`` [rad] at the fan's level."""
+    """Gather the light scattered once from the beam at solar zenith angles ``chi`` [rad] at the fan's level.
+
+    A sun well up changes little from level to level; else the beam is taken at every sub-step.
+    """
+    high = chi < np.radians(_HIGH_SUN_DEG)
+    parts = [
+        _gathered(table, fan, fan.coarse, fan.parts, chi[high], a, b),
+        _gathered(table, fan, fan.fine, 1, chi[~high], a, b),
+    ]
+    order = np.argsort(np.concatenate([np.flatnonzero(high), np.flatnonzero(~high)]))
+    return FirstOrder(*(np.concatenate(pair)[order] for pair in zip(*parts, strict=True)))
+
+
+def _gathered(
+    table: SunTable, fan: Fan, crossing: Crossings, boundaries: int, chi: Array, a: Array, b: Array
+) -> tuple[Array, Array]:
+    """Tensor and irradiance from the beam at crossings with every so many-th boundary of the table."""
     omega = fan.sight(chi)
     _, e_rho, e_alpha = dipole.projected_axes(omega)
     cos_chi, sin_chi = np.cos(chi)[:, None], np.sin(chi)[:, None]
     tensor = np.zeros((len(chi), dipole.ENTRIES, len(a)))
     irradiance = np.zeros((len(chi), len(a)))
-    for ray in range(len(fan.cos_zenith)):
-        reached = np.nonzero(fan.fine.reached[ray])
-        if fan.start == 0 and fan.cos_zenith[ray] < 0:
-            continue
-        turn = (fan.fine.cos_turn[ray][reached][:, None, None], fan.fine.sin_turn[ray][reached][:, None, None])
-        cos_there = np.clip(cos_chi * turn[0] + sin_chi * turn[1] * fan.cos_phi, -1, 1)
-        beam = table.at(reached[1][:, None, None], cos_there)
-        light = np.einsum("qxpl,ql->xpl", beam, fan.fine.weight[ray][reached].astype(np.float32), optimize=False)
+    for ray in np.flatnonzero(crossing.reached.any(axis=(1, 2))):
+        branch, level = np.nonzero(crossing.reached[ray])
+        turn = crossing.cos_turn[ray, branch, level], crossing.sin_turn[ray, branch, level]
+        cos_there = cos_chi * turn[0][:, None, None] + sin_chi * turn[1][:, None, None] * fan.cos_phi
+        beam = table.at(level[:, None, None] * boundaries, np.clip(cos_there, -1, 1))
+        weight = crossing.weight[ray, branch, level].astype(np.float32)
+        light = np.einsum("qxpl,ql->xpl", beam, weight, optimize=False)
         across = [dipole.tensor_entries(axis.of(ray), axis.of(ray)) for axis in (e_rho, e_alpha)]
         dipolar = [0.5 * (rho + alpha) for rho, alpha in zip(*across, strict=True)]
         plain = dipole.projector_entries(omega.of(ray))
-        weight = fan.solid_angle[ray]
+        solid = fan.solid_angle[ray]
         for entry in range(dipole.ENTRIES):
-            tensor[:, entry] += weight * (
-                a * np.einsum("xp,xpl->xl", dipolar[entry], light) + b * np.einsum("xp,xpl->xl", plain[entry], light)
-            )
+            scattered = a * np.einsum("xp,xpl->xl", dipolar[entry], light)
+            tensor[:, entry] += solid * (scattered + b * np.einsum("xp,xpl->xl", plain[entry], light))
         if fan.cos_zenith[ray] > 0:
-            phase = dipole.trace(dipolar, 0)
-            irradiance += (
-                weight * fan.cos_zenith[ray] * (a * np.einsum("xp,xpl->xl", phase, light) + 2 * b * light.sum(axis=1))
-            )
-    return FirstOrder(tensor, irradiance)
+            scattered = a * np.einsum("xp,xpl->xl", dipole.trace(dipolar, 0), light) + 2 * b * light.sum(axis=1)
+            irradiance += solid * fan.cos_zenith[ray] * scattered
+    return tensor, irradiance

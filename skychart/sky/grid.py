@@ -9,7 +9,7 @@ from numpy.typing import NDArray
 Array = NDArray[np.float64]
 
 # Sun positions of the solution: from this zenith angle [deg], every so many degrees, up to the next.
-_SOLAR_ZENITH_STEPS = ((0, 8), (56, 4), (80, 2), (88, 1), (106, 2), (114, 0))
+_SOLAR_ZENITH_STEPS = ((0, 12), (60, 5), (80, 2), (88, 1), (104, 2), (114, 0))
 
 
 def solar_zenith_nodes_deg() -> Array:
@@ -26,9 +26,9 @@ class Grid:
     many between; ``azimuth`` directions on half a turn; ``substeps`` parts of each layer for the direct beam.
     """
 
-    levels: int = 32
+    levels: int = 28
     zenith: int = 6
-    azimuth: int = 6
+    azimuth: int = 5
     substeps: int = 5
 
     def azimuths(self) -> tuple[Array, Array, float]:

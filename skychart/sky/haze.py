@@ -55,7 +55,7 @@ class Haze:
         object.__setattr__(self, "phase_function", phase / mean[:, None])
 
     def phase_at(self, cos_scattering_angle: Array) -> Array:
-        """Phase function (..., wavelength) at scattering angles given by cosine (...): its logarithm linear in angle."""
+        """Phase function (..., wavelength) at angles given by their cosine (...): its logarithm is linear in angle."""
         angle = np.degrees(np.arccos(np.clip(cos_scattering_angle, -1, 1)))
         place = np.interp(angle, self.scattering_angle_deg, np.arange(len(self.scattering_angle_deg)))
         low = np.minimum(place.astype(np.intp), len(self.scattering_angle_deg) - 2)
@@ -64,7 +64,7 @@ class Haze:
         return np.exp(log[low] + part * (log[low + 1] - log[low]))
 
     def moments(self, count: int) -> Array:
-        """Legendre moments: mean of P x P_l over the sphere, shape (count, wavelength); the first is 1, then asymmetry."""
+        """Legendre moments: mean of P x P_l over the sphere, (count, wavelength): 1, the asymmetry, and so on."""
         angle, weight = _fine_angles(self.scattering_angle_deg)
         phase = self.phase_at(np.cos(angle))
         legendre = np.polynomial.legendre.legvander(np.cos(angle), count - 1)

@@ -13,11 +13,11 @@ import numpy as np
 from numpy.typing import NDArray
 
 from skychart.sky import dipole
-from skychart.sky.beam import SunTable
+from skychart.sky.beam import THREADS, SunTable
 from skychart.sky.fan import Fan, first_order
 from skychart.sky.grid import Grid, solar_zenith_nodes_deg
 from skychart.sky.interpolation import spline_matrix
-from skychart.sky.operator import THREADS, Operator
+from skychart.sky.operator import Operator
 from skychart.sky.shape import Shape
 from skychart.sky.shells import Shells
 

@@ -1,7 +1,7 @@
 """One more scattering of the whole field as a dense linear operator, and the sum of all orders.
 
-The binned geometry is kept once; the matrix of each wavelength is made from it in a buffer that is used again, since
-it is the largest thing in memory.
+The binned geometry is kept once; the matrices of a few wavelengths at a time are made from it in a buffer that is used
+again, since it is the largest thing in memory.
 """
 
 from collections.abc import Iterator
@@ -13,6 +13,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from skychart.sky import dipole
+from skychart.sky.beam import THREADS
 from skychart.sky.fan import Fan
 from skychart.sky.kernels import Kernels, Window, bin_crossings, bin_ground
 from skychart.sky.shape import Shape
@@ -20,10 +21,10 @@ from skychart.sky.shape import Shape
 Array = NDArray[np.float64]
 Single = NDArray[np.float32]
 
-THREADS = 2
 _LAST_ORDER = 1e-4
 _MOST_ORDERS = 200
-_REACHES_DEG = (10.0, 4.0, 1.0)  # crossings that turn by less about the planet's centre see few source nodes
+_REACHES_DEG = (4.0, 1.0)  # crossings that turn by less about the planet's centre see few source nodes
+_BLOCK = 4  # wavelengths whose matrices are held at once, some 60 MB each
 
 
 @dataclass(frozen=True, eq=False)
@@ -40,7 +41,9 @@ class Level:
         seen = fan.coarse.reached & (fan.coarse.weight.max(axis=3) > 0)
         reach = np.abs(fan.coarse.sin_turn)
         kernels = []
-        for nearest, farthest in pairwise((np.inf, *np.sin(np.radians(_REACHES_DEG)), -1.0)):
+        # the ground's own rays make its irradiance too: keep them in one piece
+        reaches = np.sin(np.radians(_REACHES_DEG)) if fan.level else ()
+        for nearest, farthest in pairwise((np.inf, *reaches, -1.0)):
             some = seen & (reach < nearest) & (reach >= farthest)
             if some.any():
                 kernels.append(bin_crossings(fan, some, Window.of(chi, nearest), chi, shapes[0]))
@@ -70,58 +73,62 @@ class Operator:
         """
         flat = np.concatenate([tensor.transpose(3, 0, 2, 1).reshape(tensor.shape[3], -1), ground.T], axis=1)
         first = (flat / self.shape).astype(np.float32)
+        total = np.empty_like(first)
+        buffer = np.empty((min(_BLOCK, len(first)), len(self.shape), len(self.shape)), np.float32)
         with ThreadPoolExecutor(THREADS) as pool:
-            shares = [range(start, len(first), THREADS) for start in range(THREADS)]
-            sums = dict(
-                pair for part in pool.map(lambda share: list(self._sums(share, first)), shares) for pair in part
-            )
-        total = np.stack([sums[wavelength] for wavelength in range(len(first))])
+            for start in range(0, len(first), _BLOCK):
+                block = range(start, min(start + _BLOCK, len(first)))
+                matrices = buffer[: len(block)]
+                list(pool.map(lambda number, m=matrices, b=block: self._fill(m, b, number), range(len(self.levels))))
+                total[block] = list(pool.map(self._summed, matrices, first[block]))
         solved = total[:, : -self.nodes].reshape(-1, len(self.levels), dipole.ENTRIES, self.nodes)
         return solved.transpose(1, 3, 2, 0), total[:, -self.nodes :].T
 
-    def _sums(self, wavelengths: range, first: Single) -> Iterator[tuple[int, Single]]:
-        matrix = np.empty((len(self.shape), len(self.shape)), np.float32)
-        for wavelength in wavelengths:
-            self._fill(matrix, wavelength)
-            order = first[wavelength]
-            total = order.copy()
-            for _ in range(_MOST_ORDERS):
-                order = (matrix @ order) / self.shape
-                total += order
-                if np.abs(order).max() < _LAST_ORDER * np.abs(total).max():
-                    break
-            yield wavelength, total
+    def _summed(self, matrix: Single, first: Single) -> Single:
+        total, order = first.copy(), first
+        for _ in range(_MOST_ORDERS):
+            order = (matrix @ order) / self.shape
+            total += order
+            if np.abs(order).max() < _LAST_ORDER * np.abs(total).max():
+                break
+        return total
 
-    def _fill(self, matrix: Single, wavelength: int) -> None:
-        matrix.fill(0)
-        count, size = len(self.levels), (dipole.ENTRIES, self.nodes)
-        to_ground = matrix[-self.nodes :, : -self.nodes].reshape(1, self.nodes, count, *size)
-        for number, level in enumerate(self.levels):
-            own = matrix[number * self.rows : (number + 1) * self.rows]
-            rows = own[:, : -self.nodes].reshape(*size, count, *size)
-            for kernels in level.kernels:
-                sums = self._weighted(kernels, wavelength)
-                for x, first in enumerate(kernels.window.first):
-                    sources = slice(first, first + kernels.window.width)
-                    rows[:, x, ..., sources] += sums[:, : dipole.ENTRIES, x].swapaxes(0, 1)
+    def _fill(self, matrices: Single, wavelengths: range, number: int) -> None:
+        """The rows of level ``number`` of the matrices of some wavelengths; with level 0 come those of the ground."""
+        level, size = self.levels[number], (dipole.ENTRIES, self.nodes)
+        count, own = len(matrices), matrices[:, number * self.rows : (number + 1) * self.rows]
+        own.fill(0)
+        rows = own[..., : -self.nodes].reshape(count, *size, len(self.levels), *size)
+        ground = matrices[:, -self.nodes :]
+        to_ground = ground[..., : -self.nodes].reshape(count, 1, self.nodes, len(self.levels), *size)
+        if number == 0:
+            ground.fill(0)
+        for kernels in level.kernels:
+            blocks = self._weighted(kernels, wavelengths)
+            if kernels.window.width == self.nodes:
+                for source, block in blocks:
+                    rows[:, :, :, source] = block[:, : dipole.ENTRIES]
                     if number == 0:
-                        to_ground[:, x, ..., sources] += sums[:, dipole.ENTRIES :, x].swapaxes(0, 1)
-            radiance = self.albedo[wavelength] / np.pi * level.ground_transmission[:, wavelength]
-            own[:, -self.nodes :] = np.tensordot(radiance, level.ground, axes=1).reshape(self.rows, self.nodes)
+                        to_ground[:, :, :, source] = block[:, dipole.ENTRIES :]
+                continue
+            sums = np.zeros((*rows.shape[:-1], kernels.window.width), np.float32)
+            for source, block in blocks:
+                sums[:, :, :, source] = block[:, : dipole.ENTRIES]
+            for x, first in enumerate(kernels.window.first):
+                rows[:, :, x, ..., first : first + kernels.window.width] += sums[:, :, x]
+        radiance = self.albedo[wavelengths] / np.pi * level.ground_transmission[:, wavelengths]
+        own[..., -self.nodes :] = np.tensordot(radiance.T, level.ground, axes=1).reshape(count, self.rows, -1)
 
-    def _weighted(self, kernels: Kernels, wavelength: int) -> Single:
-        """Kernels with one wavelength's path weights, summed by source level: (level, output, node, entry, window)."""
-        size = kernels.dipolar.shape[1:]
-        sums = np.zeros((len(self.levels), *size), np.float32)
-        a, b = (coefficient[wavelength] for coefficient in self.coefficients)
-        weight = kernels.weight[:, wavelength]
-        dipolar_weight, plain_weight = (a * weight).astype(np.float32), (b * weight).astype(np.float32)
+    def _weighted(self, kernels: Kernels, wavelengths: range) -> Iterator[tuple[int, Single]]:
+        """Each source level with its kernels under the path weights: (wavelength, output, node, entry, window)."""
+        count, size = len(wavelengths), kernels.dipolar.shape[1:]
+        a, b = (coefficient[wavelengths, None] for coefficient in self.coefficients)
         traced = [entry for entry, part in enumerate(dipole.TRACE) if part]
-        for level, run in kernels.runs():
-            block = sums[level]
-            np.matmul(
-                dipolar_weight[run], kernels.dipolar[run].reshape(run.stop - run.start, -1), out=block.reshape(-1)
-            )
-            plain = plain_weight[run] @ kernels.plain[run].reshape(run.stop - run.start, -1)
-            block[..., traced, :] += plain.reshape(*size[:2], 1, size[3])
-        return sums
+        for source, run in kernels.runs():
+            weight = kernels.weight[run, wavelengths.start : wavelengths.stop].T
+            dipolar = (a * weight).astype(np.float32) @ kernels.dipolar[run].reshape(weight.shape[1], -1)
+            plain = (b * weight).astype(np.float32) @ kernels.plain[run].reshape(weight.shape[1], -1)
+            block = dipolar.reshape(count, *size)
+            for entry in traced:
+                block[..., entry, :] += plain.reshape(count, *size[:2], size[3])
+            yield source, block

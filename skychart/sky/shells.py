@@ -27,7 +27,7 @@ def level_altitudes(top_km: float, count: int) -> Array:
     """
     above = top_km > _UPPER_KM
     x = np.linspace(0.0, 1.0, count - above)
-    levels = min(top_km, _UPPER_KM) * (0.2 * x + 0.8 * x**2.5)
+    levels = min(top_km, _UPPER_KM) * (0.12 * x + 0.88 * x**2.4)
     return np.append(levels, top_km) if above else levels
 
 
@@ -62,13 +62,14 @@ class Shells:
             planet_radius_km=air.planet_radius_km,
         )
 
-    def slant_factors(self, tangent_km: Array) -> Array:
+    def slant_factors(self, tangent_km: Array, lowest: int = 0) -> Array:
         """Path through each layer on one side of the tangent point, weighted by density, over the vertical one.
 
-        ``tangent_km`` has any shape (...); the result has shape (..., layer), 0 where the layer lies below the tangent.
+        ``tangent_km`` has any shape (...); the result has shape (..., layer) from layer ``lowest`` upward, 0 where the
+        layer lies below the tangent.
         """
         tangent = np.asarray(tangent_km, dtype=float)[..., None]
-        bottom, top = self.altitude_km[:-1], self.altitude_km[1:]
+        bottom, top, decay = self.altitude_km[lowest:-1], self.altitude_km[lowest + 1 :], self.decay_per_km[lowest:]
         start = distance_from_tangent(np.maximum(bottom, tangent), tangent, self.planet_radius_km)
         end = distance_from_tangent(np.maximum(top, tangent), tangent, self.planet_radius_km)
         nearest = self.planet_radius_km + tangent
@@ -77,8 +78,8 @@ class Shells:
         for node, weight in zip(_PATH_NODES, _PATH_WEIGHTS, strict=True):
             distance = middle + half * node
             altitude = tangent + distance**2 / (np.sqrt(nearest**2 + distance**2) + nearest)
-            total += weight * np.exp(-self.decay_per_km * (altitude - bottom))
-        return total * half / _vertical_weight(self.decay_per_km, top - bottom)
+            total += weight * np.exp(-decay * (altitude - bottom))
+        return total * half / _vertical_weight(decay, top - bottom)
 
 
 def tangent_altitude(altitude_km: Array, cos_zenith: Array, planet_radius_km: float) -> Array:

@@ -1,5 +1,6 @@
 """The solved sky of one atmosphere, for every sun and direction."""
 
+import dataclasses
 from collections.abc import Callable
 from dataclasses import dataclass
 
@@ -46,6 +47,9 @@ class Sky:
     grid: Grid
     ground: Station
     field: Field
+    aloft: dict[float, Station] = dataclasses.field(
+        default_factory=dict, repr=False
+    )  # by altitude, made when asked for
 
     def stokes(
         self,
@@ -116,8 +120,11 @@ class Sky:
         boundaries = self.ground.shells.altitude_km
         if altitude in boundaries:
             return Station(self.ground.shells, self.ground.table, int(np.searchsorted(boundaries, altitude)))
-        shells = Shells.of(self.air, np.sort(np.append(boundaries, altitude)))
-        return Station(shells, SunTable.of(shells), int(np.searchsorted(shells.altitude_km, altitude)))
+        if altitude not in self.aloft:
+            shells = Shells.of(self.air, np.sort(np.append(boundaries, altitude)))
+            start = int(np.searchsorted(shells.altitude_km, altitude))
+            self.aloft[altitude] = Station(shells, SunTable.of(shells), start)
+        return self.aloft[altitude]
 
 
 def _hemisphere(stokes: Callable[..., Array], solar_elevation_deg: ArrayLike, altitude_km: float) -> Array:

@@ -22,13 +22,13 @@ def test_overhead_sun_passes_the_vertical_depth(shells: Shells) -> None:
 
 
 def test_table_follows_the_direct_computation(shells: Shells) -> None:
-    """Within 0.06 % of all light everywhere, and within 0.02 % while the sun is more than 5 degrees up."""
+    """Within 0.08 % of all light everywhere, and within 0.02 % while the sun is more than 5 degrees up."""
     table = SunTable.of(shells)
     cosine = np.cos(np.radians(np.random.default_rng(3).uniform(0, 99, 400)))
     for start in (0, 12, 40, 70):
         exact = transmission(shells, start, cosine)
         tabulated = table.at(np.array(start), cosine)
-        np.testing.assert_allclose(tabulated, exact, rtol=0, atol=6e-4)
+        np.testing.assert_allclose(tabulated, exact, rtol=0, atol=8e-4)
         high = cosine > np.sin(np.radians(5))
         np.testing.assert_allclose(tabulated[high], exact[high], rtol=0, atol=2e-4)
 
