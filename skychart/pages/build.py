@@ -11,13 +11,13 @@ from skychart.charts.overview import overview
 from skychart.charts.sheet import elevation_sheet
 from skychart.charts.survey import DIRECTIONS, Survey, survey
 from skychart.checks import run_checks
-from skychart.config import Settings
+from skychart.config import AirSettings, Settings
 from skychart.pages.environment import static_files
 from skychart.pages.render import direction_files, methods_files, sheet_files, start_files
 from skychart.pages.site import Atlas, make_atlas
 from skychart.pages.workers import workers
 from skychart.pages.write import swap_in
-from skychart.sky.spectral import solve_spectral
+from skychart.sky.spectral import SpectralSky, solve_spectral
 
 
 @dataclass(frozen=True)
@@ -46,8 +46,9 @@ def build_site(settings: Settings, out: Path, jobs: int, progress: Callable[[str
     atlas = make_atlas(settings)
     files = static_files()
     with workers(jobs) as pool:
-        checking = pool.submit(run_checks)
-        surveys = [_survey(settings, number, progress) for number in range(len(settings.atmospheres))]
+        skies = [_solve(air, progress) for air in settings.atmospheres]
+        checking = pool.submit(run_checks, skies)
+        surveys = [_survey(sky, settings, progress) for sky in skies]
         rendering = [work for found in surveys for work in _submit_pages(pool, atlas, found)]
         for count, done in enumerate(as_completed(rendering), start=1):
             files |= done.result()
@@ -67,11 +68,13 @@ def build_site(settings: Settings, out: Path, jobs: int, progress: Callable[[str
     )
 
 
-def _survey(settings: Settings, number: int, progress: Callable[[str], None]) -> Survey:
-    air = settings.atmospheres[number]
+def _solve(air: AirSettings, progress: Callable[[str], None]) -> SpectralSky:
     progress(f"{air.name}: solving")
-    sky = solve_spectral(air)
-    progress(f"{air.name}: looking in every direction")
+    return solve_spectral(air)
+
+
+def _survey(sky: SpectralSky, settings: Settings, progress: Callable[[str], None]) -> Survey:
+    progress(f"{sky.settings.name}: looking in every direction")
     return survey(sky, settings.solar_elevations_deg, settings.observer)
 
 
