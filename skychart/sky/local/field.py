@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 from skychart.sky.dipole import molecular_coefficients
 from skychart.sky.local import tensor
 from skychart.sky.local.air import FlatAir, Optics, delta_eddington, delta_m
-from skychart.sky.local.paths import beam_averages, from_ground, path_weights
+from skychart.sky.local.paths import beam_averages, from_ground, path_weights, top_boundary
 from skychart.sky.local.streams import MODES, Streams, legendre
 from skychart.sky.local.system import HAZE, MOLECULES, System
 
@@ -93,7 +93,7 @@ def leading_radiance(field: FlatField, cosine: Array) -> Array:
 
 
 def _solve(air: FlatAir, optics: Optics, streams: Streams, modes: int) -> FlatField:
-    hazy = _hazy_boundaries(optics)
+    hazy = slice(0, top_boundary(optics.scattering[HAZE]) + 1)
     system = System(air, optics, streams, hazy, modes)
     with ThreadPoolExecutor(_THREADS) as pool:
         solutions = list(pool.map(system.solution, range(modes)))
@@ -108,9 +108,3 @@ def _solve(air: FlatAir, optics: Optics, streams: Streams, modes: int) -> FlatFi
         moments=moments.transpose(0, 3, 4, 2, 1),
         ground=solutions[0][2][:, 0].T,
     )  # fmt: skip
-
-
-def _hazy_boundaries(optics: Optics) -> slice:
-    """From the ground to the top of the highest layer that holds haze, one layer at least."""
-    layers = np.flatnonzero(optics.scattering[HAZE].any(axis=1))
-    return slice(0, int(layers.max(initial=0)) + 2)

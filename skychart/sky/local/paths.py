@@ -1,18 +1,23 @@
 """Straight paths through flat layers: what light starting at one boundary counts at another.
 
-Sources are given at the layer boundaries and taken linear in optical depth between them; the sun's beam is taken
-exponential. Arrays here have the wavelength first, since the solver works on one matrix a wavelength.
+Sources are given at the layer boundaries. Between them they follow the cubic spline over optical depth, which is taken
+linear in parts of each layer; a species' spline runs from the ground to the top of its highest layer. The sun's beam is
+taken exponential within a layer. Arrays here have the wavelength first, as the solver works on one matrix a wavelength.
 """
 
 import numpy as np
 from numpy.typing import NDArray
 
+from skychart.sky.interpolation import spline_matrix
 from skychart.sky.rays import _segment_weights
 
 Array = NDArray[np.float64]
 
 # A layer whose foot gets less than exp(-3) of the beam at its top holds the edge of the planet's shadow.
 _STEEPEST_BEAM = 3.0
+_PARTS = 4  # of each layer
+_SPLINE_NODES = 4  # the fewest that a cubic spline takes
+_THINNEST = 1e-9  # layer, as a share of all, that still parts two nodes
 
 
 def path_weights(scattering: Array, extinction: Array, cosine: Array) -> Array:
@@ -22,15 +27,19 @@ def path_weights(scattering: Array, extinction: Array, cosine: Array) -> Array:
     ``cosine`` of the zenith angle of sight, not 0, shape (direction,). A source is radiance per unit of its species'
     scattering optical depth. Shape (species, wavelength, direction, boundary seen from, boundary of the source).
     """
-    slant = 1 / np.abs(cosine)[:, None]
-    thickness = extinction.T[:, None] * slant
-    near, far = _segment_weights(np.moveaxis(scattering, -1, 1)[:, :, None] * slant, thickness)
-    up = (cosine > 0)[:, None]
-    arriving = _arriving(thickness, cosine)
-    weights = np.zeros((*near.shape[:3], arriving.shape[2], arriving.shape[2]))
-    weights[..., :-1] += arriving * np.where(up, near, far)[..., None, :]
-    weights[..., 1:] += arriving * np.where(up, far, near)[..., None, :]
-    return weights
+    fine = [np.repeat(depth, _PARTS, axis=-2) / _PARTS for depth in (scattering, extinction)]
+    weights = _linear_weights(*fine, cosine)
+    result = np.zeros((*weights.shape[:4], len(extinction) + 1))
+    for species, depth in enumerate(scattering):
+        top = top_boundary(depth)
+        used = weights[species, ..., : top * _PARTS + 1]
+        result[species, ..., : top + 1] = used @ _between(extinction[:top])[:, None]
+    return result
+
+
+def top_boundary(depth: Array) -> int:
+    """Index of the boundary on top of the highest layer where ``depth`` (layer, wavelength) is not 0; 1 if none."""
+    return int(np.flatnonzero(depth.any(axis=1)).max(initial=0)) + 1
 
 
 def beam_averages(scattering: Array, extinction: Array, cosine: Array, beam: Array) -> Array:
@@ -60,6 +69,32 @@ def from_ground(extinction: Array, cosine: Array) -> Array:
     """
     depth = np.concatenate([np.zeros_like(extinction[:1]), np.cumsum(extinction, axis=0)]).T
     return np.exp(-depth[:, None] / np.abs(cosine)[:, None]) * (cosine < 0)[:, None]
+
+
+def _linear_weights(scattering: Array, extinction: Array, cosine: Array) -> Array:
+    """Path weights of sources linear in optical depth within each layer, seen from every boundary of the parts."""
+    slant = 1 / np.abs(cosine)[:, None]
+    thickness = extinction.T[:, None] * slant
+    near, far = _segment_weights(np.moveaxis(scattering, -1, 1)[:, :, None] * slant, thickness)
+    up = (cosine > 0)[:, None]
+    arriving = _arriving(thickness, cosine)[..., ::_PARTS, :]
+    weights = np.zeros((*near.shape[:3], *arriving.shape[2:]))
+    weights = np.concatenate([weights, weights[..., :1]], axis=-1)
+    weights[..., :-1] += arriving * np.where(up, near, far)[..., None, :]
+    weights[..., 1:] += arriving * np.where(up, far, near)[..., None, :]
+    return weights
+
+
+def _between(extinction: Array) -> Array:
+    """What values at boundaries count at the ends of the parts of layers, (wavelength, end of part, boundary)."""
+    layers = len(extinction)
+    place = np.arange(layers * _PARTS + 1) / _PARTS
+    if layers + 1 < _SPLINE_NODES:
+        hat = np.maximum(0, 1 - np.abs(place[:, None] - np.arange(layers + 1)))
+        return np.broadcast_to(hat, (extinction.shape[1], *hat.shape))
+    step = np.maximum(extinction, _THINNEST * extinction.sum(axis=0) + np.finfo(float).tiny)
+    depth = np.concatenate([np.zeros_like(step[:1]), np.cumsum(step, axis=0)])
+    return np.stack([spline_matrix(x, np.interp(place, np.arange(layers + 1), x)) for x in depth.T])
 
 
 def _arriving(thickness: Array, cosine: Array) -> Array:

@@ -18,7 +18,7 @@ from numpy.typing import NDArray
 Array = NDArray[np.float64]
 
 PER_HEMISPHERE = 12
-MODES = 12
+MODES = 16
 
 
 @dataclass(frozen=True, eq=False)
