@@ -35,26 +35,32 @@ def swap_in(files: Mapping[str, bytes], out: Path) -> None:
     or the file system refuses; InputError if a path would lie outside `out`.
     """
     _check_names(files)
-    target = check_replaceable(out)
-    fresh = target.with_name(f".{target.name}.skychart-new")
-    try:
-        with _only_writer(target.parent):
-            check_replaceable(out)
+    with _replaceable(out) as target:
+        fresh = target.with_name(f".{target.name}.skychart-new")
+        shutil.rmtree(fresh, ignore_errors=True)
+        try:
+            _write_all({**files, MARKER: _marker_text(files)}, fresh)
+            _put_in_place(fresh, target)
+        finally:
             shutil.rmtree(fresh, ignore_errors=True)
-            try:
-                _write_all({**files, MARKER: _marker_text(files)}, fresh)
-                _put_in_place(fresh, target)
-            finally:
-                shutil.rmtree(fresh, ignore_errors=True)
-    except OSError as error:
-        raise OutputError(f"cannot write {out}: {error.strerror or error}") from error
 
 
-def check_replaceable(out: Path) -> Path:
-    """The folder that `out` means, links followed, if a site may be written there; ask before a long computation.
+def check_replaceable(out: Path) -> None:
+    """Raise OutputError unless a site may be written to `out`, links followed; ask before a long computation.
 
     Accepted: a name that is free in an existing, writable folder; an empty folder; a folder this module wrote
-    and nobody added to. Raises OutputError otherwise.
+    and nobody added to.
+    """
+    with _replaceable(out):
+        pass
+
+
+@contextmanager
+def _replaceable(out: Path) -> Iterator[Path]:
+    """The folder that `out` means, found replaceable and kept from other writers for as long as the block runs.
+
+    It is looked at under the lock: a marker read before another writer's exchange would not list what stands there
+    after it.
     """
     try:
         target = out.resolve()
@@ -62,11 +68,12 @@ def check_replaceable(out: Path) -> Path:
             raise OutputError(f"cannot write {out}: there is no folder {target.parent}")
         if not os.access(target.parent, os.W_OK | os.X_OK):
             raise OutputError(f"cannot write {out}: no permission to write in {target.parent}")
-        if target.exists():
-            _check_ours(target, out)
+        with _only_writer(target.parent):
+            if target.exists():
+                _check_ours(target, out)
+            yield target
     except (OSError, RuntimeError) as error:
         raise OutputError(f"cannot write {out}: {getattr(error, 'strerror', None) or error}") from error
-    return target
 
 
 def _check_ours(target: Path, out: Path) -> None:

@@ -7,6 +7,8 @@ import stat
 import subprocess
 import sys
 import textwrap
+import threading
+from collections.abc import Callable
 from pathlib import Path
 
 import pytest
@@ -279,3 +281,25 @@ def test_writers_at_the_same_time_leave_one_whole_site(tmp_path: Path) -> None:
     assert len(files) == 20
     assert len(set(files.values())) == 1
     assert names_in(tmp_path) == ["site"]
+
+
+@pytest.mark.parametrize("look", [check_replaceable, lambda out: swap_in(NEW, out)], ids=["check", "swap"])
+def test_another_writer_waits_while_a_folder_is_looked_at(
+    site: Path, monkeypatch: pytest.MonkeyPatch, look: Callable[[Path], None]
+) -> None:
+    pytest.importorskip("fcntl", reason="writers hold each other back where the system has such locks")
+    other = threading.Thread(target=swap_in, args=({"other.html": b""}, site))
+    listed_files = write._listed_files
+
+    def disturbed(marker: Path) -> set[str] | None:
+        found = listed_files(marker)
+        if other.ident is None:
+            other.start()
+            other.join(0.3)  # ample for a swap, if nothing kept it from happening between the two looks
+        return found
+
+    monkeypatch.setattr(write, "_listed_files", disturbed)
+    look(site)
+    other.join()
+    assert contents(site) == {"other.html": b""}
+    assert names_in(site.parent) == ["site"]
