@@ -8,6 +8,7 @@ from numpy.typing import ArrayLike, NDArray
 
 from skychart.errors import InputError
 from skychart.sky import air, gases
+from skychart.sky.haze import Haze
 
 EARTH_RADIUS_KM = 6371.0  # mean radius R1, IUGG / Moritz 2000
 
@@ -22,8 +23,9 @@ class Atmosphere:
     ``depolarisation``: depolarisation ratio of the molecules for natural light, 0 to 0.5, scalar or (wavelength,).
     ``ground_albedo``: 0 to 1, scalar or (wavelength,).
     ``planet_radius_km``: [km], 1000 or more; a very large one gives the flat case.
+    ``haze``: particles in the same layers at the same wavelengths, or none.
 
-    Within a layer both species are spread by the monotone cubic through their column above each level, so the density
+    Within a layer every species is spread by the monotone cubic through their column above each level, so the density
     is continuous from layer to layer. Every array is held in double precision and is not to be changed.
     Raises InputError.
     """
@@ -35,6 +37,7 @@ class Atmosphere:
     depolarisation: NDArray[np.float64]
     ground_albedo: NDArray[np.float64]
     planet_radius_km: float = EARTH_RADIUS_KM
+    haze: Haze | None = None
 
     def __post_init__(self) -> None:
         level = np.asarray(self.level_altitude_km, dtype=float)
@@ -56,6 +59,8 @@ class Atmosphere:
             raise InputError("rayleigh_depth sums to 0 at some wavelength; accepted: some scattering at each")
         if not 1000 <= self.planet_radius_km <= 1e8:
             raise InputError(f"planet_radius_km is {self.planet_radius_km}; accepted: 1000 to 1e8 km")
+        if self.haze is not None and self.haze.depth.shape != layers:
+            raise InputError(f"haze depth has shape {self.haze.depth.shape}, accepted: {layers}")
         for name, value in checked.items():
             object.__setattr__(self, name, value)
 

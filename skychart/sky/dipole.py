@@ -8,6 +8,7 @@ Pi = I - omega omega^T; a and b follow from the depolarisation ratio
 (Chandrasekhar 1950, Radiative Transfer, section 18).
 """
 
+from collections.abc import Sequence
 from typing import NamedTuple
 
 import numpy as np
@@ -17,6 +18,8 @@ Array = NDArray[np.float64]
 
 ENTRIES = 4  # ss, s-rho, rho-rho, alpha-alpha
 TRACE = (1.0, 0.0, 1.0, 1.0)
+FLUXES = 2  # along s and rho
+ISOTROPIC = 1 / (8 * np.pi)  # of unpolarised light in all directions alike, on the entries of the projector
 
 
 class Vector(NamedTuple):
@@ -29,6 +32,28 @@ class Vector(NamedTuple):
     def of(self, index: int | NDArray[np.intp]) -> "Vector":
         """The vectors at ``index`` of the first axis."""
         return Vector(self.s[index], self.rho[index], self.alpha[index])
+
+
+class Scatterers(NamedTuple):
+    """What scatters at each wavelength: molecules by ``a`` and ``b`` [1/sr], and haze if ``forward`` is there.
+
+    Haze sends (1 + forward x cosine of the scattering angle) / 4 pi, unpolarised: ``forward`` is three times its
+    asymmetry. With haze the field has six entries a point: after the tensor's, the flux vector along s and rho.
+    """
+
+    a: Array
+    b: Array
+    forward: Array | None = None
+
+    @property
+    def entries(self) -> int:
+        """Entries of the field at a point."""
+        return ENTRIES if self.forward is None else ENTRIES + FLUXES
+
+    def of(self, wavelengths: range) -> "Scatterers":
+        """Some of the wavelengths."""
+        some = slice(wavelengths.start, wavelengths.stop)
+        return Scatterers(self.a[some], self.b[some], None if self.forward is None else self.forward[some])
 
 
 def molecular_coefficients(depolarisation: Array) -> tuple[Array, Array]:
@@ -85,6 +110,16 @@ def turned_axes(e_rho: Vector, e_alpha: Vector, cosine: Array, sine: Array) -> t
 def tensor_entries(v: Vector, w: Vector) -> tuple[Array, Array, Array, Array]:
     """The four entries of the symmetrised product (v w^T + w v^T) / 2."""
     return v.s * w.s, 0.5 * (v.s * w.rho + v.rho * w.s), v.rho * w.rho, v.alpha * w.alpha
+
+
+def outputs(entries: Sequence[Array], omega: Vector, count: int, cosine: Array | None = None) -> list[Array]:
+    """What light along ``omega`` with the given entries adds to a field of ``count`` entries, and to irradiance.
+
+    ``cosine``: of the angle of incidence for the irradiance, which then comes last.
+    """
+    radiance = entries[0] + entries[2] + entries[3]
+    along = [omega.s, omega.rho] if count > ENTRIES else []
+    return [*entries, *(part * radiance for part in along), *([] if cosine is None else [cosine * radiance])]
 
 
 def dot(v: Vector, w: Vector) -> Array:

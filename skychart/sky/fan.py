@@ -31,17 +31,16 @@ class Fan:
         self.solid_angle = self.solid_angle * phi_weight
         tangent = tangent_altitude(altitude, self.cos_zenith, radius)
         factors = shells.slant_factors(tangent)[..., None]
-        self.fine = crossings(
-            shells.altitude_km, factors * shells.scattering_depth, factors * shells.extinction_depth,
-            self.start, self.cos_zenith, radius,
-        )  # fmt: skip
+        scattering, extinction = (
+            [factors * depth for depth in shells.scattering_depth],
+            factors * shells.extinction_depth,
+        )
+        self.fine = crossings(shells.altitude_km, scattering, extinction, self.start, self.cos_zenith, radius)
         starts = np.arange(0, factors.shape[1], grid.substeps)
-        self.coarse = crossings(
-            shells.altitude_km[:: grid.substeps],
-            np.add.reduceat(factors * shells.scattering_depth, starts, axis=1),
-            np.add.reduceat(factors * shells.extinction_depth, starts, axis=1),
-            level, self.cos_zenith, radius,
-        )  # fmt: skip
+        scattering = [np.add.reduceat(depth, starts, axis=1) for depth in scattering]
+        extinction = np.add.reduceat(extinction, starts, axis=1)
+        boundaries = shells.altitude_km[:: grid.substeps]
+        self.coarse = crossings(boundaries, scattering, extinction, level, self.cos_zenith, radius)
 
     def sight(self, chi: Array) -> dipole.Vector:
         """Directions of sight, each component (ray, chi, azimuth)."""
@@ -59,44 +58,45 @@ class FirstOrder:
     irradiance: Array
 
 
-def first_order(table: SunTable, fan: Fan, chi: Array, a: Array, b: Array) -> FirstOrder:
+def first_order(table: SunTable, fan: Fan, chi: Array, scatterers: dipole.Scatterers) -> FirstOrder:
     """Gather the light scattered once from the beam at solar zenith angles ``chi`` [rad] at the fan's level.
 
     A sun well up changes little from level to level; else the beam is taken at every sub-step.
     """
     high = chi < np.radians(_HIGH_SUN_DEG)
-    parts = [
-        _gathered(table, fan, fan.coarse, fan.parts, chi[high], a, b),
-        _gathered(table, fan, fan.fine, 1, chi[~high], a, b),
-    ]
-    order = np.argsort(np.concatenate([np.flatnonzero(high), np.flatnonzero(~high)]))
-    return FirstOrder(*(np.concatenate(pair)[order] for pair in zip(*parts, strict=True)))
+    gathered = np.empty((len(chi), scatterers.entries + 1, len(scatterers.a)))
+    gathered[high] = _gathered(table, fan, fan.coarse, fan.parts, chi[high], scatterers)
+    gathered[~high] = _gathered(table, fan, fan.fine, 1, chi[~high], scatterers)
+    return FirstOrder(gathered[:, :-1], gathered[:, -1])
 
 
 def _gathered(
-    table: SunTable, fan: Fan, crossing: Crossings, boundaries: int, chi: Array, a: Array, b: Array
-) -> tuple[Array, Array]:
-    """Tensor and irradiance from the beam at crossings with every so many-th boundary of the table."""
+    table: SunTable, fan: Fan, crossing: Crossings, boundaries: int, chi: Array, scatterers: dipole.Scatterers
+) -> Array:
+    """Entries and irradiance (chi, entry + 1, wavelength) from crossings with every ``boundaries``-th of the table."""
     omega = fan.sight(chi)
     _, e_rho, e_alpha = dipole.projected_axes(omega)
     cos_chi, sin_chi = np.cos(chi)[:, None], np.sin(chi)[:, None]
-    tensor = np.zeros((len(chi), dipole.ENTRIES, len(a)))
-    irradiance = np.zeros((len(chi), len(a)))
-    for ray in np.flatnonzero(crossing.reached.any(axis=(1, 2))):
+    result = np.zeros((len(chi), scatterers.entries + 1, len(scatterers.a)))
+    for ray in map(int, np.flatnonzero(crossing.reached.any(axis=(1, 2)))):
         branch, level = np.nonzero(crossing.reached[ray])
         turn = crossing.cos_turn[ray, branch, level], crossing.sin_turn[ray, branch, level]
         cos_there = cos_chi * turn[0][:, None, None] + sin_chi * turn[1][:, None, None] * fan.cos_phi
         beam = table.at(level[:, None, None] * boundaries, np.clip(cos_there, -1, 1))
-        weight = crossing.weight[ray, branch, level].astype(np.float32)
-        light = np.einsum("qxpl,ql->xpl", beam, weight, optimize=False)
+        molecules, *haze = (
+            np.einsum("qxpl,ql->xpl", beam, weight[ray, branch, level].astype(np.float32), optimize=False)
+            for weight in crossing.weight
+        )
         across = [dipole.tensor_entries(axis.of(ray), axis.of(ray)) for axis in (e_rho, e_alpha)]
         dipolar = [0.5 * (rho + alpha) for rho, alpha in zip(*across, strict=True)]
-        plain = dipole.projector_entries(omega.of(ray))
-        solid = fan.solid_angle[ray]
-        for entry in range(dipole.ENTRIES):
-            scattered = a * np.einsum("xp,xpl->xl", dipolar[entry], light)
-            tensor[:, entry] += solid * (scattered + b * np.einsum("xp,xpl->xl", plain[entry], light))
-        if fan.cos_zenith[ray] > 0:
-            scattered = a * np.einsum("xp,xpl->xl", dipole.trace(dipolar, 0), light) + 2 * b * light.sum(axis=1)
-            irradiance += solid * fan.cos_zenith[ray] * scattered
-    return tensor, irradiance
+        sight = omega.of(ray)
+        plain = dipole.projector_entries(sight)
+        parts = [(dipolar, scatterers.a * molecules), (plain, scatterers.b * molecules)]
+        if haze and scatterers.forward is not None:
+            parts.append((plain, dipole.ISOTROPIC * haze[0] * (1 + scatterers.forward * sight.s[..., None])))
+        cosine = max(fan.cos_zenith[ray], 0.0)
+        for entries, light in parts:
+            outputs = dipole.outputs(entries, sight, scatterers.entries, np.full(sight.s.shape, cosine))
+            for number, output in enumerate(outputs):
+                result[:, number] += fan.solid_angle[ray] * np.einsum("xp,xpl->xl", output, light)
+    return result

@@ -63,6 +63,11 @@ class Haze:
         log = np.log(self.phase_function.T)
         return np.exp(log[low] + part * (log[low + 1] - log[low]))
 
+    @property
+    def asymmetry(self) -> Array:
+        """Mean cosine of the scattering angle, (wavelength,)."""
+        return self.moments(2)[1]
+
     def moments(self, count: int) -> Array:
         """Legendre moments: mean of P x P_l over the sphere, (count, wavelength): 1, the asymmetry, and so on."""
         angle, weight = _fine_angles(self.scattering_angle_deg)

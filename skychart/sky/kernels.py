@@ -38,7 +38,9 @@ class Window:
 class Kernels:
     """Kernels on (crossing, output, node, entry, window of source nodes); ``plain`` has no entry axis.
 
-    Outputs: the four entries, and at the ground its irradiance. Crossings stand in order of their level.
+    ``dipolar`` takes the four entries of the tensor, ``plain`` its trace, ``forward`` the two of the flux (haze only).
+    Outputs: the entries, and at the ground its irradiance. Crossings stand in order of their level; ``weight`` has
+    shape (scatterer, crossing, wavelength).
     """
 
     window: Window
@@ -46,6 +48,7 @@ class Kernels:
     weight: Array
     dipolar: NDArray[np.float32]
     plain: NDArray[np.float32]
+    forward: NDArray[np.float32] | None
 
     def runs(self) -> Iterator[tuple[int, slice]]:
         """Each level with the run of its crossings."""
@@ -54,8 +57,8 @@ class Kernels:
             yield int(self.level[start]), slice(int(start), int(stop))
 
 
-def bin_crossings(fan: Fan, some: NDArray[np.bool_], window: Window, chi: Array, shape: Shape) -> Kernels:
-    """Kernels of the fan's crossings ``some`` (ray, 2, level) for sources at ``chi`` [rad]."""
+def bin_crossings(fan: Fan, some: NDArray[np.bool_], window: Window, chi: Array, shape: Shape, entries: int) -> Kernels:
+    """Kernels of the crossings ``some`` (ray, 2, level) for sources at ``chi`` [rad] of a field of ``entries``."""
     crossing = fan.coarse
     level, ray, branch = np.nonzero(some.transpose(2, 0, 1))
     omega = fan.sight(chi)
@@ -66,46 +69,51 @@ def bin_crossings(fan: Fan, some: NDArray[np.bool_], window: Window, chi: Array,
     node, low, high = shape.weights(level[:, None, None], cos_there)
     e_s, e_rho, e_alpha = (axis.of(ray) for axis in dipole.projected_axes(omega))
     there_rho, there_alpha = dipole.turned_axes(e_rho, e_alpha, cosine, sine)
-    solid = fan.solid_angle[ray][:, None, None]
-    columns: list[Sequence[Array]] = [
+    sight = omega.of(ray)
+    incidence = None if fan.level else np.maximum(fan.cos_zenith, 0)[ray][:, None, None]
+    plain = dipole.outputs(dipole.projector_entries(sight), sight, entries, incidence)
+    columns = [
         dipole.tensor_entries(e_s, e_s),
         [2 * entry for entry in dipole.tensor_entries(e_s, there_rho)],
         dipole.tensor_entries(there_rho, there_rho),
         dipole.tensor_entries(there_alpha, there_alpha),
     ]
-    isotropic: Sequence[Array] = dipole.projector_entries(omega.of(ray))
-    if fan.level == 0:
-        cosine_weight = np.maximum(fan.cos_zenith, 0)[ray][:, None, None]
-        columns = [(*column, cosine_weight * (column[0] + column[2] + column[3])) for column in columns]
-        isotropic = (*isotropic, 2 * cosine_weight)
-    outputs = len(isotropic)
-    dipolar = np.empty((len(ray), outputs, len(chi), dipole.ENTRIES, window.width), np.float32)
-    place = node - window.first[:, None]
-    low, high = solid * low, solid * high
-    spread = _Spread(place, low, high, window.width, dipole.ENTRIES)
-    for output in range(outputs):
-        dipolar[:, output] = spread.bin([column[output] for column in columns])
-    plain = (
-        _Spread(place, low, high, window.width, outputs)
-        .bin(isotropic)
-        .transpose(0, 2, 1, 3)
-        .astype(np.float32, order="C")
+    dipolar = [dipole.outputs(column, sight, entries, incidence) for column in columns]
+    along_rho = cosine * sight.rho + sine * sight.alpha
+    forward = [[part * output for output in plain] for part in (sight.s, along_rho)] if entries > dipole.ENTRIES else []
+    solid = fan.solid_angle[ray][:, None, None]
+    place, low, high = node - window.first[:, None], solid * low, solid * high
+
+    def binned(sources: list[list[Array]]) -> NDArray[np.float32]:
+        spread = _Spread(place, low, high, window.width, len(sources))
+        result = np.empty((len(ray), len(plain), len(chi), len(sources), window.width), np.float32)
+        for output in range(len(plain)):
+            result[:, output] = spread.bin([source[output] for source in sources])
+        return result
+
+    return Kernels(
+        window=window,
+        level=level,
+        weight=crossing.weight[:, ray, branch, level],
+        dipolar=binned(dipolar),
+        plain=binned([plain])[:, :, :, 0],
+        forward=binned(forward) if forward else None,
     )
-    return Kernels(window, level, crossing.weight[ray, branch, level], dipolar, plain)
 
 
-def bin_ground(fan: Fan, strikes: NDArray[np.intp], chi: Array, shape: Shape) -> NDArray[np.float32]:
+def bin_ground(fan: Fan, strikes: NDArray[np.intp], chi: Array, shape: Shape, entries: int) -> NDArray[np.float32]:
     """What unit radiance of the ground counts along the rays ``strikes``: (ray, entry, node, node of the ground)."""
     crossing = fan.coarse
-    omega = fan.sight(chi)
     cos_there, _, _ = dipole.moved(
         crossing.ground_cos_turn[strikes][:, None, None], crossing.ground_sin_turn[strikes][:, None, None],
         fan.cos_phi, fan.sin_phi, np.cos(chi)[:, None], np.sin(chi)[:, None],
     )  # fmt: skip
     node, low, high = shape.weights(np.zeros(1, np.intp), cos_there)
     solid = fan.solid_angle[strikes][:, None, None]
-    entries = [0.5 * solid * entry for entry in dipole.projector_entries(omega.of(strikes))]
-    return _Spread(node, low, high, len(chi), dipole.ENTRIES).bin(entries).transpose(0, 2, 1, 3).astype(np.float32)
+    sight = fan.sight(chi).of(strikes)
+    unpolarised = [0.5 * solid * entry for entry in dipole.projector_entries(sight)]
+    spread = _Spread(node, low, high, len(chi), entries)
+    return spread.bin(dipole.outputs(unpolarised, sight, entries)).transpose(0, 2, 1, 3).astype(np.float32)
 
 
 class _Spread:

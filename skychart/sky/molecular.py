@@ -41,21 +41,23 @@ class Field:
 
 
 def solve_field(
-    shells: Shells, table: SunTable, grid: Grid, depolarisation: Array, albedo: Array, typical: int
+    shells: Shells, table: SunTable, grid: Grid, scatterers: dipole.Scatterers, albedo: Array, typical: int
 ) -> Field:
     """All orders, all sun positions. ``typical``: index of the wavelength whose first order gives the shapes."""
-    a, b = dipole.molecular_coefficients(depolarisation)
     node_deg = solar_zenith_nodes_deg()
     chi = np.radians(node_deg)
     altitude = shells.altitude_km[:: grid.substeps]
     with ThreadPoolExecutor(THREADS) as pool:
         fans = list(pool.map(lambda level: Fan(shells, grid, level), range(len(altitude))))
-        firsts = list(pool.map(lambda fan: first_order(table, fan, chi, a, b), fans))
+        firsts = list(pool.map(lambda fan: first_order(table, fan, chi, scatterers), fans))
     direct = np.maximum(np.cos(chi), 0)[:, None] * table.at(np.zeros(len(chi), np.intp), np.cos(chi))
     tensor = np.stack([first.tensor for first in firsts])
     ground = direct + firsts[0].irradiance
-    shapes = Shape.of(node_deg, dipole.trace(tensor[..., typical], 2)), Shape.of(node_deg, ground[None, :, typical])
-    solved, lit = Operator(fans, chi, shapes, (a, b), albedo).sum_orders(tensor, ground)
+    shapes = (
+        Shape.of(node_deg, dipole.trace(tensor[:, :, : dipole.ENTRIES, typical], 2)),
+        Shape.of(node_deg, ground[None, :, typical]),
+    )
+    solved, lit = Operator(fans, chi, shapes, scatterers, albedo).sum_orders(tensor, ground)
     tensor_shape, ground_shape = (shape.every_degree() for shape in shapes)
     refine = spline_matrix(node_deg, tensor_shape.node_deg).astype(np.float32)
     fine = np.einsum("fn,lnew->lfew", refine, solved, optimize=True)

@@ -3,8 +3,9 @@
 Light scattered once is gathered straight from the beam at every sub-step; the rest from the solved field.
 """
 
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
+from typing import Protocol
 
 import numpy as np
 from numpy.typing import NDArray
@@ -17,6 +18,20 @@ from skychart.sky.shape import Shape
 from skychart.sky.shells import Shells, tangent_altitude
 
 Array = NDArray[np.float64]
+
+Phase = Callable[[Array], Array]
+
+
+class HazeSource(Protocol):
+    """What haze sends at the lowest ``levels`` of the field."""
+
+    @property
+    def levels(self) -> int:
+        """How many levels hold haze."""
+
+    def along(self, cosine: Array, level: NDArray[np.intp], cos_chi: Array, cos_azimuth: Array) -> Array:
+        """Source [1/sr], (line, crossing, wavelength); ``cosine``, ``level`` (crossing,), the rest (line, crossing)."""
+
 
 _LINES_AT_ONCE = 256
 
@@ -38,49 +53,68 @@ class Station:
     table: SunTable
     start: int
 
-    def single(self, lines: Lines, depolarisation: Array) -> NDArray[np.float64]:
-        """I, Q, U of light scattered once, shape (line, 3, wavelength) [1/sr]."""
-        a, b = dipole.molecular_coefficients(depolarisation)
+    def single(self, lines: Lines, scatterers: dipole.Scatterers, phase: Phase | None) -> NDArray[np.float64]:
+        """I, Q, U of light scattered once, shape (line, 3, wavelength) [1/sr].
+
+        ``phase``: of the haze, if there is any, by the cosine of the scattering angle.
+        """
+        a, b = scatterers.a, scatterers.b
         result = np.zeros((len(lines.view_cosine), 3, len(a)))
         everything = np.arange(len(self.shells.altitude_km))
         for fan, ray, chosen in self._blocks(lines, everything):
             level, cos_there, _, _ = _along(fan, ray, lines, chosen)
             beam = self.table.at(level, cos_there)
-            weight = fan.weight[ray][fan.reached[ray]].astype(np.float32)
-            light = np.einsum("bql,ql->bl", beam, weight, optimize=False)
-            _, h, v = _sight_axes(lines, chosen)
-            hh, vv, hv = (0.5 * (x.rho * y.rho + x.alpha * y.alpha) for x, y in ((h, h), (v, v), (h, v)))
-            result[chosen] = np.stack(
-                [
-                    light * (a * (hh + vv)[:, None] + 2 * b),
-                    light * a * (hh - vv)[:, None],
-                    light * a * (-2 * hv)[:, None],
-                ],
-                axis=1,
+            molecules, *haze = (
+                np.einsum("bql,ql->bl", beam, weight[ray][fan.reached[ray]].astype(np.float32), optimize=False)
+                for weight in fan.weight
             )
+            sight, h, v = _sight_axes(lines, chosen)
+            hh, vv, hv = (0.5 * (x.rho * y.rho + x.alpha * y.alpha)[:, None] for x, y in ((h, h), (v, v), (h, v)))
+            result[chosen, 0] = molecules * (a * (hh + vv) + 2 * b)
+            result[chosen, 1] = molecules * a * (hh - vv)
+            result[chosen, 2] = molecules * a * -2 * hv
+            if phase is not None:
+                result[chosen, 0] += haze[0] * phase(sight.s) / (4 * np.pi)
         return result
 
-    def multiple(self, field: Field, lines: Lines, depolarisation: Array, albedo: Array) -> NDArray[np.float64]:
-        """I, Q, U of light scattered more than once, by the ground too; shape (line, 3, wavelength) [1/sr]."""
-        a, b = dipole.molecular_coefficients(depolarisation)
+    def multiple(
+        self,
+        field: Field,
+        lines: Lines,
+        scatterers: dipole.Scatterers,
+        albedo: Array,
+        haze_source: HazeSource | None = None,
+    ) -> NDArray[np.float64]:
+        """I, Q, U of light scattered more than once, by the ground too; shape (line, 3, wavelength) [1/sr].
+
+        Haze sends what ``scatterers`` say, or what ``haze_source`` does.
+        """
+        a, b, forward = scatterers
         field = _with_level(field, self.shells.altitude_km[self.start])
         levels = np.searchsorted(self.shells.altitude_km, field.level_altitude_km)
         result = np.zeros((len(lines.view_cosine), 3, len(a)))
         for fan, ray, chosen in self._blocks(lines, levels):
             level, cos_there, cosine, sine = _along(fan, ray, lines, chosen)
-            weight = fan.weight[ray][fan.reached[ray]].astype(np.float32)
-            tensor = _interpolated(field.tensor_shape, field.tensor, level, cos_there) * weight[:, None]
-            _, h, v = _sight_axes(lines, chosen)
+            entries = _interpolated(field.tensor_shape, field.tensor, level, cos_there)
+            weights = [weight[ray][fan.reached[ray]].astype(np.float32)[:, None] for weight in fan.weight]
+            sight, h, v = _sight_axes(lines, chosen)
             hh, vv, hv = _source_coefficients(h, v, cosine, sine)
             plain = np.broadcast_to(dipole.TRACE, hh.shape)
-            wanted = np.stack([hh + vv, hh - vv, -2 * hv, plain], axis=1).reshape(len(chosen), 4, -1).astype(np.float32)
-            sums = wanted @ tensor.reshape(len(chosen), wanted.shape[2], -1)
+            tensor = entries[..., : dipole.ENTRIES, :]
+            sums = _summed([hh + vv, hh - vv, -2 * hv, plain], tensor * weights[0])
             result[chosen] = a * sums[:, :3]
             result[chosen, 0] += 2 * b * sums[:, 3]
+            if forward is not None:
+                along = np.stack([np.broadcast_to(sight.s[:, None], cosine.shape), _along_rho(sight, cosine, sine)], -1)
+                trace = _summed([plain], tensor * weights[1])[:, 0]
+                flux = _summed([along], entries[..., dipole.ENTRIES :, :] * weights[1])[:, 0]
+                result[chosen, 0] += 2 * dipole.ISOTROPIC * (trace + forward * flux)
+            if haze_source is not None:
+                light = _sent_by_haze(haze_source, fan, ray, sight, lines.view_cosine[chosen[0]], cos_there, level)
+                result[chosen, 0] += np.einsum("bqw,qw->bw", light, weights[1][: light.shape[1], 0])
             if fan.ground[ray].any():
-                result[chosen, 0] += (
-                    fan.ground[ray] * albedo / np.pi * self._ground_light(field, fan, ray, lines, chosen)
-                )
+                lit = self._ground_light(field, fan, ray, lines, chosen)
+                result[chosen, 0] += fan.ground[ray] * albedo / np.pi * lit
         return result
 
     def _ground_light(self, field: Field, fan: Crossings, ray: int, lines: Lines, chosen: NDArray[np.intp]) -> Array:
@@ -105,9 +139,9 @@ class Station:
         shells = self.shells
         tangent = tangent_altitude(shells.altitude_km[self.start], view, shells.planet_radius_km)
         factors = shells.slant_factors(tangent)[..., None]
-        scattering, extinction = (
+        extinction, *scattering = (
             np.add.reduceat(factors * depth, boundaries[:-1], axis=1)
-            for depth in (shells.scattering_depth, shells.extinction_depth)
+            for depth in (shells.extinction_depth, *shells.scattering_depth)
         )
         start = int(np.searchsorted(boundaries, self.start))
         return crossings(shells.altitude_km[boundaries], scattering, extinction, start, view, shells.planet_radius_km)
@@ -123,6 +157,25 @@ def _along(
         fan.cos_turn[ray][reached], fan.sin_turn[ray][reached], np.cos(phi), np.sin(phi), np.cos(chi), np.sin(chi)
     )
     return np.nonzero(reached)[1], cos_there, cosine, sine
+
+
+def _sent_by_haze(
+    source: HazeSource,
+    fan: Crossings,
+    ray: int,
+    sight: dipole.Vector,
+    view_cosine: float,
+    cos_chi: Array,
+    level: NDArray[np.intp],
+) -> Array:
+    """Haze's source at the crossings of the lower levels, (line, crossing, wavelength); they come first along a ray."""
+    low = level < source.levels
+    reached = fan.reached[ray]
+    cos_turn, sin_turn = fan.cos_turn[ray][reached][low], fan.sin_turn[ray][reached][low]
+    cosine = np.clip(view_cosine * cos_turn + np.sqrt(1 - view_cosine**2) * sin_turn, -1, 1)
+    across = np.sqrt(np.maximum((1 - cosine**2) * (1 - cos_chi[:, low] ** 2), 1e-12))
+    azimuth = (sight.s[:, None] - cosine * cos_chi[:, low]) / across
+    return source.along(cosine, level[low], cos_chi[:, low], np.clip(azimuth, -1, 1))
 
 
 def _sight_axes(lines: Lines, chosen: NDArray[np.intp]) -> tuple[dipole.Vector, dipole.Vector, dipole.Vector]:
@@ -151,6 +204,17 @@ def _source_coefficients(h: dipole.Vector, v: dipole.Vector, cosine: Array, sine
 
     here_h, here_v = turned(h), turned(v)
     return product(here_h, here_h), product(here_v, here_v), product(here_h, here_v)
+
+
+def _along_rho(sight: dipole.Vector, cosine: Array, sine: Array) -> Array:
+    """Component of the sight along the rho axis of each crossing, (line, crossing)."""
+    return cosine * sight.rho[:, None] + sine * sight.alpha[:, None]
+
+
+def _summed(coefficients: Sequence[Array], entries: NDArray[np.float32]) -> NDArray[np.float32]:
+    """Sum over crossings and entries: (line, coefficient, wavelength)."""
+    wanted = np.stack(coefficients, axis=1).reshape(len(entries), len(coefficients), -1).astype(np.float32)
+    return wanted @ entries.reshape(len(entries), wanted.shape[2], -1)
 
 
 def _interpolated(

@@ -36,9 +36,9 @@ class Level:
     ground_transmission: Array  # (ray, wavelength)
 
     @classmethod
-    def of(cls, fan: Fan, chi: Array, shapes: tuple[Shape, Shape]) -> "Level":
+    def of(cls, fan: Fan, chi: Array, shapes: tuple[Shape, Shape], entries: int) -> "Level":
         """Bin a fan's crossings for sources at ``chi`` [rad] over the shapes of the tensor and of the ground."""
-        seen = fan.coarse.reached & (fan.coarse.weight.max(axis=3) > 0)
+        seen = fan.coarse.reached & (fan.coarse.weight.max(axis=(0, 4)) > 0)
         reach = np.abs(fan.coarse.sin_turn)
         kernels = []
         # the ground's own rays make its irradiance too: keep them in one piece
@@ -46,23 +46,23 @@ class Level:
         for nearest, farthest in pairwise((np.inf, *reaches, -1.0)):
             some = seen & (reach < nearest) & (reach >= farthest)
             if some.any():
-                kernels.append(bin_crossings(fan, some, Window.of(chi, nearest), chi, shapes[0]))
+                kernels.append(bin_crossings(fan, some, Window.of(chi, nearest), chi, shapes[0], entries))
         strikes = np.nonzero(fan.coarse.ground.any(axis=1))[0]
-        return cls(kernels, bin_ground(fan, strikes, chi, shapes[1]), fan.coarse.ground[strikes])
+        return cls(kernels, bin_ground(fan, strikes, chi, shapes[1], entries), fan.coarse.ground[strikes])
 
 
 class Operator:
     """The operator at every wavelength. States are over the shapes: (level, entry, node), then (ground node)."""
 
     def __init__(
-        self, fans: list[Fan], chi: Array, shapes: tuple[Shape, Shape], coefficients: tuple[Array, Array], albedo: Array
+        self, fans: list[Fan], chi: Array, shapes: tuple[Shape, Shape], scatterers: dipole.Scatterers, albedo: Array
     ) -> None:
-        self.nodes = len(chi)
-        self.rows = dipole.ENTRIES * self.nodes
-        self.coefficients, self.albedo = coefficients, albedo
+        self.nodes, self.entries = len(chi), scatterers.entries
+        self.rows = self.entries * self.nodes
+        self.scatterers, self.albedo = scatterers, albedo
         with ThreadPoolExecutor(THREADS) as pool:
-            self.levels = list(pool.map(lambda fan: Level.of(fan, chi, shapes), fans))
-        repeated = np.repeat(shapes[0].at_node[:, None], dipole.ENTRIES, axis=1)
+            self.levels = list(pool.map(lambda fan: Level.of(fan, chi, shapes, self.entries), fans))
+        repeated = np.repeat(shapes[0].at_node[:, None], self.entries, axis=1)
         self.shape = np.append(repeated.ravel(), shapes[1].at_node[0]).astype(np.float32)
 
     def sum_orders(self, tensor: Array, ground: Array) -> tuple[Single, Single]:
@@ -81,7 +81,7 @@ class Operator:
                 matrices = buffer[: len(block)]
                 list(pool.map(lambda number, m=matrices, b=block: self._fill(m, b, number), range(len(self.levels))))
                 total[block] = list(pool.map(self._summed, matrices, first[block]))
-        solved = total[:, : -self.nodes].reshape(-1, len(self.levels), dipole.ENTRIES, self.nodes)
+        solved = total[:, : -self.nodes].reshape(-1, len(self.levels), self.entries, self.nodes)
         return solved.transpose(1, 3, 2, 0), total[:, -self.nodes :].T
 
     def _summed(self, matrix: Single, first: Single) -> Single:
@@ -95,7 +95,7 @@ class Operator:
 
     def _fill(self, matrices: Single, wavelengths: range, number: int) -> None:
         """The rows of level ``number`` of the matrices of some wavelengths; with level 0 come those of the ground."""
-        level, size = self.levels[number], (dipole.ENTRIES, self.nodes)
+        level, size = self.levels[number], (self.entries, self.nodes)
         count, own = len(matrices), matrices[:, number * self.rows : (number + 1) * self.rows]
         own.fill(0)
         rows = own[..., : -self.nodes].reshape(count, *size, len(self.levels), *size)
@@ -107,13 +107,13 @@ class Operator:
             blocks = self._weighted(kernels, wavelengths)
             if kernels.window.width == self.nodes:
                 for source, block in blocks:
-                    rows[:, :, :, source] = block[:, : dipole.ENTRIES]
+                    rows[:, :, :, source] = block[:, : self.entries]
                     if number == 0:
-                        to_ground[:, :, :, source] = block[:, dipole.ENTRIES :]
+                        to_ground[:, :, :, source] = block[:, self.entries :]
                 continue
             sums = np.zeros((*rows.shape[:-1], kernels.window.width), np.float32)
             for source, block in blocks:
-                sums[:, :, :, source] = block[:, : dipole.ENTRIES]
+                sums[:, :, :, source] = block[:, : self.entries]
             for x, first in enumerate(kernels.window.first):
                 rows[:, :, x, ..., first : first + kernels.window.width] += sums[:, :, x]
         radiance = self.albedo[wavelengths] / np.pi * level.ground_transmission[:, wavelengths]
@@ -121,14 +121,24 @@ class Operator:
 
     def _weighted(self, kernels: Kernels, wavelengths: range) -> Iterator[tuple[int, Single]]:
         """Each source level with its kernels under the path weights: (wavelength, output, node, entry, window)."""
-        count, size = len(wavelengths), kernels.dipolar.shape[1:]
-        a, b = (coefficient[wavelengths, None] for coefficient in self.coefficients)
+        count, (_, outputs, nodes, _, width) = len(wavelengths), kernels.dipolar.shape
+        scatterers = self.scatterers.of(wavelengths)
         traced = [entry for entry, part in enumerate(dipole.TRACE) if part]
         for source, run in kernels.runs():
-            weight = kernels.weight[run, wavelengths.start : wavelengths.stop].T
-            dipolar = (a * weight).astype(np.float32) @ kernels.dipolar[run].reshape(weight.shape[1], -1)
-            plain = (b * weight).astype(np.float32) @ kernels.plain[run].reshape(weight.shape[1], -1)
-            block = dipolar.reshape(count, *size)
+            molecules, *haze = kernels.weight[:, run, wavelengths.start : wavelengths.stop].swapaxes(1, 2)
+            block = np.empty((count, outputs, nodes, self.entries, width), np.float32)
+            block[..., : dipole.ENTRIES, :] = _product(scatterers.a[:, None] * molecules, kernels.dipolar[run])
+            plain = scatterers.b[:, None] * molecules
+            if haze and kernels.forward is not None and scatterers.forward is not None:
+                plain = plain + dipole.ISOTROPIC * haze[0]
+                forward = dipole.ISOTROPIC * scatterers.forward[:, None] * haze[0]
+                block[..., dipole.ENTRIES :, :] = _product(forward, kernels.forward[run])
+            isotropic = _product(plain, kernels.plain[run])
             for entry in traced:
-                block[..., entry, :] += plain.reshape(count, *size[:2], size[3])
+                block[..., entry, :] += isotropic
             yield source, block
+
+
+def _product(weight: Array, kernel: Single) -> Single:
+    """Sum over crossings of ``weight`` (wavelength, crossing) and ``kernel`` (crossing, ...): (wavelength, ...)."""
+    return (weight.astype(np.float32) @ kernel.reshape(len(kernel), -1)).reshape(len(weight), *kernel.shape[1:])

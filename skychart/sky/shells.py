@@ -40,24 +40,37 @@ def subdivide(altitude_km: Array, parts: int) -> Array:
 
 @dataclass(frozen=True, eq=False)
 class Shells:
-    """Optical depths of thin layers. Altitudes [km], shape (layer + 1,); depths (layer, wavelength)."""
+    """Optical depths of thin layers. Altitudes [km], shape (layer + 1,); depths (layer, wavelength).
+
+    ``scattering_depth`` has one array for each scatterer: molecules, then haze if the air has any.
+    """
 
     altitude_km: Array
-    scattering_depth: Array
+    scattering_depth: tuple[Array, ...]
     extinction_depth: Array
     decay_per_km: Array  # of the molecular density within each layer, shape (layer,)
     planet_radius_km: float
 
     @classmethod
-    def of(cls, air: Atmosphere, altitude_km: Array) -> "Shells":
-        """The layers of ``air`` redistributed to the boundaries ``altitude_km`` [km], shape (layer + 1,)."""
-        rayleigh, density = _redistribute(air, air.rayleigh_depth, altitude_km)
-        absorption, _ = _redistribute(air, air.absorption_depth, altitude_km)
+    def of(cls, air: Atmosphere, altitude_km: Array, unscattered: Array | float = 0.0) -> "Shells":
+        """The layers of ``air`` redistributed to the boundaries ``altitude_km`` [km], shape (layer + 1,).
+
+        ``unscattered``: the part of what the haze scatters that is taken as not scattered at all, (wavelength,).
+        """
+        rayleigh, density = redistribute(air, air.rayleigh_depth, altitude_km)
+        absorption, _ = redistribute(air, air.absorption_depth, altitude_km)
+        extinction = rayleigh + absorption
+        scattering: tuple[Array, ...] = (rayleigh,)
+        if air.haze is not None:
+            depth, _ = redistribute(air, air.haze.depth, altitude_km)
+            scattered = air.haze.single_scattering_albedo
+            scattering = rayleigh, depth * scattered * (1 - unscattered)
+            extinction = extinction + depth * (1 - scattered * unscattered)
         typical = np.maximum(density.mean(axis=1), 1e-12 * density.max())
         return cls(
             altitude_km=altitude_km,
-            scattering_depth=rayleigh,
-            extinction_depth=rayleigh + absorption,
+            scattering_depth=scattering,
+            extinction_depth=extinction,
             decay_per_km=np.log(typical[:-1] / typical[1:]) / np.diff(altitude_km),
             planet_radius_km=air.planet_radius_km,
         )
@@ -93,7 +106,7 @@ def distance_from_tangent(altitude_km: Array, tangent_km: Array, planet_radius_k
     return np.sqrt(np.maximum(0.0, (altitude_km - tangent_km) * (2 * planet_radius_km + altitude_km + tangent_km)))
 
 
-def _redistribute(air: Atmosphere, depth: Array, altitude_km: Array) -> tuple[Array, Array]:
+def redistribute(air: Atmosphere, depth: Array, altitude_km: Array) -> tuple[Array, Array]:
     """Depths between ``altitude_km`` and densities [1/km] at them, from the column below each level of ``air``."""
     column = np.concatenate([np.zeros((1, depth.shape[1])), np.cumsum(depth, axis=0)])
     below, density = monotone_cubic(air.level_altitude_km, column, altitude_km)

@@ -8,7 +8,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from skychart.errors import InputError
-from skychart.sky import beam
+from skychart.sky import beam, dipole
 from skychart.sky.atmosphere import Atmosphere
 from skychart.sky.beam import SunTable
 from skychart.sky.grid import Grid
@@ -29,7 +29,7 @@ def solve(air: Atmosphere, grid: Grid = Grid()) -> "Sky":  # noqa: B008  Grid is
     shells = Shells.of(air, subdivide(level_altitudes(air_top, grid.levels), grid.substeps))
     table = SunTable.of(shells)
     typical = int(np.argmin(np.abs(air.wavelength_nm - _SHAPE_WAVELENGTH_NM)))
-    field = solve_field(shells, table, grid, air.depolarisation, air.ground_albedo, typical)
+    field = solve_field(shells, table, grid, _scatterers(air), air.ground_albedo, typical)
     return Sky(air, grid, Station(shells, table, 0), field)
 
 
@@ -75,7 +75,7 @@ class Sky:
     ) -> Array:
         """The part of ``stokes`` scattered once from the beam."""
         shape, lines = _lines(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
-        stokes = self._station(altitude_km).single(lines, self.air.depolarisation)
+        stokes = self._station(altitude_km).single(lines, _scatterers(self.air), None)
         return stokes.reshape(*shape, *stokes.shape[1:])
 
     def multiple(
@@ -88,7 +88,7 @@ class Sky:
         """The part of ``stokes`` scattered more than once or by the ground."""
         shape, lines = _lines(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
         station = self._station(altitude_km)
-        stokes = station.multiple(self.field, lines, self.air.depolarisation, self.air.ground_albedo)
+        stokes = station.multiple(self.field, lines, _scatterers(self.air), self.air.ground_albedo)
         return stokes.reshape(*shape, *stokes.shape[1:])
 
     def beam(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
@@ -125,6 +125,10 @@ class Sky:
             start = int(np.searchsorted(shells.altitude_km, altitude))
             self.aloft[altitude] = Station(shells, SunTable.of(shells), start)
         return self.aloft[altitude]
+
+
+def _scatterers(air: Atmosphere) -> dipole.Scatterers:
+    return dipole.Scatterers(*dipole.molecular_coefficients(air.depolarisation))
 
 
 def _hemisphere(stokes: Callable[..., Array], solar_elevation_deg: ArrayLike, altitude_km: float) -> Array:

@@ -1,0 +1,219 @@
+"""Light scattered more than once in hazy air on the sphere: G on the sphere, corrected by F / G of flat air.
+
+On the sphere haze is solved with two moments of its phase function, its forward peak taken for unscattered (Joseph,
+Wiscombe & Weinman 1976, doi:10.1175/1520-0469(1976)033<2452:TDEAFR>2.0.CO;2): the closure. G is one exact scattering of
+the light of that closure, with the full phase function and the true extinction. What the closure gets wrong it gets
+wrong in flat air too, where the full solution F is known at the same place, sun and direction: F / G there corrects G.
+Q and U are those of the molecules in G, in the same proportion; haze light counts as unpolarised.
+"""
+
+from collections.abc import Callable
+from concurrent.futures import ThreadPoolExecutor
+from dataclasses import dataclass, replace
+
+import numpy as np
+from numpy.typing import NDArray
+
+from skychart.sky import dipole
+from skychart.sky.atmosphere import Atmosphere
+from skychart.sky.beam import THREADS, SunTable, transmission
+from skychart.sky.grid import Grid, solar_zenith_nodes_deg
+from skychart.sky.haze import Haze
+from skychart.sky.interpolation import spline_matrix
+from skychart.sky.local import FlatAir, FlatLight, one_scattering, peak_fraction, solve_closure, solve_flat
+from skychart.sky.local.streams import MOMENTS, legendre
+from skychart.sky.molecular import Field, solve_field
+from skychart.sky.observer import Lines, Station
+from skychart.sky.shape import Shape
+from skychart.sky.shells import Shells, level_altitudes, redistribute, subdivide
+
+Array = NDArray[np.float64]
+
+_GRID = Grid(levels=24, zenith=5, azimuth=5, substeps=5)
+_DIRECTIONS = Grid(zenith=8, azimuth=8)  # in which the closure's radiance is known where it is scattered once more
+_MODES = 8
+_HAZE_LEFT = 1e-3  # of the haze may lie above the levels whose haze scatters once more
+_FLAT_KM = np.array(
+    [0, 0.1, 0.25, 0.5, 0.75, 1, 1.5, 2, 2.5, 3, 4, 5, 6, 8, 10, 12, 15, 18, 22, 27, 35, 50, 80], dtype=float
+)
+_LOWEST_FLAT_SUN_DEG = 97.0
+_LOWEST_VIEW = 0.01  # cosine of zenith angle: flat air has no horizon
+
+
+@dataclass(frozen=True, eq=False)
+class Scattered:
+    """Haze's source from the closure's light: spherical harmonics at the lower levels.
+
+    ``harmonics`` (level, sun every degree, moment, mode, wavelength), the phase function's moments in, over ``shape``.
+    """
+
+    harmonics: NDArray[np.float32]
+    shape: Shape
+
+    @property
+    def levels(self) -> int:
+        """How many levels hold haze."""
+        return len(self.harmonics)
+
+    def along(self, cosine: Array, level: NDArray[np.intp], cos_chi: Array, cos_azimuth: Array) -> Array:
+        """Source [1/sr], (line, crossing, wavelength), at crossings with zenith cosines ``cosine`` and ``level``.
+
+        ``cos_chi``, ``cos_azimuth`` (line, crossing): of the sun's zenith angle and of the azimuth from it.
+        """
+        count, modes = self.harmonics.shape[2:4]
+        basis = legendre(modes, count, cosine).astype(np.float32)
+        sent = np.einsum("mqc,qncmw->qnmw", basis, self.harmonics[level], optimize=True)
+        node, low, high = self.shape.weights(level, cos_chi)
+        crossing = np.arange(len(level))
+        cosines = np.cos(np.arccos(np.clip(cos_azimuth, -1, 1))[..., None] * np.arange(modes))
+        wanted = [(part[..., None] * cosines).astype(np.float32) for part in (low, high)]
+        return np.einsum("bqm,bqmw->bqw", wanted[0], sent[crossing, node]) + np.einsum(
+            "bqm,bqmw->bqw", wanted[1], sent[crossing, node + 1]
+        )
+
+
+@dataclass(frozen=True, eq=False)
+class HazyField:
+    """The solved light of a hazy sky: ``field`` is the closure's, ``full`` and ``closed`` flat air's by view cosine."""
+
+    air: Atmosphere
+    scatterers: dipole.Scatterers
+    field: Field
+    scattered: Scattered
+    full: Callable[[Array], FlatLight]
+    closed: Callable[[Array], FlatLight]
+
+    def multiple(self, station: Station, lines: Lines) -> Array:
+        """I, Q, U of light scattered more than once seen from ``station``, (line, 3, wavelength) [1/sr]."""
+        return self.one_scattering(station, lines) * self.correction(lines)[:, None]
+
+    def one_scattering(self, station: Station, lines: Lines) -> Array:
+        """G on the sphere: I, Q, U (line, 3, wavelength)."""
+        haze = _haze(self.air)
+        shells = station.shells
+        scaled = SunTable.of(Shells.of(self.air, shells.altitude_km, peak_fraction(haze)))
+        beyond = SunTable(shells, scaled.values - station.table.values, scaled.edge)
+        remainder = Station(shells, beyond, station.start)
+        molecules = dipole.Scatterers(self.scatterers.a, self.scatterers.b)
+        light = remainder.single(lines, molecules, haze.phase_at)
+        return light + station.multiple(self.field, lines, molecules, self.air.ground_albedo, self.scattered)
+
+    def correction(self, lines: Lines) -> Array:
+        """F / G of flat air for the same sun and direction, (line, wavelength)."""
+        node = _flat_suns()
+        view, which = np.unique(np.maximum(lines.view_cosine, _LOWEST_VIEW), return_inverse=True)
+        pairs = np.stack([which, np.round(np.cos(lines.relative_azimuth), 12)], axis=1)
+        distinct, pair = np.unique(pairs, axis=0, return_inverse=True)
+        sun, number, azimuth = np.arange(len(node)), distinct[:, 0].astype(int), np.arccos(distinct[:, 1])
+        full, closed = (
+            light(view).stokes(sun[:, None], number, azimuth)[..., 0, :] for light in (self.full, self.closed)
+        )
+        between = spline_matrix(node, np.minimum(lines.solar_zenith, node[-1]))
+        ratio = full / closed
+        return np.einsum("ls,slw->lw", between, ratio[:, pair.ravel()])
+
+
+def solve_hazy(air: Atmosphere, typical: int) -> HazyField:
+    """Solve the light of air with haze. ``typical``: index of the wavelength whose first order gives the shapes."""
+    haze = _haze(air)
+    fraction = peak_fraction(haze)
+    altitude = subdivide(level_altitudes(float(air.level_altitude_km[-1]), _GRID.levels), _GRID.substeps)
+    shells = Shells.of(air, altitude, fraction)
+    table = SunTable.of(shells)
+    forward = 3 * haze.asymmetry / (1 + haze.asymmetry)
+    scatterers = dipole.Scatterers(*dipole.molecular_coefficients(air.depolarisation), forward)
+    field = solve_field(shells, table, _GRID, scatterers, air.ground_albedo, typical)
+    flat = _flat_air(air, fraction)
+    full, closed = solve_flat(flat), solve_closure(flat)
+    return HazyField(
+        air=air,
+        scatterers=scatterers,
+        field=field,
+        scattered=_scattered(haze, shells, table, field, scatterers, air.ground_albedo),
+        full=lambda view: one_scattering(full, view),
+        closed=lambda view: one_scattering(closed, view),
+    )
+
+
+def _flat_suns() -> Array:
+    """Zenith angles [rad] at which flat air is solved: while the sun still lights some of the air above the place."""
+    nodes = solar_zenith_nodes_deg()
+    return np.radians(nodes[nodes <= _LOWEST_FLAT_SUN_DEG])
+
+
+def _haze(air: Atmosphere) -> Haze:
+    if air.haze is None:
+        raise TypeError("air without haze")
+    return air.haze
+
+
+def _flat_air(air: Atmosphere, fraction: Array) -> FlatAir:
+    """The same air in flat layers, thinnest at the ground, under the sphere's own beam at every solver's sun."""
+    top = float(air.level_altitude_km[-1])
+    boundaries = np.append(_FLAT_KM[top > _FLAT_KM], top)
+    altitude = np.union1d(boundaries, subdivide(level_altitudes(top, _GRID.levels), _GRID.substeps))
+    cosine = np.cos(_flat_suns())
+    places = np.searchsorted(altitude, boundaries)
+    beams = []
+    for unscattered in (np.zeros_like(fraction), fraction):
+        shells = Shells.of(air, altitude, unscattered)
+        beams.append(np.stack([transmission(shells, place, cosine) for place in places]))
+    rayleigh, absorption, haze = (
+        redistribute(air, depth, boundaries)[0]
+        for depth in (air.rayleigh_depth, air.absorption_depth, _haze(air).depth)
+    )
+    return FlatAir(
+        rayleigh_depth=rayleigh,
+        absorption_depth=absorption,
+        haze=replace(_haze(air), depth=haze),
+        depolarisation=air.depolarisation,
+        ground_albedo=air.ground_albedo,
+        solar_zenith_angle=_flat_suns(),
+        beam=beams[0],
+        scaled_beam=beams[1],
+    )
+
+
+def _scattered(
+    haze: Haze, shells: Shells, table: SunTable, field: Field, scatterers: dipole.Scatterers, albedo: Array
+) -> Scattered:
+    """Radiance of the closure in all directions from the lower levels, as harmonics times the full phase function's."""
+    above = haze_above(shells)
+    levels = [level for level in range(_GRID.levels) if above[level * _GRID.substeps] > _HAZE_LEFT]
+    node = np.radians(solar_zenith_nodes_deg())
+    moments = haze.moments(MOMENTS)
+
+    def closure_phase(cosine: Array) -> Array:
+        return 1 + (scatterers.forward if scatterers.forward is not None else 0) * cosine[..., None]
+
+    def harmonics(level: int) -> Array:
+        station = Station(shells, table, level * _GRID.substeps)
+        altitude, radius = shells.altitude_km[station.start], shells.planet_radius_km
+        cosine, weight = _DIRECTIONS.cosines(float(np.sqrt(altitude * (2 * radius + altitude)) / (radius + altitude)))
+        cos_phi, _, phi_weight = _DIRECTIONS.azimuths()
+        chi, view, phi = (x.ravel() for x in np.meshgrid(node, cosine, np.arccos(cos_phi), indexing="ij"))
+        lines = Lines(chi, view, phi)
+        light = station.single(lines, scatterers, closure_phase)[:, 0]
+        light += station.multiple(field, lines, scatterers, albedo)[:, 0]
+        light = light.reshape(len(node), len(cosine), len(cos_phi), -1)
+        cosines = np.cos(np.arccos(cos_phi)[:, None] * np.arange(_MODES)) * phi_weight
+        basis = legendre(_MODES, MOMENTS, cosine) * weight[:, None]
+        return np.einsum("mvc,pm,nvpw->ncmw", basis, cosines, light, optimize=True)
+
+    with ThreadPoolExecutor(THREADS) as pool:
+        found = np.stack(list(pool.map(harmonics, levels)))
+    share = (2 * np.arange(MOMENTS) + 1)[:, None] * moments / (4 * np.pi)
+    twice = np.where(np.arange(_MODES) > 0, 2.0, 1.0)
+    found *= share[:, None] * twice[:, None]
+    shape = Shape(field.tensor_shape.node_deg, field.tensor_shape.at_node[levels], field.tensor_shape.fine[levels])
+    whole = solar_zenith_nodes_deg().astype(int)
+    found /= shape.at_node[:, whole][:, :, None, None, None]
+    refine = spline_matrix(solar_zenith_nodes_deg(), shape.node_deg)
+    return Scattered(np.einsum("fn,lncmw->lfcmw", refine, found, optimize=True).astype(np.float32), shape)
+
+
+def haze_above(shells: Shells) -> Array:
+    """Share of the haze above each boundary, (boundary,)."""
+    depth = shells.scattering_depth[1].sum(axis=1)
+    above = np.append(np.cumsum(depth[::-1])[::-1], 0.0)
+    return above / max(above[0], np.finfo(float).tiny)
