@@ -51,7 +51,8 @@ class Optics:
 def peak_fraction(haze: Haze) -> Array:
     """Part of the haze's scattering that the closure takes for unscattered, the asymmetry squared; (wavelength,).
 
-    Joseph, Wiscombe & Weinman 1976, The delta-Eddington approximation, doi:10.1175/1520-0469(1976)033<2452:TDEAFR>2.0.CO;2.
+    Joseph, Wiscombe & Weinman 1976, The delta-Eddington approximation for radiative flux transfer,
+    doi:10.1175/1520-0469(1976)033<2452:TDEAFR>2.0.CO;2.
     """
     return haze.moments(2)[1] ** 2
 

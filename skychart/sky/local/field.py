@@ -14,7 +14,7 @@ from skychart.sky.dipole import molecular_coefficients
 from skychart.sky.local import tensor
 from skychart.sky.local.air import FlatAir, Optics, delta_eddington, delta_m
 from skychart.sky.local.paths import beam_averages, from_ground, path_weights, top_boundary
-from skychart.sky.local.streams import MODES, Streams, legendre
+from skychart.sky.local.streams import MODES, MOMENTS, Streams, legendre
 from skychart.sky.local.system import HAZE, MOLECULES, System
 
 Array = NDArray[np.float64]
@@ -54,15 +54,14 @@ class FlatField:
         return np.moveaxis(leading_radiance(self, cosine), (3, 4, 2, 0, 1), (0, 1, 2, 3, 4))
 
 
-def solve_flat(air: FlatAir, streams: Streams | None = None, modes: int = MODES) -> FlatField:
-    """The full solution: as many moments as there are streams, delta-M beyond them, ``modes`` azimuth modes."""
-    streams = streams or Streams.double_gauss()
-    return _solve(air, delta_m(air, streams.moments), streams, modes)
+def solve_flat(air: FlatAir, streams: Streams | None = None, moments: int = MOMENTS, modes: int = MODES) -> FlatField:
+    """The full solution: ``moments`` of the phase function, delta-M beyond them, and ``modes`` azimuth modes."""
+    return _solve(air, delta_m(air, moments), streams or Streams.double_gauss(), min(modes, moments))
 
 
 def solve_closure(air: FlatAir, streams: Streams | None = None) -> FlatField:
     """The same with two moments of the haze's phase function, delta-Eddington beyond them."""
-    return _solve(air, delta_eddington(air), streams or Streams.double_gauss(), len(tensor.ENTRIES_OF_MODE))
+    return _solve(air, delta_eddington(air), streams or Streams.double_gauss(), tensor.MODES)
 
 
 def leading_radiance(field: FlatField, cosine: Array) -> Array:
@@ -83,7 +82,8 @@ def leading_radiance(field: FlatField, cosine: Array) -> Array:
     a, b = molecular_coefficients(field.air.depolarisation)
     beam = tensor.of_beam(cos_sun)
     entries = field.tensor.transpose(3, 2, 0, 1)
-    for mode, part in enumerate(tensor.ENTRIES_OF_MODE):
+    for mode in range(tensor.MODES):
+        part = tensor.entries_of(mode)
         sent = tensor.emitted(mode, cosine, a, b)
         light[mode] += (sent @ beam[part])[:, :, None] * molecules
         light[mode] += weights[MOLECULES] @ np.einsum("wce,wekn->wckn", sent, entries[:, part], optimize=True)
@@ -97,7 +97,7 @@ def _solve(air: FlatAir, optics: Optics, streams: Streams, modes: int) -> FlatFi
     system = System(air, optics, streams, hazy, modes)
     with ThreadPoolExecutor(_THREADS) as pool:
         solutions = list(pool.map(system.solution, range(modes)))
-    tensors = np.concatenate([solution[0] for solution in solutions[: len(tensor.ENTRIES_OF_MODE)]], axis=1)
+    tensors = np.concatenate([solution[0] for solution in solutions], axis=1)
     wavelengths, _, boundaries, suns = solutions[0][1].shape
     moments = np.zeros((modes, wavelengths, len(optics.moments), boundaries, suns))
     for mode, solution in enumerate(solutions):

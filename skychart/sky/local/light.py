@@ -40,24 +40,21 @@ class FlatLight:
     ground: Array
 
     def stokes(self, sun: ArrayLike, view: ArrayLike, relative_azimuth: ArrayLike) -> Array:
-        """I, Q, U [1/sr] per unit solar irradiance, (..., 3, wavelength), haze light and the ground's unpolarised.
+        """I, Q, U [1/sr] per unit solar irradiance, (..., 3, wavelength); light of haze and ground is unpolarised.
 
-        ``sun`` and ``view`` are indices, ``relative_azimuth`` [rad] from the sun's; they broadcast to (...). Q > 0 where
-        the electric vector is perpendicular to the vertical plane of sight.
+        ``sun`` and ``view`` are indices, ``relative_azimuth`` [rad] from the sun's; they broadcast to (...). Q > 0
+        where the electric vector is perpendicular to the vertical plane of sight.
         """
+        suns, views = np.broadcast_arrays(np.asarray(sun, np.intp), np.asarray(view, np.intp))
         azimuth = np.asarray(relative_azimuth, dtype=float)
-        cosine, cos_sun = self.view_cosine[view], np.cos(self.air.solar_zenith_angle)[sun]
-        cosine, cos_sun, azimuth = np.broadcast_arrays(cosine, cos_sun, azimuth)
-        light = tensor.stokes(
-            self.tensor[sun, view], cosine, azimuth, *molecular_coefficients(self.air.depolarisation)
-        )
-        modes = np.cos(azimuth[..., None] * np.arange(self.haze.shape[2]))
+        cosine, cos_sun = self.view_cosine[views], np.cos(self.air.solar_zenith_angle[suns])
+        a, b = molecular_coefficients(self.air.depolarisation)
+        light = tensor.stokes(self.tensor[suns, views], cosine, azimuth, a, b)
+        waves = np.cos(azimuth[..., None] * np.arange(self.haze.shape[2]))
+        by_haze = (waves[..., None, :] @ self.haze[suns, views])[..., 0, :]
         angle = cosine * cos_sun + np.sqrt((1 - cosine**2) * (1 - cos_sun**2)) * np.cos(azimuth)
-        light[..., 0, :] += (
-            (modes[..., None, :] @ self.haze[sun, view])[..., 0, :]
-            + self.peak[sun, view] * self.air.haze.phase_at(angle)
-            + self.ground[sun, view]
-        )
+        by_peak = self.peak[suns, views] * self.air.haze.phase_at(angle)
+        light[..., 0, :] += by_haze + by_peak + self.ground[suns, views]
         return light
 
 
@@ -73,8 +70,9 @@ def one_scattering(field: FlatField, view_cosine: Array, boundary: int = 0) -> F
     remainder = passed - kept
     kernel = scattering_kernel(optics.moments, streams, view_cosine, len(field.moments))
     incident = leading_radiance(field, streams.cosine)
-    along = np.einsum("wvk,mwskn->mwvsn", weights[HAZE][..., field.hazy], incident, optimize=True)
-    haze = np.einsum("mwvs,mwvsn->nvmw", kernel, along, optimize=True)
+    source = kernel @ incident.reshape(*incident.shape[:3], -1)
+    source = source.reshape(*source.shape[:3], *incident.shape[3:])
+    haze = (weights[HAZE][..., None, field.hazy] @ source)[..., 0, :].transpose(3, 2, 0, 1)
     molecules = np.einsum("wvk,knew->nvew", weights[MOLECULES], field.tensor, optimize=True)
     molecules += np.einsum("wvn,en->nvew", remainder[MOLECULES], tensor.of_beam(np.cos(air.solar_zenith_angle)))
     below = from_ground(optics.extinction, view_cosine)[:, :, boundary]

@@ -9,12 +9,11 @@ import numpy as np
 from numpy.typing import NDArray
 
 from skychart.sky.interpolation import spline_matrix
-from skychart.sky.rays import _segment_weights
 
 Array = NDArray[np.float64]
 
-# A layer whose foot gets less than exp(-3) of the beam at its top holds the edge of the planet's shadow.
-_STEEPEST_BEAM = 3.0
+# A layer whose foot gets less than exp(-5) of the beam at its top holds the edge of the planet's shadow.
+_STEEPEST_BEAM = 5.0
 _PARTS = 4  # of each layer
 _SPLINE_NODES = 4  # the fewest that a cubic spline takes
 _THINNEST = 1e-9  # layer, as a share of all, that still parts two nodes
@@ -27,14 +26,18 @@ def path_weights(scattering: Array, extinction: Array, cosine: Array) -> Array:
     ``cosine`` of the zenith angle of sight, not 0, shape (direction,). A source is radiance per unit of its species'
     scattering optical depth. Shape (species, wavelength, direction, boundary seen from, boundary of the source).
     """
-    fine = [np.repeat(depth, _PARTS, axis=-2) / _PARTS for depth in (scattering, extinction)]
-    weights = _linear_weights(*fine, cosine)
-    result = np.zeros((*weights.shape[:4], len(extinction) + 1))
+    slant = 1 / np.abs(cosine)[:, None]
+    thickness = extinction.T[:, None] * slant
+    arriving = _arriving(thickness, cosine)
+    boundaries = arriving.shape[2]
+    weights = np.zeros((len(scattering), *arriving.shape[:3], boundaries))
     for species, depth in enumerate(scattering):
         top = top_boundary(depth)
-        used = weights[species, ..., : top * _PARTS + 1]
-        result[species, ..., : top + 1] = used @ _between(extinction[:top])[:, None]
-    return result
+        at_near_end = _layer_weights(depth[:top].T[:, None] * slant, thickness[..., :top], cosine > 0)
+        source = _between(extinction[:top])
+        sent = at_near_end.transpose(0, 2, 1, 3) @ source
+        weights[species, ..., : top + 1] = arriving[..., :top] @ sent.transpose(0, 2, 1, 3)
+    return weights
 
 
 def top_boundary(depth: Array) -> int:
@@ -71,30 +74,31 @@ def from_ground(extinction: Array, cosine: Array) -> Array:
     return np.exp(-depth[:, None] / np.abs(cosine)[:, None]) * (cosine < 0)[:, None]
 
 
-def _linear_weights(scattering: Array, extinction: Array, cosine: Array) -> Array:
-    """Path weights of sources linear in optical depth within each layer, seen from every boundary of the parts."""
-    slant = 1 / np.abs(cosine)[:, None]
-    thickness = extinction.T[:, None] * slant
-    near, far = _segment_weights(np.moveaxis(scattering, -1, 1)[:, :, None] * slant, thickness)
-    up = (cosine > 0)[:, None]
-    arriving = _arriving(thickness, cosine)[..., ::_PARTS, :]
-    weights = np.zeros((*near.shape[:3], *arriving.shape[2:]))
-    weights = np.concatenate([weights, weights[..., :1]], axis=-1)
-    weights[..., :-1] += arriving * np.where(up, near, far)[..., None, :]
-    weights[..., 1:] += arriving * np.where(up, far, near)[..., None, :]
-    return weights
+def _layer_weights(scattering: Array, thickness: Array, up: NDArray[np.bool_]) -> Array:
+    """Shares of the ends of a layer's parts, the lowest first, in the light it sends to its nearer end.
+
+    Slant depths (wavelength, direction, layer); shape (wavelength, direction, layer, end of part).
+    """
+    near, far = (share[..., None] * scattering[..., None] / _PARTS for share in _end_shares(thickness / _PARTS))
+    passed = np.exp(-thickness[..., None] * np.arange(_PARTS) / _PARTS)
+    shares = np.zeros((*thickness.shape, _PARTS + 1))
+    shares[..., :-1] += passed * near
+    shares[..., 1:] += passed * far
+    return np.where(up[:, None, None], shares, shares[..., ::-1])
 
 
 def _between(extinction: Array) -> Array:
-    """What values at boundaries count at the ends of the parts of layers, (wavelength, end of part, boundary)."""
-    layers = len(extinction)
-    place = np.arange(layers * _PARTS + 1) / _PARTS
+    """What sources at boundaries count at the ends of each layer's parts, (wavelength, layer, end, boundary)."""
+    layers, wavelengths = extinction.shape
+    place = np.arange(layers)[:, None] + np.arange(_PARTS + 1) / _PARTS
     if layers + 1 < _SPLINE_NODES:
-        hat = np.maximum(0, 1 - np.abs(place[:, None] - np.arange(layers + 1)))
-        return np.broadcast_to(hat, (extinction.shape[1], *hat.shape))
+        hat = np.maximum(0, 1 - np.abs(place[..., None] - np.arange(layers + 1)))
+        return np.broadcast_to(hat, (wavelengths, *hat.shape))
     step = np.maximum(extinction, _THINNEST * extinction.sum(axis=0) + np.finfo(float).tiny)
     depth = np.concatenate([np.zeros_like(step[:1]), np.cumsum(step, axis=0)])
-    return np.stack([spline_matrix(x, np.interp(place, np.arange(layers + 1), x)) for x in depth.T])
+    ends = depth[:-1, None] + step[:, None] * (np.arange(_PARTS + 1) / _PARTS)[:, None]
+    matrices = [spline_matrix(x, q.ravel()) for x, q in zip(depth.T, ends.transpose(2, 0, 1), strict=True)]
+    return np.stack(matrices).reshape(wavelengths, layers, _PARTS + 1, layers + 1)
 
 
 def _arriving(thickness: Array, cosine: Array) -> Array:
@@ -115,3 +119,12 @@ def _mean_decay(x: Array) -> Array:
     """Mean of exp(-x t) for t in 0 to 1."""
     small = np.abs(x) < 1e-6
     return np.where(small, 1 - x / 2, -np.expm1(-x) / np.where(small, 1.0, x))
+
+
+def _end_shares(x: Array) -> tuple[Array, Array]:
+    """Means of (1 - t) exp(-x t) and of t exp(-x t) for t in 0 to 1."""
+    small = x < 1e-2
+    series = 1 / 2 - x * (1 / 3 - x * (1 / 8 - x / 30))
+    both = _mean_decay(x)
+    far = np.where(small, series, (both - np.exp(-x)) / np.where(small, 1.0, x))
+    return both - far, far

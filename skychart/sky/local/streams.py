@@ -19,6 +19,7 @@ Array = NDArray[np.float64]
 
 PER_HEMISPHERE = 12
 MODES = 16
+MOMENTS = 16  # solved for; the last scattering, by the full phase function, takes as many as there are streams
 
 
 @dataclass(frozen=True, eq=False)

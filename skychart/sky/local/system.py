@@ -28,7 +28,11 @@ class System:
         self.streams, self.hazy = streams, hazy
         self.coefficients = molecular_coefficients(air.depolarisation)
         self.ground_radiance = air.ground_albedo / np.pi
-        self.weights = path_weights(optics.scattering, optics.extinction, cosine)
+        molecules, haze = path_weights(optics.scattering, optics.extinction, cosine)
+        self.molecules, self.haze = molecules, np.ascontiguousarray(haze[..., hazy])
+        self.molecules_at_haze, self.haze_at_haze = (
+            np.ascontiguousarray(weights[:, :, hazy]) for weights in (self.molecules, self.haze)
+        )
         self.averages = beam_averages(optics.scattering, optics.extinction, cosine, optics.beam)
         self.from_ground = from_ground(optics.extinction, cosine)
         count = len(optics.moments)
@@ -43,9 +47,9 @@ class System:
         boundary, sun), and the irradiance of the ground, (wavelength, 0 or 1, sun).
         """
         matrix, (tensors, moments, _) = self._matrix(mode)
-        state = np.linalg.solve(np.eye(matrix.shape[1]) - matrix, self._first(mode))
+        state = np.asarray(np.linalg.solve(np.eye(matrix.shape[1]) - matrix, self._first(mode)), dtype=float)
         wavelengths, _, suns = state.shape
-        boundaries, hazy = self.weights.shape[3], self.hazy.stop - self.hazy.start
+        boundaries, hazy = self.haze.shape[2:]
         return (
             state[:, :tensors].reshape(wavelengths, tensors // boundaries, boundaries, suns),
             state[:, tensors : tensors + moments].reshape(wavelengths, moments // hazy, hazy, suns),
@@ -54,25 +58,23 @@ class System:
 
     def _matrix(self, mode: int) -> tuple[Array, tuple[int, int, int]]:
         """The operator and how many unknowns there are of each kind."""
-        weight = self.streams.weight
-        molecules, haze = self.weights[MOLECULES], self.weights[HAZE][..., self.hazy]
         polynomials, to_moments, share = self._polynomials(mode)
         to_tensor, from_tensor, coherent = self._molecular(mode)
-        haze_share = np.repeat(share, haze.shape[3], axis=1)[:, None]
+        haze_share = np.repeat(share, self.haze.shape[3], axis=1)[:, None]
         blocks = [
-            [_block(coherent, molecules), _block(_pairs(to_tensor, polynomials), haze) * haze_share],
+            [_block(coherent, self.molecules), _block(_pairs(to_tensor, polynomials), self.haze) * haze_share],
             [
-                _block(_pairs(to_moments, from_tensor), molecules[:, :, self.hazy]),
-                _block(_pairs(to_moments, polynomials), haze[:, :, self.hazy]) * haze_share,
+                _block(_pairs(to_moments, from_tensor), self.molecules_at_haze),
+                _block(_pairs(to_moments, polynomials), self.haze_at_haze) * haze_share,
             ],
         ]
         if mode == 0:
-            falling = 2 * np.pi * (weight * np.maximum(self.streams.cosine, 0))[:, None]
+            falling = self._falling()
             lit = self.from_ground * self.ground_radiance[:, None, None]
             columns = [_summed(to_tensor, lit[..., None]), _summed(to_moments, lit[:, :, self.hazy, None])]
             ground = [
-                _block(_pairs(falling, from_tensor), molecules[:, :, :1]),
-                _block(_pairs(falling, polynomials), haze[:, :, :1]) * haze_share,
+                _block(_pairs(falling, from_tensor), self.molecules[:, :, :1]),
+                _block(_pairs(falling, polynomials), self.haze[:, :, :1]) * haze_share,
             ]
             blocks = [[*row, column] for row, column in zip(blocks, columns, strict=True)]
             blocks.append([*ground, np.zeros((len(lit), 1, 1))])
@@ -83,20 +85,21 @@ class System:
         """Tensor, moments and ground's irradiance by light scattered once (the ground: and by the beam)."""
         polynomials, to_moments, share = self._polynomials(mode)
         to_tensor, from_tensor, coherent = self._molecular(mode)
-        beam = tensor.of_beam(self.cos_sun)[tensor.ENTRIES_OF_MODE[mode]] if mode < 3 else np.zeros((0, 1))
+        beam = tensor.of_beam(self.cos_sun)[tensor.entries_of(mode)]
         of_sun = self.legendre_of_sun[mode, :, mode:] * (1 if mode == 0 else 2) / (2 * np.pi)
         molecules, haze = self.averages
         from_haze = ((polynomials * share[:, None]) @ of_sun.T)[:, :, None] * haze
         light = (from_tensor @ beam)[:, :, None] * molecules + from_haze
-        rows = [_summed(to_moments, light[:, :, self.hazy])]
-        if len(beam):
-            scattered = (coherent @ beam)[:, :, :, None] * molecules[:, :, None]
-            by_molecules = scattered.sum(axis=1).reshape(len(light), -1, light.shape[3])
-            rows.insert(0, by_molecules + _summed(to_tensor, from_haze))
+        by_molecules = np.einsum("wsin,wskn->wikn", coherent @ beam, molecules)
+        by_haze = _summed(to_tensor, from_haze)
+        rows = [by_molecules.reshape(by_haze.shape) + by_haze, _summed(to_moments, light[:, :, self.hazy])]
         if mode == 0:
-            falling = 2 * np.pi * (self.streams.weight * np.maximum(self.streams.cosine, 0))[:, None]
-            rows.append(self.direct[:, None] + _summed(falling, light[:, :, :1]))
+            rows.append(self.direct[:, None] + _summed(self._falling(), light[:, :, :1]))
         return np.concatenate(rows, axis=1)
+
+    def _falling(self) -> Array:
+        """What mode 0 of the radiance at the ground gives to its irradiance, (stream, 1)."""
+        return 2 * np.pi * (self.streams.weight * np.maximum(self.streams.cosine, 0))[:, None]
 
     def _polynomials(self, mode: int) -> tuple[Array, Array, Array]:
         """Y_lm of the mode (stream, moment), the same under the streams' weights, and (2 l + 1) chi_l / 2."""
@@ -106,9 +109,9 @@ class System:
     def _molecular(self, mode: int) -> tuple[Array, Array, Array]:
         """Tensor by unpolarised light, light by tensor, tensor by tensor; under the streams' weights where summed."""
         weight, cosine = self.streams.weight[:, None], self.streams.cosine
-        if mode >= len(tensor.ENTRIES_OF_MODE):
-            empty = np.zeros((len(cosine), 0))
-            return empty, np.zeros((len(self.share), len(cosine), 0)), np.zeros((len(cosine), 0, 0))
+        if mode >= tensor.MODES:
+            streams, wavelengths = len(cosine), len(self.share)
+            return np.zeros((streams, 0)), np.zeros((wavelengths, streams, 0)), np.zeros((wavelengths, streams, 0, 0))
         return (
             tensor.unpolarised(mode, cosine) * weight,
             tensor.emitted(mode, cosine, *self.coefficients),
@@ -130,9 +133,7 @@ def _block(factors: Array, weights: Array) -> Array:
     outs, ins = factors.shape[-2:]
     flat = np.moveaxis(factors, -3, -1).reshape(*factors.shape[:-3], outs * ins, streams)
     sums = flat @ weights.reshape(count, streams, here * there)
-    return (
-        sums.reshape(count, outs, ins, here, there).transpose(0, 1, 3, 2, 4).reshape(count, outs * here, ins * there)
-    )
+    return sums.reshape(count, outs, ins, here, there).transpose(0, 1, 3, 2, 4).reshape(count, outs * here, ins * there)
 
 
 def _summed(factors: Array, light: Array) -> Array:
@@ -141,4 +142,4 @@ def _summed(factors: Array, light: Array) -> Array:
     Shape (wavelength, out x boundary, sun).
     """
     count, streams, boundaries, suns = light.shape
-    return (factors.T @ light.reshape(count, streams, -1)).reshape(count, -1, suns)
+    return (factors.T @ light.reshape(count, streams, -1)).reshape(count, factors.shape[1] * boundaries, suns)

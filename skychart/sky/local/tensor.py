@@ -11,13 +11,13 @@ from numpy.typing import NDArray
 
 Array = NDArray[np.float64]
 
-ENTRIES = 4  # zz, (xx + yy)/2, xz, (xx - yy)/2
-ENTRIES_OF_MODE = (slice(0, 2), slice(2, 3), slice(3, 4))  # those of azimuth modes 0, 1, 2
+MODES = 3
+_ENTRIES = (slice(0, 2), slice(2, 3), slice(3, 4), slice(4, 4))  # of azimuth modes 0, 1, 2 and all higher ones
 
 
-def entries_in(mode: int) -> int:
-    """How many entries of the tensor belong to an azimuth mode."""
-    return len(range(ENTRIES)[ENTRIES_OF_MODE[mode]]) if mode < len(ENTRIES_OF_MODE) else 0
+def entries_of(mode: int) -> slice:
+    """Which of zz, (xx + yy)/2, xz, (xx - yy)/2 belong to an azimuth mode."""
+    return _ENTRIES[min(mode, MODES)]
 
 
 def gathered(mode: int, cosine: Array, a: Array, b: Array) -> Array:
