@@ -8,6 +8,7 @@ from typing import Any
 
 import numpy as np
 
+from skychart.charts.checks import check_row
 from skychart.charts.columns import SPACE_TITLES
 from skychart.charts.numbers import fixed, significant
 from skychart.charts.reading import Reading
@@ -74,11 +75,15 @@ def checks_text(checks: Sequence[Check]) -> str:
 
 
 def _check_cells(check: Check) -> tuple[str, ...]:
-    unit = "" if check.unit == "1" else f" {check.unit}"
-    accepted = f"{100 * check.tolerance:.3g} %" if check.relative else f"{check.tolerance:.3g}{unit}"
-    difference = f"{100 * check.difference:+.2f} %" if check.relative else f"{check.difference:+.2g}{unit}"
+    row = check_row(check, _plain)
+    unit = f" {row.unit}" if row.unit else ""
+    shift = "" if check.relative else unit
     verdict = "met" if check.passed else "MISSED"
-    return verdict, f"{check.published:.6g}{unit}", f"{check.computed:.6g}{unit}", difference, f"±{accepted}"
+    return verdict, row.published + unit, row.computed + unit, row.difference + shift, f"±{row.tolerance}{shift}"
+
+
+def _plain(number: str) -> str:
+    return number or NONE
 
 
 def _aligned(cells: Sequence[str], widths: Sequence[int]) -> str:

@@ -1,6 +1,6 @@
 """Methods page: published values beside computed ones, light through the day beside measurements, and sources."""
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -112,29 +112,35 @@ def methods(checks: Sequence[Check], survey: Survey) -> Methods:
     )
 
 
-def _topics(checks: Sequence[Check]) -> tuple[Topic, ...]:
-    """Topics in the order of their first check."""
-    titles = list(dict.fromkeys(check.topic for check in checks))
-    return tuple(
-        Topic(title, f"topic-{number}", tuple(_row(check) for check in own), sum(check.passed for check in own))
-        for number, title in enumerate(titles, start=1)
-        for own in [[check for check in checks if check.topic == title]]
-    )
+def check_row(check: Check, written: Callable[[str], str] = spaced) -> CheckRow:
+    """One check with the digits its tolerance deserves; `written` turns a plain number into what is read.
 
-
-def _row(check: Check) -> CheckRow:
+    A number that is nan comes to `written` as an empty text.
+    """
     decimals = _decimals(check)
+    difference = _in_percent(check, check.difference) or _value(check.difference, decimals)
+    sign = "" if difference.startswith("-") or not difference else "+"
     return CheckRow(
         quantity=check.quantity,
         conditions=check.conditions,
         source=check.source,
-        published=spaced(_value(check.published, decimals)),
-        computed=spaced(_value(check.computed, decimals)),
-        difference=_signed(_in_percent(check, check.difference) or _value(check.difference, decimals)),
-        tolerance=spaced(_in_percent(check, check.tolerance) or _value(check.tolerance, decimals)),
+        published=written(_value(check.published, decimals)),
+        computed=written(_value(check.computed, decimals)),
+        difference=sign + written(difference),
+        tolerance=written(_in_percent(check, check.tolerance) or _value(check.tolerance, decimals)),
         reason=check.tolerance_reason,
         unit="" if check.unit == "1" else check.unit,
         verdict="met" if check.passed else "missed",
+    )
+
+
+def _topics(checks: Sequence[Check]) -> tuple[Topic, ...]:
+    """Topics in the order of their first check."""
+    titles = list(dict.fromkeys(check.topic for check in checks))
+    return tuple(
+        Topic(title, f"topic-{number}", tuple(check_row(check) for check in own), sum(check.passed for check in own))
+        for number, title in enumerate(titles, start=1)
+        for own in [[check for check in checks if check.topic == title]]
     )
 
 
@@ -160,10 +166,6 @@ def _in_percent(check: Check, share: float) -> str:
     if not check.relative or np.isnan(share):
         return ""
     return f"{fixed(100 * share, _decimals_of(100 * check.tolerance))} %"
-
-
-def _signed(text: str) -> str:
-    return spaced(text) if text.startswith("-") or not text else f"+{spaced(text)}"
 
 
 def _course(survey: Survey) -> LightCourse:
