@@ -12,9 +12,10 @@ from skychart.sky.interpolation import spline_matrix
 
 Array = NDArray[np.float64]
 
+PARTS = 4  # of each layer
+
 # A layer whose foot gets less than exp(-5) of the beam at its top holds the edge of the planet's shadow.
 _STEEPEST_BEAM = 5.0
-_PARTS = 4  # of each layer
 _SPLINE_NODES = 4  # the fewest that a cubic spline takes
 _THINNEST = 1e-9  # layer, as a share of all, that still parts two nodes
 
@@ -79,9 +80,9 @@ def _layer_weights(scattering: Array, thickness: Array, up: NDArray[np.bool_]) -
 
     Slant depths (wavelength, direction, layer); shape (wavelength, direction, layer, end of part).
     """
-    near, far = (share[..., None] * scattering[..., None] / _PARTS for share in _end_shares(thickness / _PARTS))
-    passed = np.exp(-thickness[..., None] * np.arange(_PARTS) / _PARTS)
-    shares = np.zeros((*thickness.shape, _PARTS + 1))
+    near, far = (share[..., None] * scattering[..., None] / PARTS for share in _end_shares(thickness / PARTS))
+    passed = np.exp(-thickness[..., None] * np.arange(PARTS) / PARTS)
+    shares = np.zeros((*thickness.shape, PARTS + 1))
     shares[..., :-1] += passed * near
     shares[..., 1:] += passed * far
     return np.where(up[:, None, None], shares, shares[..., ::-1])
@@ -90,15 +91,15 @@ def _layer_weights(scattering: Array, thickness: Array, up: NDArray[np.bool_]) -
 def _between(extinction: Array) -> Array:
     """What sources at boundaries count at the ends of each layer's parts, (wavelength, layer, end, boundary)."""
     layers, wavelengths = extinction.shape
-    place = np.arange(layers)[:, None] + np.arange(_PARTS + 1) / _PARTS
+    place = np.arange(layers)[:, None] + np.arange(PARTS + 1) / PARTS
     if layers + 1 < _SPLINE_NODES:
         hat = np.maximum(0, 1 - np.abs(place[..., None] - np.arange(layers + 1)))
         return np.broadcast_to(hat, (wavelengths, *hat.shape))
     step = np.maximum(extinction, _THINNEST * extinction.sum(axis=0) + np.finfo(float).tiny)
     depth = np.concatenate([np.zeros_like(step[:1]), np.cumsum(step, axis=0)])
-    ends = depth[:-1, None] + step[:, None] * (np.arange(_PARTS + 1) / _PARTS)[:, None]
+    ends = depth[:-1, None] + step[:, None] * (np.arange(PARTS + 1) / PARTS)[:, None]
     matrices = [spline_matrix(x, q.ravel()) for x, q in zip(depth.T, ends.transpose(2, 0, 1), strict=True)]
-    return np.stack(matrices).reshape(wavelengths, layers, _PARTS + 1, layers + 1)
+    return np.stack(matrices).reshape(wavelengths, layers, PARTS + 1, layers + 1)
 
 
 def _arriving(thickness: Array, cosine: Array) -> Array:
