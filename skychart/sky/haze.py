@@ -68,6 +68,15 @@ class Haze:
         """Mean cosine of the scattering angle, (wavelength,)."""
         return self.moments(2)[1]
 
+    @property
+    def peak(self) -> Array:
+        """Part of the scattered light that a solution with two moments takes for unscattered, (wavelength,).
+
+        The square of the asymmetry: Joseph, Wiscombe & Weinman 1976, The delta-Eddington approximation,
+        doi:10.1175/1520-0469(1976)033<2452:TDEAFR>2.0.CO;2.
+        """
+        return self.asymmetry**2
+
     def moments(self, count: int) -> Array:
         """Legendre moments: mean of P x P_l over the sphere, (count, wavelength): 1, the asymmetry, and so on."""
         angle, weight = _fine_angles(self.scattering_angle_deg)

@@ -7,7 +7,6 @@ wrong in flat air too, where the full solution F is known at the same place, sun
 Q and U are those of the molecules in G, in the same proportion; haze light counts as unpolarised.
 """
 
-from collections.abc import Callable
 from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass, replace
 
@@ -17,19 +16,20 @@ from numpy.typing import NDArray
 from skychart.sky import dipole
 from skychart.sky.atmosphere import Atmosphere
 from skychart.sky.beam import THREADS, SunTable, transmission
+from skychart.sky.field import Field
 from skychart.sky.grid import Grid, solar_zenith_nodes_deg
 from skychart.sky.haze import Haze
 from skychart.sky.interpolation import spline_matrix
-from skychart.sky.local import FlatAir, FlatLight, one_scattering, peak_fraction, solve_closure, solve_flat
+from skychart.sky.local import FlatAir, FlatField, one_scattering, solve_closure, solve_flat
 from skychart.sky.local.streams import MOMENTS, legendre
-from skychart.sky.molecular import Field, solve_field
+from skychart.sky.molecular import solve_field
 from skychart.sky.observer import Lines, Station
-from skychart.sky.shape import Shape
+from skychart.sky.shape import Shape, insert_between
 from skychart.sky.shells import Shells, level_altitudes, redistribute, subdivide
 
 Array = NDArray[np.float64]
 
-_GRID = Grid(levels=24, zenith=5, azimuth=5, substeps=5)
+_GRID = Grid()
 _DIRECTIONS = Grid(zenith=8, azimuth=8)  # in which the closure's radiance is known where it is scattered once more
 _MODES = 8
 _HAZE_LEFT = 1e-3  # of the haze may lie above the levels whose haze scatters once more
@@ -55,6 +55,12 @@ class Scattered:
         """How many levels hold haze."""
         return len(self.harmonics)
 
+    def with_level(self, upper: int, part: float) -> "Scattered":
+        """The same with a level inserted before ``upper``, that ``part`` of the way to it; none above the haze."""
+        if upper >= self.levels:
+            return self
+        return Scattered(insert_between(self.harmonics, upper, part), self.shape.with_level(upper, part))
+
     def along(self, cosine: Array, level: NDArray[np.intp], cos_chi: Array, cos_azimuth: Array) -> Array:
         """Source [1/sr], (line, crossing, wavelength), at crossings with zenith cosines ``cosine`` and ``level``.
 
@@ -73,65 +79,69 @@ class Scattered:
 
 
 @dataclass(frozen=True, eq=False)
-class HazyField:
+class HazyLight:
     """The solved light of a hazy sky: ``field`` is the closure's, ``full`` and ``closed`` flat air's by view cosine."""
 
     air: Atmosphere
     scatterers: dipole.Scatterers
     field: Field
     scattered: Scattered
-    full: Callable[[Array], FlatLight]
-    closed: Callable[[Array], FlatLight]
+    flat_altitude_km: Array
+    full: FlatField
+    closed: FlatField
 
     def multiple(self, station: Station, lines: Lines) -> Array:
         """I, Q, U of light scattered more than once seen from ``station``, (line, 3, wavelength) [1/sr]."""
-        return self.one_scattering(station, lines) * self.correction(lines)[:, None]
+        altitude = float(station.shells.altitude_km[station.start])
+        return self.one_scattering(station, lines) * self.correction(lines, altitude)[:, None]
 
     def one_scattering(self, station: Station, lines: Lines) -> Array:
         """G on the sphere: I, Q, U (line, 3, wavelength)."""
-        haze = _haze(self.air)
-        shells = station.shells
-        scaled = SunTable.of(Shells.of(self.air, shells.altitude_km, peak_fraction(haze)))
-        beyond = SunTable(shells, scaled.values - station.table.values, scaled.edge)
-        remainder = Station(shells, beyond, station.start)
-        molecules = dipole.Scatterers(self.scatterers.a, self.scatterers.b)
-        light = remainder.single(lines, molecules, haze.phase_at)
+        if station.beyond is None:
+            raise TypeError("a station in air without haze")
+        remainder = Station(station.shells, station.beyond, station.start)
+        molecules = self.scatterers._replace(forward=None)
+        light = remainder.single(lines, molecules, _haze(self.air).phase_at)
         return light + station.multiple(self.field, lines, molecules, self.air.ground_albedo, self.scattered)
 
-    def correction(self, lines: Lines) -> Array:
-        """F / G of flat air for the same sun and direction, (line, wavelength)."""
+    def correction(self, lines: Lines, altitude_km: float = 0.0) -> Array:
+        """F / G of flat air for the same sun and direction, (line, wavelength), at the boundary nearest the altitude."""
+        boundary = int(np.argmin(np.abs(self.flat_altitude_km - altitude_km)))
         node = _flat_suns()
-        view, which = np.unique(np.maximum(lines.view_cosine, _LOWEST_VIEW), return_inverse=True)
+        down = np.where(lines.view_cosine < 0, -1.0, 1.0)
+        view, which = np.unique(down * np.maximum(np.abs(lines.view_cosine), _LOWEST_VIEW), return_inverse=True)
         pairs = np.stack([which, np.round(np.cos(lines.relative_azimuth), 12)], axis=1)
         distinct, pair = np.unique(pairs, axis=0, return_inverse=True)
         sun, number, azimuth = np.arange(len(node)), distinct[:, 0].astype(int), np.arccos(distinct[:, 1])
         full, closed = (
-            light(view).stokes(sun[:, None], number, azimuth)[..., 0, :] for light in (self.full, self.closed)
+            one_scattering(light, view, boundary).stokes(sun[:, None], number, azimuth)[..., 0, :]
+            for light in (self.full, self.closed)
         )
         between = spline_matrix(node, np.minimum(lines.solar_zenith, node[-1]))
         ratio = full / closed
         return np.einsum("ls,slw->lw", between, ratio[:, pair.ravel()])
 
 
-def solve_hazy(air: Atmosphere, typical: int) -> HazyField:
+def solve_hazy(air: Atmosphere, typical: int) -> HazyLight:
     """Solve the light of air with haze. ``typical``: index of the wavelength whose first order gives the shapes."""
     haze = _haze(air)
-    fraction = peak_fraction(haze)
     altitude = subdivide(level_altitudes(float(air.level_altitude_km[-1]), _GRID.levels), _GRID.substeps)
-    shells = Shells.of(air, altitude, fraction)
+    shells = Shells.of(air, altitude, haze.peak)
     table = SunTable.of(shells)
     forward = 3 * haze.asymmetry / (1 + haze.asymmetry)
     scatterers = dipole.Scatterers(*dipole.molecular_coefficients(air.depolarisation), forward)
     field = solve_field(shells, table, _GRID, scatterers, air.ground_albedo, typical)
-    flat = _flat_air(air, fraction)
-    full, closed = solve_flat(flat), solve_closure(flat)
-    return HazyField(
+    top = float(air.level_altitude_km[-1])
+    boundaries = np.append(_FLAT_KM[top > _FLAT_KM], top)
+    flat = _flat_air(air, boundaries)
+    return HazyLight(
         air=air,
         scatterers=scatterers,
         field=field,
         scattered=_scattered(haze, shells, table, field, scatterers, air.ground_albedo),
-        full=lambda view: one_scattering(full, view),
-        closed=lambda view: one_scattering(closed, view),
+        flat_altitude_km=boundaries,
+        full=solve_flat(flat),
+        closed=solve_closure(flat),
     )
 
 
@@ -147,15 +157,14 @@ def _haze(air: Atmosphere) -> Haze:
     return air.haze
 
 
-def _flat_air(air: Atmosphere, fraction: Array) -> FlatAir:
+def _flat_air(air: Atmosphere, boundaries: Array) -> FlatAir:
     """The same air in flat layers, thinnest at the ground, under the sphere's own beam at every solver's sun."""
-    top = float(air.level_altitude_km[-1])
-    boundaries = np.append(_FLAT_KM[top > _FLAT_KM], top)
+    top = float(boundaries[-1])
     altitude = np.union1d(boundaries, subdivide(level_altitudes(top, _GRID.levels), _GRID.substeps))
     cosine = np.cos(_flat_suns())
     places = np.searchsorted(altitude, boundaries)
     beams = []
-    for unscattered in (np.zeros_like(fraction), fraction):
+    for unscattered in (0.0, _haze(air).peak):
         shells = Shells.of(air, altitude, unscattered)
         beams.append(np.stack([transmission(shells, place, cosine) for place in places]))
     rayleigh, absorption, haze = (
@@ -178,7 +187,7 @@ def _scattered(
     haze: Haze, shells: Shells, table: SunTable, field: Field, scatterers: dipole.Scatterers, albedo: Array
 ) -> Scattered:
     """Radiance of the closure in all directions from the lower levels, as harmonics times the full phase function's."""
-    above = haze_above(shells)
+    above = _haze_above(shells)
     levels = [level for level in range(_GRID.levels) if above[level * _GRID.substeps] > _HAZE_LEFT]
     node = np.radians(solar_zenith_nodes_deg())
     moments = haze.moments(MOMENTS)
@@ -212,7 +221,7 @@ def _scattered(
     return Scattered(np.einsum("fn,lncmw->lfcmw", refine, found, optimize=True).astype(np.float32), shape)
 
 
-def haze_above(shells: Shells) -> Array:
+def _haze_above(shells: Shells) -> Array:
     """Share of the haze above each boundary, (boundary,)."""
     depth = shells.scattering_depth[1].sum(axis=1)
     above = np.append(np.cumsum(depth[::-1])[::-1], 0.0)

@@ -15,8 +15,10 @@ from numpy.typing import NDArray
 from skychart.sky import dipole
 from skychart.sky.beam import THREADS, SunTable
 from skychart.sky.fan import Fan, first_order
+from skychart.sky.field import Field
 from skychart.sky.grid import Grid, solar_zenith_nodes_deg
 from skychart.sky.interpolation import spline_matrix
+from skychart.sky.observer import Lines, Station
 from skychart.sky.operator import Operator
 from skychart.sky.shape import Shape
 from skychart.sky.shells import Shells
@@ -25,19 +27,16 @@ Array = NDArray[np.float64]
 
 
 @dataclass(frozen=True, eq=False)
-class Field:
-    """The solved field: ``tensor`` (level, node, entry, wavelength), ``ground`` (node, wavelength), over their shapes.
+class MolecularLight:
+    """The solved light of a sky without haze."""
 
-    Nodes are whole degrees here: once solved, field over shape is smooth in solar zenith angle, and a cubic spline
-    through the solver's nodes makes it finer for observers.
-    ``ground`` is downward irradiance at the ground, direct light included. All per unit solar irradiance.
-    """
+    field: Field
+    scatterers: dipole.Scatterers
+    albedo: Array
 
-    level_altitude_km: Array
-    tensor_shape: Shape
-    ground_shape: Shape
-    tensor: NDArray[np.float32]
-    ground: NDArray[np.float32]
+    def multiple(self, station: Station, lines: Lines) -> Array:
+        """I, Q, U of light scattered more than once seen from ``station``, (line, 3, wavelength) [1/sr]."""
+        return station.multiple(self.field, lines, self.scatterers, self.albedo)
 
 
 def solve_field(

@@ -11,10 +11,11 @@ import numpy as np
 from numpy.typing import NDArray
 
 from skychart.sky import dipole
+from skychart.sky.atmosphere import Atmosphere
 from skychart.sky.beam import SunTable
-from skychart.sky.molecular import Field
+from skychart.sky.field import Field
 from skychart.sky.rays import Crossings, crossings
-from skychart.sky.shape import Shape
+from skychart.sky.shape import Shape, insert_between
 from skychart.sky.shells import Shells, tangent_altitude
 
 Array = NDArray[np.float64]
@@ -28,6 +29,9 @@ class HazeSource(Protocol):
     @property
     def levels(self) -> int:
         """How many levels hold haze."""
+
+    def with_level(self, upper: int, part: float) -> "HazeSource":
+        """The same with a level inserted before ``upper``, that ``part`` of the way to it."""
 
     def along(self, cosine: Array, level: NDArray[np.intp], cos_chi: Array, cos_azimuth: Array) -> Array:
         """Source [1/sr], (line, crossing, wavelength); ``cosine``, ``level`` (crossing,), the rest (line, crossing)."""
@@ -47,11 +51,27 @@ class Lines:
 
 @dataclass(frozen=True, eq=False)
 class Station:
-    """An observer's place: the layers with its altitude among the boundaries, and the sun's table on them."""
+    """An observer's place: the layers with its altitude among the boundaries, and the sun's table on them.
+
+    ``beyond``: in hazy air, the light that reaches each boundary beside the beam when the peak of the haze's phase
+    function counts as unscattered.
+    """
 
     shells: Shells
     table: SunTable
     start: int
+    beyond: SunTable | None = None
+
+    @classmethod
+    def of(cls, air: Atmosphere, altitude_km: Array, observer_km: float = 0.0) -> "Station":
+        """An observer at ``observer_km``, one of the layer boundaries ``altitude_km`` [km], shape (boundary,)."""
+        shells = Shells.of(air, altitude_km)
+        table = SunTable.of(shells)
+        start = int(np.searchsorted(altitude_km, observer_km))
+        if air.haze is None:
+            return cls(shells, table, start)
+        scaled = SunTable.of(Shells.of(air, altitude_km, air.haze.peak))
+        return cls(shells, table, start, SunTable(shells, scaled.values - table.values, table.edge))
 
     def single(self, lines: Lines, scatterers: dipole.Scatterers, phase: Phase | None) -> NDArray[np.float64]:
         """I, Q, U of light scattered once, shape (line, 3, wavelength) [1/sr].
@@ -90,7 +110,10 @@ class Station:
         Haze sends what ``scatterers`` say, or what ``haze_source`` does.
         """
         a, b, forward = scatterers
-        field = _with_level(field, self.shells.altitude_km[self.start])
+        place = _between_levels(field.level_altitude_km, float(self.shells.altitude_km[self.start]))
+        if place is not None:
+            field = _with_level(field, *place)
+            haze_source = haze_source and haze_source.with_level(*place)
         levels = np.searchsorted(self.shells.altitude_km, field.level_altitude_km)
         result = np.zeros((len(lines.view_cosine), 3, len(a)))
         for fan, ray, chosen in self._blocks(lines, levels):
@@ -228,23 +251,20 @@ def _interpolated(
     return low * rows[row] + high * rows[row + 1]
 
 
-def _with_level(field: Field, altitude_km: float) -> Field:
-    """The field with a level at ``altitude_km``, linear in altitude between its neighbours."""
-    levels = field.level_altitude_km
+def _between_levels(levels: Array, altitude_km: float) -> tuple[int, float] | None:
+    """The level above ``altitude_km`` and the part of the way to it from the one below; None at a level."""
     if altitude_km in levels:
-        return field
+        return None
     upper = int(np.searchsorted(levels, altitude_km))
-    part = (altitude_km - levels[upper - 1]) / (levels[upper] - levels[upper - 1])
+    return upper, float((altitude_km - levels[upper - 1]) / (levels[upper] - levels[upper - 1]))
 
-    def insert(values: NDArray) -> NDArray:
-        between = values[upper - 1] + np.asarray(part, values.dtype) * (values[upper] - values[upper - 1])
-        return np.insert(values, upper, between, axis=0)
 
-    shape = field.tensor_shape
+def _with_level(field: Field, upper: int, part: float) -> Field:
+    """The field with a level inserted before ``upper``, linear in altitude between its neighbours."""
     return Field(
-        level_altitude_km=insert(levels),
-        tensor_shape=Shape(shape.node_deg, insert(shape.at_node), insert(shape.fine)),
+        level_altitude_km=insert_between(field.level_altitude_km, upper, part),
+        tensor_shape=field.tensor_shape.with_level(upper, part),
         ground_shape=field.ground_shape,
-        tensor=insert(field.tensor),
+        tensor=insert_between(field.tensor, upper, part),
         ground=field.ground,
     )

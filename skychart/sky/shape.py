@@ -5,6 +5,7 @@ factor of ten every two degrees, and the shape (the first order's own fall) carr
 """
 
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -32,6 +33,10 @@ class Shape:
         query = np.arange(0, node_deg[-1] + _STEP_DEG, _STEP_DEG)
         return cls(node_deg, np.exp(log), np.exp(log @ spline_matrix(node_deg, query).T))
 
+    def with_level(self, upper: int, part: float) -> "Shape":
+        """The curves with one inserted before ``upper``, that ``part`` of the way to it from the one below."""
+        return Shape(self.node_deg, insert_between(self.at_node, upper, part), insert_between(self.fine, upper, part))
+
     def every_degree(self) -> "Shape":
         """The same curves, taken off at every whole degree."""
         steps = round(1 / _STEP_DEG)
@@ -55,3 +60,9 @@ class Shape:
         node = bracket[whole.astype(np.intp)]
         upper = here * (whole - self.node_deg[node]) / np.diff(self.node_deg)[node]
         return node, here - upper, upper
+
+
+def insert_between(values: NDArray[Any], upper: int, part: float) -> NDArray[Any]:
+    """``values`` (level, ...) with one inserted before ``upper``, that ``part`` of the way to it from the one below."""
+    between = values[upper - 1] + np.asarray(part, values.dtype) * (values[upper] - values[upper - 1])
+    return np.insert(values, upper, between, axis=0)

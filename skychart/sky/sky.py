@@ -1,8 +1,8 @@
 """The solved sky of one atmosphere, for every sun and direction."""
 
-import dataclasses
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, field, replace
+from typing import Protocol
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -10,11 +10,11 @@ from numpy.typing import ArrayLike, NDArray
 from skychart.errors import InputError
 from skychart.sky import beam, dipole
 from skychart.sky.atmosphere import Atmosphere
-from skychart.sky.beam import SunTable
 from skychart.sky.grid import Grid
-from skychart.sky.molecular import Field, solve_field
+from skychart.sky.hazy import solve_hazy
+from skychart.sky.molecular import MolecularLight, solve_field
 from skychart.sky.observer import Lines, Station
-from skychart.sky.shells import Shells, level_altitudes, subdivide
+from skychart.sky.shells import level_altitudes, subdivide
 
 Array = NDArray[np.float64]
 
@@ -24,13 +24,25 @@ _SHAPE_WAVELENGTH_NM = 500.0
 
 
 def solve(air: Atmosphere, grid: Grid = Grid()) -> "Sky":  # noqa: B008  Grid is frozen
-    """Solve every order of molecular scattering for each wavelength of ``air`` and all sun heights at once."""
+    """Solve every order of scattering for each wavelength of ``air`` and all sun heights at once.
+
+    ``grid`` is that of air without haze; hazy air has its own.
+    """
     air_top = float(air.level_altitude_km[-1])
-    shells = Shells.of(air, subdivide(level_altitudes(air_top, grid.levels), grid.substeps))
-    table = SunTable.of(shells)
+    station = Station.of(air, subdivide(level_altitudes(air_top, grid.levels), grid.substeps))
     typical = int(np.argmin(np.abs(air.wavelength_nm - _SHAPE_WAVELENGTH_NM)))
-    field = solve_field(shells, table, grid, _scatterers(air), air.ground_albedo, typical)
-    return Sky(air, grid, Station(shells, table, 0), field)
+    if air.haze is not None:
+        return Sky(air, station, solve_hazy(air, typical))
+    scatterers = _molecules(air)
+    solved = solve_field(station.shells, station.table, grid, scatterers, air.ground_albedo, typical)
+    return Sky(air, station, MolecularLight(solved, scatterers, air.ground_albedo))
+
+
+class Light(Protocol):
+    """What a solution knows."""
+
+    def multiple(self, station: Station, lines: Lines) -> Array:
+        """I, Q, U of light scattered more than once seen from ``station``, (line, 3, wavelength) [1/sr]."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -44,12 +56,9 @@ class Sky:
     """
 
     air: Atmosphere
-    grid: Grid
     ground: Station
-    field: Field
-    aloft: dict[float, Station] = dataclasses.field(
-        default_factory=dict, repr=False
-    )  # by altitude, made when asked for
+    light: Light
+    aloft: dict[float, Station] = field(default_factory=dict, repr=False)  # by altitude, made when asked for
 
     def stokes(
         self,
@@ -75,7 +84,9 @@ class Sky:
     ) -> Array:
         """The part of ``stokes`` scattered once from the beam."""
         shape, lines = _lines(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
-        stokes = self._station(altitude_km).single(lines, _scatterers(self.air), None)
+        stokes = self._station(altitude_km).single(
+            lines, _molecules(self.air), None if self.air.haze is None else self.air.haze.phase_at
+        )
         return stokes.reshape(*shape, *stokes.shape[1:])
 
     def multiple(
@@ -87,8 +98,7 @@ class Sky:
     ) -> Array:
         """The part of ``stokes`` scattered more than once or by the ground."""
         shape, lines = _lines(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
-        station = self._station(altitude_km)
-        stokes = station.multiple(self.field, lines, _scatterers(self.air), self.air.ground_albedo)
+        stokes = self.light.multiple(self._station(altitude_km), lines)
         return stokes.reshape(*shape, *stokes.shape[1:])
 
     def beam(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
@@ -119,15 +129,13 @@ class Sky:
         altitude = float(within("altitude", altitude_km, 0, HIGHEST_OBSERVER_KM, "km"))
         boundaries = self.ground.shells.altitude_km
         if altitude in boundaries:
-            return Station(self.ground.shells, self.ground.table, int(np.searchsorted(boundaries, altitude)))
+            return replace(self.ground, start=int(np.searchsorted(boundaries, altitude)))
         if altitude not in self.aloft:
-            shells = Shells.of(self.air, np.sort(np.append(boundaries, altitude)))
-            start = int(np.searchsorted(shells.altitude_km, altitude))
-            self.aloft[altitude] = Station(shells, SunTable.of(shells), start)
+            self.aloft[altitude] = Station.of(self.air, np.sort(np.append(boundaries, altitude)), altitude)
         return self.aloft[altitude]
 
 
-def _scatterers(air: Atmosphere) -> dipole.Scatterers:
+def _molecules(air: Atmosphere) -> dipole.Scatterers:
     return dipole.Scatterers(*dipole.molecular_coefficients(air.depolarisation))
 
 

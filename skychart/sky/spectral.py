@@ -14,10 +14,8 @@ from numpy.typing import ArrayLike, NDArray
 from skychart.config import AirSettings
 from skychart.sky import gases
 from skychart.sky.atmosphere import Atmosphere
-from skychart.sky.beam import SunTable
 from skychart.sky.interpolation import spline_matrix
 from skychart.sky.observer import Station
-from skychart.sky.shells import Shells
 from skychart.sky.sky import Sky, solve
 
 Array = NDArray[np.float64]
@@ -71,8 +69,8 @@ def solve_spectral(settings: AirSettings) -> SpectralSky:
     air = _air(settings, NODES_NM)
     ozone = gases.ozone_layers(air.level_altitude_km, settings.ozone_du)
     air = replace(air, absorption_depth=ozone[:, None] * _fitted_ozone())
-    shells = Shells.of(air, sky.ground.shells.altitude_km)
-    return SpectralSky(settings, sky, Sky(air, sky.grid, Station(shells, SunTable.of(shells), 0), sky.field))
+    station = Station.of(air, sky.ground.shells.altitude_km)
+    return SpectralSky(settings, sky, Sky(air, station, sky.light))
 
 
 def _to_nodes(light: Array) -> Array:
