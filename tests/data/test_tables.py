@@ -12,6 +12,9 @@ BY_WAVELENGTH = {
     "solar_tsis1_hsrs_v2_1nm": (300, 1100),
     "ozone_cross_section_serdyuchenko_1nm": (300, 830),
     "checks/ozone_cross_section_comparison_1nm": (300, 830),
+    "no2_cross_section_1nm": (300, 830),
+    "o4_cross_section_1nm": (300, 830),
+    "gas_h2o_o2_k4_1nm": (360, 830),
 }
 # TSIS-1 HSRS through a Gaussian slit of 3 nm, W m-2 nm-1, as kept in the public repository LIME-ESA/lime_tbx.
 SOLAR_3_NM = {450: 2.0878, 500: 1.9387, 550: 1.8985, 600: 1.7697, 650: 1.5755}
@@ -147,5 +150,5 @@ def test_a_table_cannot_be_changed_by_who_reads_it() -> None:
 @pytest.mark.parametrize("name", ["solar", "", "../errors", "checks", "us76_density_profile.csv"])
 def test_unknown_table_is_refused_with_the_known_ones(name: str) -> None:
     """The message names what was asked for and what there is."""
-    with pytest.raises(InputError, match=r"^unknown table '.*'; known: atmosphere_profiles_afgl, checks/"):
+    with pytest.raises(InputError, match=r"^unknown table '.*'; known: aerosol_bulk_opac_mie, .*, checks/"):
         load_table(name)
