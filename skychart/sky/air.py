@@ -16,6 +16,8 @@ from skychart.sky.wavelengths import checked_wavelength
 
 CO2_PPM = 360.0  # the mixture Bodhaine et al. (1999) tabulate; 420 ppm would add 0.007 % to the cross-section
 TOP_KM = 100
+STANDARD_PRESSURE_HPA = 1013.25  # at sea level, US Standard Atmosphere 1976
+PRESSURE_RANGE_HPA = (300.0, 1100.0)  # from the highest summit to more than has been measured at sea level
 WAVELENGTH_RANGE_NM = (250.0, 1100.0)  # well inside the fits of refractive index and King factor
 
 
@@ -49,12 +51,17 @@ def depolarisation_ratio(wavelength_nm: ArrayLike) -> np.ndarray:
     return np.asarray(6 * (king_factor - 1) / (3 + 7 * king_factor))
 
 
-def standard_air() -> tuple[np.ndarray, np.ndarray]:
+def standard_air(pressure_hpa: float = STANDARD_PRESSURE_HPA) -> tuple[np.ndarray, np.ndarray]:
     """Altitude [km], shape (101,), every kilometre from 0 to 100, and number density of air [m⁻³], same shape.
 
     US Standard Atmosphere 1976 up to 80 km. Above, the AFGL US standard profile times 1.0015, so that it goes on
     without a step; together 0.001 % of the column. Between the rows of either table the logarithm is linear.
+    `pressure_hpa`: air pressure at the ground, 300 to 1100 [hPa]; at all altitudes the density is the standard one
+    times this over 1013.25 hPa. Raises InputError outside the range.
     """
+    lowest, highest = PRESSURE_RANGE_HPA
+    if not lowest <= pressure_hpa <= highest:
+        raise InputError(f"air pressure is {pressure_hpa} hPa, accepted is {lowest:g} to {highest:g} hPa")
     altitude_km = np.arange(TOP_KM + 1.0)
     lower = load_table("us76_density_profile").columns
     log_lower = np.log(lower["number_density_cm3"])
@@ -68,7 +75,7 @@ def standard_air() -> tuple[np.ndarray, np.ndarray]:
         np.interp(altitude_km, lower["z_km"], log_lower),
         np.interp(altitude_km, upper["z_km"][rows], log_upper) + step,
     )
-    return altitude_km, np.exp(log_density) * 1e6
+    return altitude_km, np.exp(log_density) * 1e6 * (pressure_hpa / STANDARD_PRESSURE_HPA)
 
 
 def column_of_layers(altitude_km: ArrayLike, number_density: ArrayLike) -> np.ndarray:

@@ -103,6 +103,22 @@ def test_air_above_80_km_is_a_hundred_thousandth_of_the_column() -> None:
     assert layers[80:].sum() / layers.sum() == pytest.approx(1e-5, rel=0.05)
 
 
+def test_density_goes_with_the_pressure_at_the_ground() -> None:
+    """90 % of 1013.25 hPa leave 90 % of the air at every altitude; the altitudes stay."""
+    altitude_km, density = standard_air()
+    thin_altitude_km, thin = standard_air(0.9 * 1013.25)
+    np.testing.assert_array_equal(thin_altitude_km, altitude_km)
+    np.testing.assert_allclose(thin, 0.9 * density, rtol=1e-14)
+    np.testing.assert_array_equal(standard_air(1013.25)[1], density)
+
+
+@pytest.mark.parametrize("pressure_hpa", [299, 1101, -1013.25, math.nan, math.inf])
+def test_pressure_out_of_range_is_refused(pressure_hpa: float) -> None:
+    """In hPa, so a value in kPa or Pa is caught as well."""
+    with pytest.raises(InputError, match=rf"^air pressure is {pressure_hpa} hPa, accepted is 300 to 1100 hPa$"):
+        standard_air(pressure_hpa)
+
+
 def test_column_of_exponential_air_is_exact_on_any_levels() -> None:
     """Scale height 8 km: the column between two levels is n0 H times the difference of the exponentials."""
     altitude_km = np.array([0, 0.2, 1, 3.7, 20, 64, 100])
