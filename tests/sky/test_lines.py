@@ -65,10 +65,11 @@ def test_even_nodes_absorb_together_what_the_single_nanometres_do(spacing_nm: in
 
 @pytest.mark.parametrize("nodes", [FINE_NM, NODES_NM, [360.3, 361.3, 500.7, 829.95], [400, 401.5]])
 def test_a_band_is_a_mean_about_its_node(nodes: list[float]) -> None:
-    """Shares are not negative and sum to 1; a ramp keeps its value where a node lies midway between its neighbours."""
+    """Shares sum to 1, none beyond the outer nodes; midway between its neighbours a node has the mean of a ramp."""
     shares = band_shares(nodes)
     assert shares.shape == (len(nodes), FINE_NM.size)
     assert np.all(shares >= 0)
+    assert np.all(shares[:, (nodes[0] > FINE_NM) | (nodes[-1] < FINE_NM)] == 0)
     np.testing.assert_allclose(shares.sum(axis=1), 1, rtol=1e-12)
     np.testing.assert_allclose(band_shares(NODES_NM)[1:-1] @ FINE_NM, NODES_NM[1:-1], rtol=1e-12)
 
