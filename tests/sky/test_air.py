@@ -56,7 +56,7 @@ def test_cross_section_takes_the_refractive_index_at_360_ppm() -> None:
 
 def test_cross_section_is_the_library_one_at_its_own_carbon_dioxide_up_to_the_refractive_index() -> None:
     """colour-science has 4.3466692e-27 cm2 at 555 nm and 300 ppm; 60 ppm more raise (n - 1)² by 6.5e-5."""
-    assert rayleigh_cross_section(555) * 1e4 == pytest.approx(4.3466692e-27 * (1 + 2 * 0.54 * 60e-6), rel=1e-5)
+    assert rayleigh_cross_section(555) * 1e31 == pytest.approx(4.3466692 * (1 + 2 * 0.54 * 60e-6), rel=1e-5)
 
 
 def test_four_hundred_nanometres_scatter_about_nine_times_as_much_as_seven_hundred() -> None:
