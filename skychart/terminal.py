@@ -10,7 +10,7 @@ import numpy as np
 
 from skychart.charts.checks import check_row
 from skychart.charts.columns import SPACE_TITLES
-from skychart.charts.numbers import fixed, significant
+from skychart.charts.numbers import fixed, kelvin, significant
 from skychart.charts.reading import Reading
 from skychart.checks.check import Check
 from skychart.export.tables import plain
@@ -94,9 +94,7 @@ def _aligned(cells: Sequence[str], widths: Sequence[int]) -> str:
 def _temperature(reading: Reading) -> str:
     if math.isnan(reading.cct_k):
         return f"{NONE} (beyond 100000 K, or more than 0.05 away from the Planckian locus)"
-    temperature = float(reading.cct_k)
-    digits = 4 if temperature < 10_000 else 3 if temperature < 30_000 else 2  # a step in chromaticity widens there
-    return f"{significant(temperature, digits)} K, Duv {reading.duv:+.4f}"
+    return f"{kelvin(float(reading.cct_k))} K, Duv {reading.duv:+.4f}"
 
 
 def _polarisation(reading: Reading) -> str:

@@ -5,7 +5,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from skychart.charts.numbers import fixed, significant
+from skychart.charts.numbers import fixed, kelvin, significant
 from skychart.charts.reading import Reading
 from skychart.colour.describe import Colours
 from skychart.colour.spaces import SPACES
@@ -89,7 +89,7 @@ def _columns(values: Reading, colours: Colours, shown_hex: list[str]) -> list[_C
         of("y", "y", "", "CIE xy", values.xy[:, 1], fixed, 4),
         of("u_prime", "u′", "", "CIE u′v′", values.uv_prime[:, 0], fixed, 4),
         of("v_prime", "v′", "", "CIE u′v′", values.uv_prime[:, 1], fixed, 4),
-        of("cct_k", "CCT", "K", balance, values.cct_k, significant, 4),
+        (Column("cct_k", "CCT", "K", balance), [kelvin(float(number)) for number in values.cct_k]),
         of("duv", "Duv", "", balance, values.duv, fixed, 4),
         of("dominant_wavelength_nm", "Dominant", "nm", balance, colours.dominant_wavelength_nm, fixed, 1),
         of("excitation_purity", "Purity", "", balance, colours.excitation_purity, fixed, 3),

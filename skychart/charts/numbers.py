@@ -29,6 +29,11 @@ def significant(value: float, digits: int) -> str:
     return f"{rounded:.{max(digits - 1 - exponent, 0)}f}"
 
 
+def kelvin(value: float) -> str:
+    """A colour temperature with the digits that are true: a step in chromaticity is ever more kelvins up there."""
+    return significant(value, 2 if value >= 30_000 else 3 if value >= 10_000 else 4)
+
+
 def rounded(value: float, digits: int) -> float | None:
     """`value` rounded to `digits` significant digits for JSON; None where it is nan."""
     return None if math.isnan(value) else float(f"{value:.{digits}g}")

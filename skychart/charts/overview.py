@@ -7,7 +7,7 @@ import numpy as np
 from skychart.charts.columns import Column, Row
 from skychart.charts.exposure import Exposure, exposures
 from skychart.charts.ground import ground
-from skychart.charts.numbers import degrees, fixed, significant, spaced
+from skychart.charts.numbers import degrees, fixed, kelvin, significant, spaced
 from skychart.charts.reading import read_colours
 from skychart.charts.sheet import sheet_stem
 from skychart.charts.survey import DIRECTIONS, Survey, azimuth_index, elevation_index
@@ -84,7 +84,7 @@ def _rows(survey: Survey) -> tuple[Row, ...]:
         low = [seen[f"view-02-{side}"][i, 1] for side in ("toward", "beside", "away")]
         cells = [
             *(fact.text for fact in light.facts()),
-            spaced(significant(float(card_colours.cct_k[i]), 3)),
+            spaced(kelvin(float(card_colours.cct_k[i]))),
             spaced(significant(float(zenith[1]), 3)),
             *(spaced(fixed(float(value), 4)) for value in zenith[:2] / zenith.sum()),
             *(spaced(significant(float(value), 3)) for value in low),

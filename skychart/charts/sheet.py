@@ -138,8 +138,8 @@ def block(reading_index: int, readings: Reading, swatch: Swatch, anchor: str, sp
 def stops_block(luminance_cd_m2: float, display_white_cd_m2: float, swatch: Swatch, anchor: str) -> Block:
     """A block that prints how far its luminance lies from display white."""
     stops = float(np.log2(luminance_cd_m2 / display_white_cd_m2))
-    text = spaced(fixed(stops, 1))
-    return Block(swatch, (text if stops < 0 else f"+{text}", "stops"), anchor)
+    text = fixed(stops, 1)
+    return Block(swatch, (f"+{text}" if float(text) > 0 else spaced(text), "stops"), anchor)
 
 
 def rendering_note(key: str) -> str:

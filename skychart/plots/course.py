@@ -43,7 +43,7 @@ def sun_scale(solar_elevation_deg: np.ndarray, labelled: bool = True) -> Scale:
 def _course(panel: Panel, chart: Course, values: np.ndarray, number: int = 0) -> None:
     """A curve with a mark at each sun that was computed."""
     panel.curve(chart.solar_elevation_deg, values, number)
-    panel.line(chart.solar_elevation_deg, values, linestyle="none", marker="o", markersize=3)
+    panel.marks(chart.solar_elevation_deg, values, "o", markersize=3)
 
 
 def _panel(figure: Figure, number: int, y: Scale, chart: Course) -> Panel:

@@ -45,6 +45,7 @@ _STYLE: dict[Any, Any] = {
     "path.simplify_threshold": 0.2,
 }
 _NO_METADATA = {"Date": None, "Creator": None, "Type": None, "Format": None}
+_ON_EDGE = 1e-9
 _KEY_LINE_IN = 0.32
 _KEY_STEP_IN = 0.185
 _SUPERSCRIPT = str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹")
@@ -93,8 +94,16 @@ class Panel:
         return self.box.left + self.box.width * across, self.box.bottom + self.box.height * up
 
     def line(self, x: np.ndarray, y: np.ndarray, **style: Any) -> None:
-        """A line or marks in data coordinates; `style` as of matplotlib's Line2D."""
+        """A line in data coordinates; `style` as of matplotlib's Line2D."""
         self._add(Line2D(*self.place(x, y), **({"color": INK, "solid_capstyle": "butt"} | style)))
+
+    def marks(self, x: np.ndarray, y: np.ndarray, marker: str, **style: Any) -> None:
+        """Marks at those points that lie within both scales, whole ones also on the edge of the box."""
+        places = np.array([self.x.share(x), self.y.share(y)])
+        inside = np.all((places >= -_ON_EDGE) & (places <= 1 + _ON_EDGE), axis=0)
+        found = Line2D(*self.place(x[inside], y[inside]), **({"color": INK, "linestyle": "none"} | style))
+        found.set(marker=marker, transform=self.figure.dpi_scale_trans)
+        self.figure.add_artist(found, clip=False)
 
     def curve(self, x: np.ndarray, y: np.ndarray, number: int = 0) -> None:
         """The `number`-th of several curves, told apart by dash and weight."""
@@ -189,7 +198,7 @@ def log_scale(values: np.ndarray, title: str, most: int = 6) -> Scale:
 def _power(power: int) -> str:
     if 0 <= power <= 5:
         return f"{10**power:,}".replace(",", "\u2009") if power > 3 else f"{10**power}"
-    return f"{10.0**power:.{-power}f}" if -3 <= power < 0 else f"10{str(power).translate(_SUPERSCRIPT)}"
+    return f"{10.0**power:.{-power}f}" if -4 <= power < 0 else f"10{str(power).translate(_SUPERSCRIPT)}"
 
 
 @contextmanager

@@ -6,7 +6,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from skychart.charts.numbers import degrees, fixed, rounded, signed_stem, significant, spaced
+from skychart.charts.numbers import degrees, fixed, kelvin, rounded, signed_stem, significant, spaced
 
 
 @pytest.mark.parametrize(
@@ -59,3 +59,11 @@ def test_rounded_for_json_has_no_nan():
     """JSON has no nan; None becomes null."""
     assert rounded(math.nan, 4) is None
     assert rounded(123456.0, 4) == 123500.0
+
+
+@pytest.mark.parametrize(
+    ("value", "text"), [(6504.4, "6504"), (12345.0, "12300"), (94321.0, "94000"), (99999.0, "100000"), (math.nan, "")]
+)
+def test_colour_temperatures_have_as_many_digits_as_are_true(value, text):
+    """Four below 10 000 K, three below 30 000 K, two above; nothing for nan."""
+    assert kelvin(value) == text

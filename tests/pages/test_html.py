@@ -8,6 +8,13 @@ from urllib.parse import unquote, urlsplit
 import html5lib
 import pytest
 
+from skychart.charts.direction import direction_sheet
+from skychart.charts.survey import DIRECTIONS, survey
+from skychart.config import Settings
+from skychart.pages.render import direction_files
+from skychart.pages.site import make_atlas
+from tests.charts.fake_sky import FakeSky
+
 XHTML = "{http://www.w3.org/1999/xhtml}"
 SVG = "{http://www.w3.org/2000/svg}"
 
@@ -133,6 +140,22 @@ def test_each_atmosphere_leads_to_the_other(pages):
         ("thin/index.html", "../index.html"),
     ):
         assert other in [link.get("href") for link in elements(pages[page], "a")]
+
+
+def test_a_direction_sheet_has_a_block_for_every_sun_and_exposure():
+    """Seventeen suns make tables of fourteen and of three columns, with three blocks below each sun."""
+    suns = tuple(float(sun) for sun in range(17))
+    settings = Settings(solar_elevations_deg=suns)
+    chart = direction_sheet(survey(FakeSky(settings.atmospheres[0]), suns, settings.observer), DIRECTIONS[0])
+    page = direction_files(make_atlas(settings), chart)["molecular/view-zenith.html"].decode("utf-8")
+    found = []
+    for table in elements(html5lib.HTMLParser(strict=True).parse(page), "table")[:-1]:
+        heads = [head for head in elements(table, "th") if head.get("scope") == "col"]
+        links = [elements(cell, "a")[0].get("href") for cell in elements(table, "td") if cell.get("style")]
+        stems = [elements(head, "a")[0].get("href").removesuffix(".html") for head in heads]
+        assert links == 3 * [f"#{stem}" for stem in stems]
+        found.append(len(heads))
+    assert found == [14, 3]
 
 
 def test_every_block_leads_to_its_numbers(pages):

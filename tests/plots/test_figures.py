@@ -13,7 +13,7 @@ from skychart.charts.survey import DIRECTIONS, survey
 from skychart.config import AirSettings
 from skychart.plots.chromaticity import chromaticity_svg
 from skychart.plots.course import course_svg
-from skychart.plots.frame import log_scale
+from skychart.plots.frame import Box, Panel, Scale, figure_svg, log_scale
 from skychart.plots.polarisation import fisheye, polarisation_svg
 from skychart.plots.principal_plane import principal_plane_svg
 from skychart.plots.spectra import spectra_svg
@@ -82,6 +82,19 @@ def test_dots_have_the_colours_of_the_blocks(found):
     chart = elevation_sheet(found, 2).chromaticities
     text = chromaticity_svg(chart).decode("utf-8")
     assert all(code in text for code in chart.sky_hex)
+
+
+def test_marks_on_the_edge_are_whole_and_those_beyond_are_left_out():
+    """Of five marks the middle three lie within the scales, two of them on an edge, and none is cut by the box."""
+    scale = Scale(-10.0, 10.0, (), (), "")
+
+    def draw(figure):
+        places = np.array([-10.5, -10, 0, 10, 10.5])
+        Panel(figure, Box(0.5, 0.5, 2, 2), scale, scale).marks(places, places, "o", markersize=3)
+
+    text = figure_svg((3, 3), draw).decode("utf-8")
+    assert text.count("<use ") == 3
+    assert not re.search(r"<use [^>]*clip-path|<g clip-path", text)
 
 
 def test_one_colour_alone_can_be_shown():
