@@ -17,7 +17,7 @@ from skychart.sky.haze import Haze
 from skychart.sky.local import FlatAir, FlatField, one_scattering, peak_fraction, solve_closure, solve_flat, tensor
 from skychart.sky.local.air import unscaled
 from skychart.sky.local.paths import beam_averages
-from skychart.sky.local.streams import legendre
+from skychart.sky.local.streams import Streams, legendre
 
 Array = NDArray[np.float64]
 
@@ -312,6 +312,18 @@ def test_all_light_that_enters_leaves_or_is_taken_in() -> None:
     np.testing.assert_allclose(flux + taken, np.cos(air.solar_zenith_angle)[:, None] * np.ones(3), rtol=1e-3)
 
 
+def test_diffuse_irradiance_is_the_sky_seen_from_the_ground() -> None:
+    """Scattered light of all directions, once and more, weighted by the cosine: within 2e-3."""
+    suns = np.radians([30.0, 80.0])
+    air = flat_air([0.3, 0.1], [0.1, 0.5], np.array([henyey_greenstein(0.3), henyey_greenstein(0.5)]), 0.3, suns)
+    field = solve_flat(air)
+    up = Streams.double_gauss(24)
+    cosine, weight = up.cosine[up.cosine > 0], up.weight[up.cosine > 0]
+    mean = total(field, cosine, RING)[0][..., 0, :].mean(axis=2)
+    flux = 2 * np.pi * np.einsum("v,nvw->nw", weight * cosine, mean)
+    np.testing.assert_allclose(field.diffuse_irradiance(), flux, rtol=2e-3)
+
+
 def test_sum_of_orders_is_the_solution() -> None:
     """The solution's moments are those of the light its own sources send: one more scattering changes nothing."""
     suns = np.radians([30.0, 85.0])
@@ -324,7 +336,7 @@ def test_sum_of_orders_is_the_solution() -> None:
 
 
 def test_suns_below_the_horizon_light_the_air_above_the_shadow() -> None:
-    """Beam only above a boundary: light everywhere, less with less lit air, brighter toward the sun, I^2 > Q^2 + U^2."""
+    """Beam only above a boundary: light everywhere, less with less lit air, brighter toward the sun, I over Q and U."""
     suns = np.radians([92.0, 96.0])
     air = flat_air([0.25, 0.04], [0.2, 0.2], np.array([PHASES[0.75]] * 2), 0.2, np.radians([60.0, 60.0]))
     altitude = boundaries_km()[:, None, None]

@@ -6,6 +6,7 @@ scattering is one solution of a dense system for all suns, exact where adding or
 
 from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -51,12 +52,17 @@ class FlatField:
 
         ``cosine`` of the zenith angle of sight, (direction,), not 0. Light scattered once by the scaled haze is in it.
         """
-        return np.moveaxis(leading_radiance(self, cosine), (3, 4, 2, 0, 1), (0, 1, 2, 3, 4))
+        return np.moveaxis(_radiance(self, cosine), (3, 4, 2, 0, 1), (0, 1, 2, 3, 4))
+
+    @cached_property
+    def at_streams(self) -> Array:
+        """``radiance`` at the streams in the order of the solver: (mode, wavelength, stream, boundary, sun)."""
+        return _radiance(self, self.streams.cosine)
 
 
 def solve_flat(air: FlatAir, streams: Streams | None = None, moments: int = MOMENTS, modes: int = MODES) -> FlatField:
-    """The full solution: ``moments`` of the phase function, delta-M beyond them, and ``modes`` azimuth modes."""
-    return _solve(air, delta_m(air, moments), streams or Streams.double_gauss(), min(modes, moments))
+    """The full solution: ``moments`` of the phase function, delta-M beyond them, and ``modes`` azimuth modes, >= 3."""
+    return _solve(air, delta_m(air, moments), streams or Streams.double_gauss(), modes)
 
 
 def solve_closure(air: FlatAir, streams: Streams | None = None) -> FlatField:
@@ -64,8 +70,26 @@ def solve_closure(air: FlatAir, streams: Streams | None = None) -> FlatField:
     return _solve(air, delta_eddington(air), streams or Streams.double_gauss(), tensor.MODES)
 
 
-def leading_radiance(field: FlatField, cosine: Array) -> Array:
-    """``FlatField.radiance`` in the order of the solver: (mode, wavelength, direction, boundary, sun)."""
+def _solve(air: FlatAir, optics: Optics, streams: Streams, modes: int) -> FlatField:
+    hazy = slice(0, top_boundary(optics.scattering[HAZE]) + 1)
+    system = System(air, optics, streams, hazy, modes)
+    with ThreadPoolExecutor(_THREADS) as pool:
+        solutions = list(pool.map(system.solution, range(modes)))
+    tensors = np.concatenate([solution[0] for solution in solutions], axis=1)
+    wavelengths, _, boundaries, suns = solutions[0][1].shape
+    moments = np.zeros((modes, wavelengths, len(optics.moments), boundaries, suns))
+    for mode, solution in enumerate(solutions):
+        moments[mode, :, mode:] = solution[1]
+    return FlatField(
+        air, optics, streams, hazy,
+        tensor=tensors.transpose(2, 3, 1, 0),
+        moments=moments.transpose(0, 3, 4, 2, 1),
+        ground=solutions[0][2][:, 0].T,
+    )  # fmt: skip
+
+
+def _radiance(field: FlatField, cosine: Array) -> Array:
+    """Radiance at the hazy boundaries, (mode, wavelength, direction, boundary, sun)."""
     optics, hazy, modes = field.optics, field.hazy, len(field.moments)
     weights = path_weights(optics.scattering, optics.extinction, cosine)[..., hazy, :]
     molecules, haze = beam_averages(optics.scattering, optics.extinction, cosine, optics.beam)[..., hazy, :]
@@ -90,21 +114,3 @@ def leading_radiance(field: FlatField, cosine: Array) -> Array:
     below = from_ground(optics.extinction, cosine)[:, :, hazy, None]
     light[0] += below * (field.air.ground_albedo / np.pi * field.ground).T[:, None, None]
     return light
-
-
-def _solve(air: FlatAir, optics: Optics, streams: Streams, modes: int) -> FlatField:
-    hazy = slice(0, top_boundary(optics.scattering[HAZE]) + 1)
-    system = System(air, optics, streams, hazy, modes)
-    with ThreadPoolExecutor(_THREADS) as pool:
-        solutions = list(pool.map(system.solution, range(modes)))
-    tensors = np.concatenate([solution[0] for solution in solutions], axis=1)
-    wavelengths, _, boundaries, suns = solutions[0][1].shape
-    moments = np.zeros((modes, wavelengths, len(optics.moments), boundaries, suns))
-    for mode, solution in enumerate(solutions):
-        moments[mode, :, mode:] = solution[1]
-    return FlatField(
-        air, optics, streams, hazy,
-        tensor=tensors.transpose(2, 3, 1, 0),
-        moments=moments.transpose(0, 3, 4, 2, 1),
-        ground=solutions[0][2][:, 0].T,
-    )  # fmt: skip

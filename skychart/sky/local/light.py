@@ -14,7 +14,7 @@ from numpy.typing import ArrayLike, NDArray
 from skychart.sky.dipole import molecular_coefficients
 from skychart.sky.local import tensor
 from skychart.sky.local.air import FlatAir, unscaled
-from skychart.sky.local.field import FlatField, leading_radiance
+from skychart.sky.local.field import FlatField
 from skychart.sky.local.paths import beam_averages, from_ground, path_weights
 from skychart.sky.local.streams import scattering_kernel
 from skychart.sky.local.system import HAZE, MOLECULES
@@ -69,7 +69,7 @@ def one_scattering(field: FlatField, view_cosine: Array, boundary: int = 0) -> F
     )
     remainder = passed - kept
     kernel = scattering_kernel(optics.moments, streams, view_cosine, len(field.moments))
-    incident = leading_radiance(field, streams.cosine)
+    incident = field.at_streams
     source = kernel @ incident.reshape(*incident.shape[:3], -1)
     source = source.reshape(*source.shape[:3], *incident.shape[3:])
     haze = (weights[HAZE][..., None, field.hazy] @ source)[..., 0, :].transpose(3, 2, 0, 1)
