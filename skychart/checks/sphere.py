@@ -5,6 +5,7 @@ published ones.
 """
 
 import math
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -49,21 +50,25 @@ def rms_beyond_noise(error: NDArray[np.float64], noise: NDArray[np.float64]) -> 
     return math.sqrt(max(0.0, float(np.mean(error**2) - np.mean(noise**2))))
 
 
-def benchmark_atmosphere() -> Atmosphere:
-    """The benchmark air at 550 nm over black ground: densities linear between levels 1 km apart, to 100 km."""
+def benchmark_atmosphere(wavelength_nm: Sequence[float] = (550.0,)) -> Atmosphere:
+    """The benchmark air over black ground: densities linear between levels 1 km apart, to 100 km.
+
+    ``wavelength_nm``: some of 450 and 550, for which its optical depths are defined.
+    """
     columns = load_table("checks/benchmark_atmosphere").columns
     altitude_km = columns["altitude_km"]
 
-    def layer_depths(share_per_km: NDArray[np.float64], depth: float) -> NDArray[np.float64]:
-        return (depth * 0.5 * (share_per_km[:-1] + share_per_km[1:]) * np.diff(altitude_km))[:, None]
+    def layer_depths(share_per_km: NDArray[np.float64], depth: dict[float, float]) -> NDArray[np.float64]:
+        share = 0.5 * (share_per_km[:-1] + share_per_km[1:]) * np.diff(altitude_km)
+        return share[:, None] * [depth[wavelength] for wavelength in wavelength_nm]
 
     return Atmosphere(
         level_altitude_km=altitude_km,
-        wavelength_nm=np.array([550.0]),
-        rayleigh_depth=layer_depths(columns["rayleigh_profile_per_km"], 0.0972),
-        absorption_depth=layer_depths(columns["ozone_profile_per_km"], 0.02659833),
-        depolarisation=np.zeros(1),
-        ground_albedo=np.zeros(1),
+        wavelength_nm=np.array(wavelength_nm),
+        rayleigh_depth=layer_depths(columns["rayleigh_profile_per_km"], {450.0: 0.2220, 550.0: 0.0972}),
+        absorption_depth=layer_depths(columns["ozone_profile_per_km"], {450.0: 0.001289616, 550.0: 0.02659833}),
+        depolarisation=np.zeros(len(wavelength_nm)),
+        ground_albedo=np.zeros(len(wavelength_nm)),
     )
 
 

@@ -29,12 +29,15 @@ from skychart.sky.shells import Shells, level_altitudes, redistribute, subdivide
 
 Array = NDArray[np.float64]
 
-_GRID = Grid()
+_GRID = Grid(azimuth=4)
 _DIRECTIONS = Grid(zenith=8, azimuth=8)  # in which the closure's radiance is known where it is scattered once more
 _MODES = 8
 _HAZE_LEFT = 1e-3  # of the haze may lie above the levels whose haze scatters once more
-_FLAT_KM = np.array(
-    [0, 0.1, 0.25, 0.5, 0.75, 1, 1.5, 2, 2.5, 3, 4, 5, 6, 8, 10, 12, 15, 18, 22, 27, 35, 50, 80], dtype=float
+_FLAT_KM = np.concatenate(
+    [
+        [0, 0.05, 0.1, 0.17, 0.25, 0.37, 0.5, 0.62, 0.75, 0.87, 1, 1.25, 1.5, 1.75, 2, 2.5, 3, 3.5],
+        [4, 5, 6, 7, 8, 9, 10, 11, 12, 15, 18, 22, 27, 35, 50, 80],
+    ]
 )
 _LOWEST_FLAT_SUN_DEG = 97.0
 _LOWEST_VIEW = 0.01  # cosine of zenith angle: flat air has no horizon
@@ -105,7 +108,7 @@ class HazyLight:
         return light + station.multiple(self.field, lines, molecules, self.air.ground_albedo, self.scattered)
 
     def correction(self, lines: Lines, altitude_km: float = 0.0) -> Array:
-        """F / G of flat air for the same sun and direction, (line, wavelength), at the boundary nearest the altitude."""
+        """F / G of flat air for the same sun and direction at the boundary nearest the altitude, (line, wavelength)."""
         boundary = int(np.argmin(np.abs(self.flat_altitude_km - altitude_km)))
         node = _flat_suns()
         down = np.where(lines.view_cosine < 0, -1.0, 1.0)
