@@ -24,6 +24,7 @@ class Atmosphere:
     ``ground_albedo``: 0 to 1, scalar or (wavelength,).
     ``planet_radius_km``: [km], 1000 or more; a very large one gives the flat case.
     ``haze``: particles in the same layers at the same wavelengths, or none.
+    ``refractivity``: refractive index of the air at the ground less one, 0 to 5e-4; it bends the beam of the sun.
 
     Within a layer every species is spread by the monotone cubic through their column above each level, so the density
     is continuous from layer to layer. Every array is held in double precision and is not to be changed.
@@ -38,6 +39,7 @@ class Atmosphere:
     ground_albedo: NDArray[np.float64]
     planet_radius_km: float = EARTH_RADIUS_KM
     haze: Haze | None = None
+    refractivity: float = 0.0
 
     def __post_init__(self) -> None:
         level = np.asarray(self.level_altitude_km, dtype=float)
@@ -61,6 +63,8 @@ class Atmosphere:
             raise InputError(f"planet_radius_km is {self.planet_radius_km}; accepted: 1000 to 1e8 km")
         if self.haze is not None and self.haze.depth.shape != layers:
             raise InputError(f"haze depth has shape {self.haze.depth.shape}, accepted: {layers}")
+        if not 0 <= self.refractivity <= 5e-4:
+            raise InputError(f"refractivity is {self.refractivity}; accepted: 0 to 5e-4")
         for name, value in checked.items():
             object.__setattr__(self, name, value)
 

@@ -102,7 +102,7 @@ class HazyLight:
         """G on the sphere: I, Q, U (line, 3, wavelength)."""
         if station.beyond is None:
             raise TypeError("a station in air without haze")
-        remainder = Station(station.shells, station.beyond, station.start)
+        remainder = replace(station, table=station.beyond)
         molecules = self.scatterers._replace(forward=None)
         light = remainder.single(lines, molecules, _haze(self.air).phase_at)
         return light + station.multiple(self.field, lines, molecules, self.air.ground_albedo, self.scattered)
@@ -171,8 +171,7 @@ def _flat_air(air: Atmosphere, boundaries: Array) -> FlatAir:
         shells = Shells.of(air, altitude, unscattered)
         beams.append(np.stack([transmission(shells, place, cosine) for place in places]))
     rayleigh, absorption, haze = (
-        redistribute(air, depth, boundaries)[0]
-        for depth in (air.rayleigh_depth, air.absorption_depth, _haze(air).depth)
+        redistribute(air, depth, boundaries) for depth in (air.rayleigh_depth, air.absorption_depth, _haze(air).depth)
     )
     return FlatAir(
         rayleigh_depth=rayleigh,

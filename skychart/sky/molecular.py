@@ -49,7 +49,7 @@ def solve_field(
     with ThreadPoolExecutor(THREADS) as pool:
         fans = list(pool.map(lambda level: Fan(shells, grid, level), range(len(altitude))))
         firsts = list(pool.map(lambda fan: first_order(table, fan, chi, scatterers), fans))
-    direct = np.maximum(np.cos(chi), 0)[:, None] * table.at(np.zeros(len(chi), np.intp), np.cos(chi))
+    direct = np.maximum(np.cos(table.apparent(0, chi)), 0)[:, None] * table.at(np.zeros(len(chi), np.intp), np.cos(chi))
     tensor = np.stack([first.tensor for first in firsts])
     ground = direct + firsts[0].irradiance
     shapes = (

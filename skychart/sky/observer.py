@@ -4,7 +4,7 @@ Light scattered once is gathered straight from the beam at every sub-step; the r
 """
 
 from collections.abc import Callable, Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Protocol
 
 import numpy as np
@@ -71,7 +71,7 @@ class Station:
         if air.haze is None:
             return cls(shells, table, start)
         scaled = SunTable.of(Shells.of(air, altitude_km, air.haze.peak))
-        return cls(shells, table, start, SunTable(shells, scaled.values - table.values, table.edge))
+        return cls(shells, table, start, replace(table, values=scaled.values - table.values))
 
     def single(self, lines: Lines, scatterers: dipole.Scatterers, phase: Phase | None) -> NDArray[np.float64]:
         """I, Q, U of light scattered once, shape (line, 3, wavelength) [1/sr].
@@ -88,13 +88,14 @@ class Station:
                 np.einsum("bql,ql->bl", beam, weight[ray][fan.reached[ray]].astype(np.float32), optimize=False)
                 for weight in fan.weight
             )
-            sight, h, v = _sight_axes(lines, chosen)
+            _, h, v = _sight_axes(lines, chosen)
             hh, vv, hv = (0.5 * (x.rho * y.rho + x.alpha * y.alpha)[:, None] for x, y in ((h, h), (v, v), (h, v)))
             result[chosen, 0] = molecules * (a * (hh + vv) + 2 * b)
             result[chosen, 1] = molecules * a * (hh - vv)
             result[chosen, 2] = molecules * a * -2 * hv
             if phase is not None:
-                result[chosen, 0] += haze[0] * phase(sight.s) / (4 * np.pi)
+                seen = self.table.apparent(self.start, lines.solar_zenith[chosen])
+                result[chosen, 0] += haze[0] * phase(_cosine_to_sun(lines, chosen, seen)) / (4 * np.pi)
         return result
 
     def multiple(
@@ -199,6 +200,13 @@ def _sent_by_haze(
     across = np.sqrt(np.maximum((1 - cosine**2) * (1 - cos_chi[:, low] ** 2), 1e-12))
     azimuth = (sight.s[:, None] - cosine * cos_chi[:, low]) / across
     return source.along(cosine, level[low], cos_chi[:, low], np.clip(azimuth, -1, 1))
+
+
+def _cosine_to_sun(lines: Lines, chosen: NDArray[np.intp], solar_zenith: Array) -> Array:
+    """Cosine of the angle between some lines of sight and the sun at ``solar_zenith`` [rad]."""
+    cos_theta = lines.view_cosine[chosen]
+    across = np.sqrt(1 - cos_theta**2) * np.sin(solar_zenith) * np.cos(lines.relative_azimuth[chosen])
+    return cos_theta * np.cos(solar_zenith) + across
 
 
 def _sight_axes(lines: Lines, chosen: NDArray[np.intp]) -> tuple[dipole.Vector, dipole.Vector, dipole.Vector]:

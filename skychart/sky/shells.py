@@ -12,11 +12,12 @@ import numpy as np
 from numpy.typing import NDArray
 
 from skychart.sky.atmosphere import Atmosphere
-from skychart.sky.interpolation import monotone_cubic
+from skychart.sky.interpolation import monotone_cubic, spline_matrix
 
 Array = NDArray[np.float64]
 
 _UPPER_KM = 80.0
+_SPLINE_NODES = 4  # the fewest that a cubic spline takes
 _PATH_NODES, _PATH_WEIGHTS = np.polynomial.legendre.leggauss(4)
 
 
@@ -49,6 +50,7 @@ class Shells:
     scattering_depth: tuple[Array, ...]
     extinction_depth: Array
     decay_per_km: Array  # of the molecular density within each layer, shape (layer,)
+    refractivity: Array  # refractive index less one at each boundary, shape (layer + 1,)
     planet_radius_km: float
 
     @classmethod
@@ -57,21 +59,22 @@ class Shells:
 
         ``unscattered``: the part of what the haze scatters that is taken as not scattered at all, (wavelength,).
         """
-        rayleigh, density = redistribute(air, air.rayleigh_depth, altitude_km)
-        absorption, _ = redistribute(air, air.absorption_depth, altitude_km)
+        rayleigh = redistribute(air, air.rayleigh_depth, altitude_km)
+        absorption = redistribute(air, air.absorption_depth, altitude_km)
         extinction = rayleigh + absorption
         scattering: tuple[Array, ...] = (rayleigh,)
         if air.haze is not None:
-            depth, _ = redistribute(air, air.haze.depth, altitude_km)
+            depth = redistribute(air, air.haze.depth, altitude_km)
             scattered = air.haze.single_scattering_albedo
             scattering = rayleigh, depth * scattered * (1 - unscattered)
             extinction = extinction + depth * (1 - scattered * unscattered)
-        typical = np.maximum(density.mean(axis=1), 1e-12 * density.max())
+        log_density = _log_density(air, altitude_km)
         return cls(
             altitude_km=altitude_km,
             scattering_depth=scattering,
             extinction_depth=extinction,
-            decay_per_km=np.log(typical[:-1] / typical[1:]) / np.diff(altitude_km),
+            decay_per_km=-np.diff(log_density) / np.diff(altitude_km),
+            refractivity=air.refractivity * np.exp(log_density - log_density[0]),
             planet_radius_km=air.planet_radius_km,
         )
 
@@ -92,7 +95,7 @@ class Shells:
             distance = middle + half * node
             altitude = tangent + distance**2 / (np.sqrt(nearest**2 + distance**2) + nearest)
             total += weight * np.exp(-decay * (altitude - bottom))
-        return total * half / _vertical_weight(decay, top - bottom)
+        return total * half / vertical_weight(decay, top - bottom)
 
 
 def tangent_altitude(altitude_km: Array, cos_zenith: Array, planet_radius_km: float) -> Array:
@@ -106,14 +109,23 @@ def distance_from_tangent(altitude_km: Array, tangent_km: Array, planet_radius_k
     return np.sqrt(np.maximum(0.0, (altitude_km - tangent_km) * (2 * planet_radius_km + altitude_km + tangent_km)))
 
 
-def redistribute(air: Atmosphere, depth: Array, altitude_km: Array) -> tuple[Array, Array]:
-    """Depths between ``altitude_km`` and densities [1/km] at them, from the column below each level of ``air``."""
+def redistribute(air: Atmosphere, depth: Array, altitude_km: Array) -> Array:
+    """Depths between ``altitude_km``, from the column below each level of ``air``."""
     column = np.concatenate([np.zeros((1, depth.shape[1])), np.cumsum(depth, axis=0)])
-    below, density = monotone_cubic(air.level_altitude_km, column, altitude_km)
-    return np.diff(below, axis=0), density
+    return np.diff(monotone_cubic(air.level_altitude_km, column, altitude_km)[0], axis=0)
 
 
-def _vertical_weight(decay: Array, thickness: Array) -> Array:
+def _log_density(air: Atmosphere, altitude_km: Array) -> Array:
+    """Logarithm of the molecules' density at ``altitude_km``, up to a constant: smooth through the layers' means."""
+    mean = (air.rayleigh_depth / np.diff(air.level_altitude_km)[:, None]).mean(axis=1)
+    log = np.log(np.maximum(mean, 1e-12 * mean.max()))
+    middle = 0.5 * (air.level_altitude_km[1:] + air.level_altitude_km[:-1])
+    if len(log) < _SPLINE_NODES:
+        return np.interp(altitude_km, middle, log)
+    return spline_matrix(middle, altitude_km) @ log
+
+
+def vertical_weight(decay: Array, thickness: Array) -> Array:
     """Integral of exp(-decay z) over a layer."""
     x = decay * thickness
     small = np.abs(x) < 1e-5

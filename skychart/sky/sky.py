@@ -47,7 +47,7 @@ class Light(Protocol):
 
 @dataclass(frozen=True, eq=False)
 class Sky:
-    """A solved sky. Angles in degrees; solar elevations are geometric (no refraction), -12 to 90.
+    """A solved sky. Angles in degrees; solar elevations are geometric (as without refraction), -12 to 90.
 
     Relative azimuth 0 looks toward the sun's azimuth, 180 away from it. Angles broadcast together; the wavelength axis,
     that of the atmosphere, is last. Radiance and irradiance are per unit solar irradiance at the top of the atmosphere.
@@ -107,6 +107,12 @@ class Sky:
         station = self._station(altitude_km)
         return beam.transmission(station.shells, station.start, np.sin(np.radians(elevation)))
 
+    def apparent_elevation_deg(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
+        """Elevation [degrees] at which the refracted sun stands or, below the horizon, would stand, (...)."""
+        elevation = within("solar elevation", solar_elevation_deg, LOWEST_SUN_DEG, 90)
+        station = self._station(altitude_km)
+        return 90 - np.degrees(station.table.apparent(station.start, np.radians(90 - elevation)))
+
     def ground_irradiance(self, solar_elevation_deg: ArrayLike) -> tuple[Array, Array]:
         """Diffuse and direct irradiance of the horizontal ground, each (..., wavelength)."""
         diffuse = self.single_irradiance(solar_elevation_deg) + self.multiple_irradiance(solar_elevation_deg)
@@ -115,7 +121,8 @@ class Sky:
     def direct_irradiance(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
         """Irradiance of a horizontal plane by the sun itself, (..., wavelength)."""
         transmission = self.beam(solar_elevation_deg, altitude_km)
-        return np.maximum(np.sin(np.radians(solar_elevation_deg)), 0)[..., None] * transmission
+        height = np.sin(np.radians(self.apparent_elevation_deg(solar_elevation_deg, altitude_km)))
+        return np.maximum(height, 0)[..., None] * transmission
 
     def single_irradiance(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
         """Irradiance of a horizontal plane by light scattered once, (..., wavelength)."""
