@@ -7,9 +7,11 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from skychart.errors import InputError
-from skychart.sky import air, gases
+from skychart.sky import air, gases, ground
 from skychart.sky.haze import Haze
+from skychart.sky.haze_types import haze_of
 
+REFRACTIVITY = 2.778e-4  # of standard air at 15 degrees Celsius, 550 nm: Ciddor 1996, doi:10.1364/AO.35.001566
 EARTH_RADIUS_KM = 6371.0  # mean radius R1, IUGG / Moritz 2000
 
 
@@ -69,24 +71,46 @@ class Atmosphere:
             object.__setattr__(self, name, value)
 
     @classmethod
-    def standard(cls, wavelength_nm: ArrayLike, ozone_du: float = 300, ground_albedo: ArrayLike = 0.18) -> Self:
-        """Real air: US Standard Atmosphere 1976 molecules and ``ozone_du`` Dobson units of ozone (0 to 1000).
+    def standard(
+        cls,
+        wavelength_nm: ArrayLike,
+        ozone_du: float = 300,
+        ground_albedo: ArrayLike | str = 0.18,
+        *,
+        haze: str | None = None,
+        haze_depth_550: float | None = None,
+        haze_scale_height_km: float | None = None,
+        no2_du: float = 0.0,
+        pressure_hpa: float = air.STANDARD_PRESSURE_HPA,
+    ) -> Self:
+        """Real air: US Standard Atmosphere 1976 molecules, ozone, oxygen pairs, and haze of a named type if wanted.
 
-        ``wavelength_nm`` 300 to 830 [nm], shape (wavelength,); ``ground_albedo`` 0 to 1, scalar or (wavelength,).
-        Raises InputError.
+        ``wavelength_nm`` 300 to 830 [nm], shape (wavelength,); ``ozone_du``, ``no2_du``: columns, 0 to 1000 Dobson
+        units; ``ground_albedo`` 0 to 1, scalar or (wavelength,), or the name of a ground; ``haze``, its optical depth
+        at 550 nm and its scale height as in ``haze_types.haze_of``; ``pressure_hpa`` at sea level, 300 to 1100 [hPa].
+        Lines of water vapour and oxygen are not in it. Raises InputError.
         """
         wavelength = np.atleast_1d(np.asarray(wavelength_nm, dtype=float))
-        if not 0 <= ozone_du <= 1000:
-            raise InputError(f"ozone column is {ozone_du} Dobson units, accepted: 0 to 1000")
-        altitude, density = air.standard_air()
+        for gas, column in (("ozone", ozone_du), ("NO2", no2_du)):
+            if not 0 <= column <= 1000:
+                raise InputError(f"{gas} column is {column} Dobson units, accepted: 0 to 1000")
+        altitude, density = air.standard_air(pressure_hpa)
         molecules = air.column_of_layers(altitude, density)
+        absorbers = (
+            (gases.ozone_layers(altitude, ozone_du), gases.ozone_cross_section(wavelength)),
+            (gases.o2_o2_layers(altitude, density), gases.o2_o2_coefficient(wavelength)),
+            (gases.no2_layers(altitude, no2_du), gases.no2_cross_section(wavelength)),
+        )
+        albedo = ground.ground_albedo(ground_albedo, wavelength) if isinstance(ground_albedo, str) else ground_albedo
         return cls(
             level_altitude_km=altitude,
             wavelength_nm=wavelength,
             rayleigh_depth=molecules[:, None] * air.rayleigh_cross_section(wavelength),
-            absorption_depth=gases.ozone_layers(altitude, ozone_du)[:, None] * gases.ozone_cross_section(wavelength),
+            absorption_depth=np.sum([amount[:, None] * strength for amount, strength in absorbers], axis=0),
             depolarisation=air.depolarisation_ratio(wavelength),
-            ground_albedo=np.asarray(ground_albedo, dtype=float),
+            ground_albedo=np.asarray(albedo, dtype=float),
+            haze=None if haze is None else haze_of(haze, altitude, wavelength, haze_depth_550, haze_scale_height_km),
+            refractivity=REFRACTIVITY * pressure_hpa / air.STANDARD_PRESSURE_HPA,
         )
 
 

@@ -81,8 +81,8 @@ class Station:
         a, b = scatterers.a, scatterers.b
         result = np.zeros((len(lines.view_cosine), 3, len(a)))
         everything = np.arange(len(self.shells.altitude_km))
-        for fan, ray, chosen in self._blocks(lines, everything):
-            level, cos_there, _, _ = _along(fan, ray, lines, chosen)
+        for fan, ray, chosen in self.blocks(lines, everything):
+            level, cos_there, _, _ = along(fan, ray, lines, chosen)
             beam = self.table.at(level, cos_there)
             molecules, *haze = (
                 np.einsum("bql,ql->bl", beam, weight[ray][fan.reached[ray]].astype(np.float32), optimize=False)
@@ -117,8 +117,8 @@ class Station:
             haze_source = haze_source and haze_source.with_level(*place)
         levels = np.searchsorted(self.shells.altitude_km, field.level_altitude_km)
         result = np.zeros((len(lines.view_cosine), 3, len(a)))
-        for fan, ray, chosen in self._blocks(lines, levels):
-            level, cos_there, cosine, sine = _along(fan, ray, lines, chosen)
+        for fan, ray, chosen in self.blocks(lines, levels):
+            level, cos_there, cosine, sine = along(fan, ray, lines, chosen)
             entries = _interpolated(field.tensor_shape, field.tensor, level, cos_there)
             weights = [weight[ray][fan.reached[ray]].astype(np.float32)[:, None] for weight in fan.weight]
             sight, h, v = _sight_axes(lines, chosen)
@@ -129,9 +129,11 @@ class Station:
             result[chosen] = a * sums[:, :3]
             result[chosen, 0] += 2 * b * sums[:, 3]
             if forward is not None:
-                along = np.stack([np.broadcast_to(sight.s[:, None], cosine.shape), _along_rho(sight, cosine, sine)], -1)
+                toward = np.stack(
+                    [np.broadcast_to(sight.s[:, None], cosine.shape), _along_rho(sight, cosine, sine)], -1
+                )
                 trace = _summed([plain], tensor * weights[1])[:, 0]
-                flux = _summed([along], entries[..., dipole.ENTRIES :, :] * weights[1])[:, 0]
+                flux = _summed([toward], entries[..., dipole.ENTRIES :, :] * weights[1])[:, 0]
                 result[chosen, 0] += 2 * dipole.ISOTROPIC * (trace + forward * flux)
             if haze_source is not None:
                 light = _sent_by_haze(haze_source, fan, ray, sight, lines.view_cosine[chosen[0]], cos_there, level)
@@ -150,8 +152,11 @@ class Station:
         node, low, high = field.ground_shape.weights(np.zeros((), np.intp), cos_there)
         return low[:, None] * field.ground[node] + high[:, None] * field.ground[node + 1]
 
-    def _blocks(self, lines: Lines, boundaries: NDArray[np.intp]) -> Iterator[tuple[Crossings, int, NDArray[np.intp]]]:
-        """Yield (fan of all distinct rays, ray, indices of some lines along it); levels at ``boundaries``."""
+    def blocks(self, lines: Lines, boundaries: NDArray[np.intp]) -> Iterator[tuple[Crossings, int, NDArray[np.intp]]]:
+        """Yield (fan of the distinct view cosines in ascending order, ray, indices of some lines along it).
+
+        ``boundaries``: of the shells, those that count as levels.
+        """
         view, which = np.unique(lines.view_cosine, return_inverse=True)
         fan = self._fan(view, boundaries)
         order = np.argsort(which, kind="stable")
@@ -171,7 +176,7 @@ class Station:
         return crossings(shells.altitude_km[boundaries], scattering, extinction, start, view, shells.planet_radius_km)
 
 
-def _along(
+def along(
     fan: Crossings, ray: int, lines: Lines, chosen: NDArray[np.intp]
 ) -> tuple[NDArray[np.intp], Array, Array, Array]:
     """Levels crossed (crossing,); cosine of the solar zenith angle and turn of the axes, each (line, crossing)."""

@@ -83,7 +83,7 @@ class Sky:
         altitude_km: float = 0.0,
     ) -> Array:
         """The part of ``stokes`` scattered once from the beam."""
-        shape, lines = _lines(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
+        shape, lines = lines_of_sight(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
         stokes = self._station(altitude_km).single(
             lines, _molecules(self.air), None if self.air.haze is None else self.air.haze.phase_at
         )
@@ -97,7 +97,7 @@ class Sky:
         altitude_km: float = 0.0,
     ) -> Array:
         """The part of ``stokes`` scattered more than once or by the ground."""
-        shape, lines = _lines(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
+        shape, lines = lines_of_sight(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
         stokes = self.light.multiple(self._station(altitude_km), lines)
         return stokes.reshape(*shape, *stokes.shape[1:])
 
@@ -126,11 +126,11 @@ class Sky:
 
     def single_irradiance(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
         """Irradiance of a horizontal plane by light scattered once, (..., wavelength)."""
-        return _hemisphere(self.single, solar_elevation_deg, altitude_km)
+        return over_hemisphere(self.single, solar_elevation_deg, altitude_km)
 
     def multiple_irradiance(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
         """Irradiance of a horizontal plane by light scattered more than once or by the ground, (..., wavelength)."""
-        return _hemisphere(self.multiple, solar_elevation_deg, altitude_km)
+        return over_hemisphere(self.multiple, solar_elevation_deg, altitude_km)
 
     def _station(self, altitude_km: float) -> Station:
         altitude = float(within("altitude", altitude_km, 0, HIGHEST_OBSERVER_KM, "km"))
@@ -146,14 +146,16 @@ def _molecules(air: Atmosphere) -> dipole.Scatterers:
     return dipole.Scatterers(*dipole.molecular_coefficients(air.depolarisation))
 
 
-def _hemisphere(stokes: Callable[..., Array], solar_elevation_deg: ArrayLike, altitude_km: float) -> Array:
-    """Sum of radiance times cosine over 16 zenith angles, clustered at the horizon, and 8 azimuths of the half turn."""
+def over_hemisphere(stokes: Callable[..., Array], solar_elevation_deg: ArrayLike, *place: float) -> Array:
+    """Sum of radiance times cosine over 16 zenith angles, clustered at the horizon, and 8 azimuths of the half turn.
+
+    ``stokes`` takes solar elevation, view elevation, azimuth [degrees] and ``place``; result (..., wavelength).
+    """
     quadrature = Grid(zenith=16, azimuth=8)
     cosine, weight = (part[: quadrature.zenith] for part in quadrature.cosines(0.0))
     cos_phi, _, phi_weight = quadrature.azimuths()
     sun = np.asarray(solar_elevation_deg, dtype=float)[..., None, None]
-    view = np.degrees(np.arcsin(cosine))[:, None], np.degrees(np.arccos(cos_phi))
-    radiance = stokes(sun, *view, altitude_km)[..., 0, :]
+    radiance = stokes(sun, np.degrees(np.arcsin(cosine))[:, None], np.degrees(np.arccos(cos_phi)), *place)[..., 0, :]
     return np.einsum("...zpl,z->...l", radiance, cosine * weight * phi_weight)
 
 
@@ -166,9 +168,10 @@ def within(name: str, value: ArrayLike, low: float, high: float, unit: str = "°
     return array
 
 
-def _lines(
+def lines_of_sight(
     solar_elevation_deg: ArrayLike, view_elevation_deg: ArrayLike, relative_azimuth_deg: ArrayLike
 ) -> tuple[tuple[int, ...], Lines]:
+    """The shape that angles [degrees] broadcast to, and their lines of sight one by one. Raises InputError."""
     angles = np.broadcast_arrays(
         within("solar elevation", solar_elevation_deg, LOWEST_SUN_DEG, 90),
         within("view elevation", view_elevation_deg, -90, 90),

@@ -1,8 +1,9 @@
 """The sky of one atmosphere on the nodes that colour is made from.
 
 Light scattered once is computed at every node; light scattered more often at eleven wavelengths, its logarithm carried
-to the nodes by a cubic spline (and the ratios Q/I, U/I likewise). A spline cannot see the ozone bands between its
-knots: of each logarithm that multiple of the ozone cross-section is split off which leaves the smoothest rest.
+to the nodes by a cubic spline (and the ratios Q/I, U/I likewise). A spline cannot see the bands of ozone and of oxygen
+pairs between its knots: of each logarithm those multiples of their cross-sections are split off which leave the
+smoothest rest. Lines of water vapour and oxygen weaken both by the path of the light scattered once.
 """
 
 from dataclasses import dataclass, replace
@@ -13,10 +14,13 @@ from numpy.typing import ArrayLike, NDArray
 
 from skychart.config import AirSettings
 from skychart.sky import gases
+from skychart.sky.air import standard_air
 from skychart.sky.atmosphere import Atmosphere
 from skychart.sky.interpolation import spline_matrix
+from skychart.sky.line_paths import LinePaths
+from skychart.sky.lines import band_shares
 from skychart.sky.observer import Station
-from skychart.sky.sky import Sky, solve
+from skychart.sky.sky import Sky, lines_of_sight, over_hemisphere, solve
 
 Array = NDArray[np.float64]
 
@@ -35,6 +39,7 @@ class SpectralSky:
     settings: AirSettings
     every_order: Sky
     once: Sky
+    paths: LinePaths
 
     @property
     def wavelength_nm(self) -> Array:
@@ -45,56 +50,96 @@ class SpectralSky:
         self, solar_elevation_deg: ArrayLike, view_elevation_deg: ArrayLike, relative_azimuth_deg: ArrayLike
     ) -> Array:
         """I, Q, U of the diffuse light [1/sr] per unit solar irradiance, (..., 3, 48). Raises InputError."""
-        view = solar_elevation_deg, view_elevation_deg, relative_azimuth_deg, self.settings.altitude_km
-        multiple = self.every_order.multiple(*view)
+        angles = solar_elevation_deg, view_elevation_deg, relative_azimuth_deg
+        altitude = self.settings.altitude_km
+        multiple = self.every_order.multiple(*angles, altitude)
         radiance = multiple[..., :1, :]
         ratios = multiple[..., 1:, :] / np.maximum(radiance, _DARKEST)
         radiance = _to_nodes(radiance)
-        return self.once.single(*view) + np.concatenate([radiance, radiance * (ratios @ _SPLINE.T)], axis=-2)
+        light = self.once.single(*angles, altitude) + np.concatenate(
+            [radiance, radiance * (ratios @ _SPLINE.T)], axis=-2
+        )
+        shape, lines = lines_of_sight(*angles)
+        return light * self.paths.factor(lines).reshape(*shape, 1, -1)
 
     def beam(self, solar_elevation_deg: ArrayLike) -> Array:
-        """Direct transmission from the sun, (..., 48)."""
-        return self.once.beam(solar_elevation_deg, self.settings.altitude_km)
+        """Direct light of the sun on a plane that faces it, over that outside the air, (..., 48)."""
+        zenith = np.radians(90 - np.asarray(solar_elevation_deg, dtype=float))
+        return self.once.beam(solar_elevation_deg, self.settings.altitude_km) * self.paths.beam(zenith)
 
     def ground_irradiance(self, solar_elevation_deg: ArrayLike) -> tuple[Array, Array]:
         """Diffuse and direct irradiance of a horizontal plane per unit solar irradiance, each (..., 48)."""
-        place = solar_elevation_deg, self.settings.altitude_km
-        multiple = _to_nodes(self.every_order.multiple_irradiance(*place))
-        return self.once.single_irradiance(*place) + multiple, self.once.direct_irradiance(*place)
+        diffuse = over_hemisphere(self.stokes, solar_elevation_deg)
+        height = np.sin(np.radians(self.apparent_elevation_deg(solar_elevation_deg)))
+        return diffuse, np.maximum(height, 0)[..., None] * self.beam(solar_elevation_deg)
+
+    def apparent_elevation_deg(self, solar_elevation_deg: ArrayLike) -> Array:
+        """Elevation [degrees] of the refracted sun's centre, (...); below the horizon, where it would stand."""
+        return self.every_order.apparent_elevation_deg(solar_elevation_deg, self.settings.altitude_km)
 
 
 def solve_spectral(settings: AirSettings) -> SpectralSky:
     """Solve the sky of ``settings``. Raises InputError."""
     sky = solve(_air(settings, MULTIPLE_NM))
     air = _air(settings, NODES_NM)
-    ozone = gases.ozone_layers(air.level_altitude_km, settings.ozone_du)
-    air = replace(air, absorption_depth=ozone[:, None] * _fitted_ozone())
-    station = Station.of(air, sky.ground.shells.altitude_km)
-    return SpectralSky(settings, sky, Sky(air, station, sky.light))
+    depth = np.zeros_like(air.absorption_depth)
+    for layers, (_, strength) in zip(_amounts(settings, air.level_altitude_km), _bands(), strict=True):
+        depth += layers[:, None] * strength
+    boundaries, altitude = sky.ground.shells.altitude_km, settings.altitude_km
+    station = Station.of(replace(air, absorption_depth=depth), np.union1d(boundaries, altitude), altitude)
+    paths = LinePaths.of(station, NODES_NM, settings.water_cm, settings.pressure_hpa)
+    once = Sky(replace(air, absorption_depth=depth), replace(station, start=0), sky.light)
+    return SpectralSky(settings, sky, once, paths)
 
 
 def _to_nodes(light: Array) -> Array:
     """Positive ``light`` (..., 11) at the wavelengths of multiple scattering carried to the nodes, (..., 48)."""
     log = np.log(np.maximum(light, _DARKEST))
-    bands = gases.ozone_cross_section(MULTIPLE_NM)
-    bends = np.diff(bands, n=3)
-    depth = (np.diff(log, n=3) @ bends / (bends @ bends))[..., None]
-    return np.exp((log - depth * bands) @ _SPLINE.T + depth * _fitted_ozone())
+    sampled, fine = (np.stack(part) for part in zip(*_bands()[:2], strict=True))
+    strongest = sampled.max(axis=1, keepdims=True)
+    sampled, fine = sampled / strongest, fine / strongest
+    depth = np.diff(log, n=3) @ np.linalg.pinv(np.diff(sampled, n=3))
+    return np.exp((log - depth @ sampled) @ _SPLINE.T + depth @ fine)
 
 
 _SPLINE = spline_matrix(MULTIPLE_NM, NODES_NM)
 
 
 @cache
-def _fitted_ozone() -> Array:
-    """Ozone cross-section [m2] on the nodes whose spline follows the 1 nm table best, in least squares.
+def _bands() -> tuple[tuple[Array, Array], ...]:
+    """Absorption by ozone, oxygen pairs and NO2: at the wavelengths of multiple scattering, and made for the nodes.
 
-    Sampled at the nodes alone, the Chappuis bands' structure would move the direct light by 2e-4 in xy.
+    Ozone: so that the nodes' spline follows the 1 nm table best, in least squares; sampled at the nodes alone, the
+    Chappuis bands' structure would move the direct light by 2e-4 in xy. The others: means over a node's width.
     """
     fine = np.arange(NODES_NM[0], NODES_NM[-1] + 1)
-    fitted, *_ = np.linalg.lstsq(spline_matrix(NODES_NM, fine), gases.ozone_cross_section(fine), rcond=None)
-    return np.maximum(fitted, 0)
+    ozone, *_ = np.linalg.lstsq(spline_matrix(NODES_NM, fine), gases.ozone_cross_section(fine), rcond=None)
+    shares = band_shares(NODES_NM)
+    return (
+        (gases.ozone_cross_section(MULTIPLE_NM), np.maximum(ozone, 0)),
+        (gases.o2_o2_coefficient(MULTIPLE_NM), shares @ gases.o2_o2_coefficient(fine)),
+        (gases.no2_cross_section(MULTIPLE_NM), shares @ gases.no2_cross_section(fine)),
+    )
+
+
+def _amounts(settings: AirSettings, altitude_km: Array) -> tuple[Array, ...]:
+    """Amounts in each layer of what ``_bands`` absorb, in its order."""
+    _, density = standard_air(settings.pressure_hpa)
+    return (
+        gases.ozone_layers(altitude_km, settings.ozone_du),
+        gases.o2_o2_layers(altitude_km, density),
+        gases.no2_layers(altitude_km, settings.no2_du),
+    )
 
 
 def _air(settings: AirSettings, wavelength_nm: Array) -> Atmosphere:
-    return Atmosphere.standard(wavelength_nm, settings.ozone_du, settings.ground_albedo)
+    return Atmosphere.standard(
+        wavelength_nm,
+        settings.ozone_du,
+        settings.ground_albedo,
+        haze=None if settings.haze == "none" else settings.haze,
+        haze_depth_550=settings.haze_depth_550,
+        haze_scale_height_km=settings.haze_scale_height_km,
+        no2_du=settings.no2_du,
+        pressure_hpa=settings.pressure_hpa,
+    )
