@@ -58,8 +58,21 @@ def test_standard_air_has_the_depths_of_its_parts() -> None:
     """Rayleigh depth at 550 nm 0.0971 (Bodhaine et al. 1999 eq. 30: 0.09707); ozone scales with its column."""
     air = Atmosphere.standard([550.0, 600.0])
     assert air.rayleigh_depth.sum(axis=0)[0] == pytest.approx(0.09707, rel=5e-3)
-    more = Atmosphere.standard([550.0, 600.0], ozone_du=450)
-    np.testing.assert_allclose(more.absorption_depth, 1.5 * air.absorption_depth)
+    none, more = (Atmosphere.standard([550.0, 600.0], ozone_du=column).absorption_depth for column in (0, 450))
+    np.testing.assert_allclose(more - none, 1.5 * (air.absorption_depth - none))
+
+
+def test_standard_air_takes_haze_gases_pressure_and_ground_by_name() -> None:
+    """Each argument reaches its own array."""
+    air = Atmosphere.standard([550.0], haze="average", haze_depth_550=0.2, ground_albedo="grass", pressure_hpa=800)
+    assert air.haze is not None
+    assert air.haze.depth.sum() == pytest.approx(0.2, rel=1e-3)
+    assert 0.02 < air.ground_albedo[0] < 0.2
+    plain = Atmosphere.standard([550.0])
+    assert air.rayleigh_depth.sum() == pytest.approx(plain.rayleigh_depth.sum() * 800 / 1013.25)
+    assert air.refractivity == pytest.approx(plain.refractivity * 800 / 1013.25)
+    town = Atmosphere.standard([450.0], no2_du=0.5).absorption_depth - Atmosphere.standard([450.0]).absorption_depth
+    assert town.sum() > 0.003
 
 
 @pytest.mark.parametrize("ozone", [-1.0, 1001.0, float("nan")])
