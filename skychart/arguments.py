@@ -11,7 +11,7 @@ from pathlib import Path
 from typing import Any, NamedTuple
 
 from skychart.config import (
-    DEFAULT_SETTINGS,
+    NAMED_AIRS,
     SOLAR_ELEVATION_DEG,
     AirSettings,
     Quantity,
@@ -118,8 +118,7 @@ def _describe_build(command: argparse.ArgumentParser) -> None:
 def _describe_read(command: argparse.ArgumentParser) -> None:
     for option, quantity in READ_ANGLES.items():
         command.add_argument(option, metavar="DEGREES", help=f"{quantity.meaning}, {quantity}; needed")
-    names = ", ".join(air.name for air in DEFAULT_SETTINGS.atmospheres)
-    first = DEFAULT_SETTINGS.atmospheres[0].name
+    names, first = ", ".join(NAMED_AIRS), next(iter(NAMED_AIRS))
     command.add_argument("--atmosphere", metavar="NAME", default=first, help=f"one of: {names}; default: {first}")
     command.add_argument("--json", action="store_true", help="print one JSON object instead of the list")
     needed = " ".join(f"{option} DEGREES" for option in READ_ANGLES)

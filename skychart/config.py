@@ -18,6 +18,15 @@ from typing import Any, NamedTuple
 from skychart.errors import ConfigError, InputError
 
 OBSERVERS = ("cie-1931-2", "cie-1964-10", "cie-2015-2", "cie-2015-10")
+NO_HAZE = "none"
+HAZES = ("clean", "average", "hazy", "maritime", "dusty")
+"""Kinds of haze that the physics knows, `skychart.sky.haze_types.HAZE_TYPES`."""
+
+GROUNDS = (
+    *("grass", "lawn", "loam", "sand", "stubble", "concrete-dry", "concrete-wet"),
+    *("snow-2cm", "snow-dry-fresh", "snow-model", "water"),
+)
+"""Grounds that the physics knows by name, `skychart.sky.ground.ground_names()`."""
 
 
 class Quantity(NamedTuple):
@@ -34,20 +43,27 @@ class Quantity(NamedTuple):
 
 SOLAR_ELEVATION_DEG = Quantity("geometric elevation of the sun above the horizon", -12, 90, "degrees")
 AIR_QUANTITIES: Mapping[str, Quantity] = {
+    "haze_depth_550": Quantity("optical depth of the haze at 550 nm", 0, 2),
+    "haze_scale_height_km": Quantity("height over which the haze thins to 1/e", 0.3, 10, "km"),
     "ozone_du": Quantity("ozone column", 100, 600, "Dobson units"),
+    "water_cm": Quantity("water vapour, as the depth of rain it would make", 0, 10, "cm"),
+    "no2_du": Quantity("nitrogen dioxide column", 0, 2, "Dobson units"),
+    "pressure_hpa": Quantity("pressure at sea level", 500, 1080, "hPa"),
     "ground_albedo": Quantity("share of the light that the ground returns", 0, 1),
     "altitude_km": Quantity("height of the observer above sea level", 0, 20, "km"),
 }
+_HAZE_QUANTITIES = ("haze_depth_550", "haze_scale_height_km")
 
 _DEFAULT_ELEVATIONS_DEG = (
     *(-12.0, -10.0, -8.0, -6.0, -5.0, -4.0, -3.0, -2.0, -1.0, 0.0, 1.0, 2.0, 3.0, 4.0, 5.0, 6.0, 8.0, 10.0),
     *(12.0, 15.0, 20.0, 25.0, 30.0, 40.0, 50.0, 60.0, 75.0, 90.0),
 )
+_DEFAULT_AIRS = ("molecular", "clear", "hazy")
 _MOST_ELEVATIONS = 181
 _STEPS_PER_DEGREE = 10
 _NAME = re.compile(r"[a-z0-9-]{1,24}")
-_RESERVED_NAMES = frozenset({"static"})  # a site keeps its stylesheet and scripts in a folder of this name
-_NAME_RULE = "1 to 24 of the characters a-z, 0-9 and -, not 'static'"
+_RESERVED_NAMES = frozenset({"static", "compare"})  # folders of a site that belong to no atmosphere
+_NAME_RULE = "1 to 24 of the characters a-z, 0-9 and -, not 'static' or 'compare'"
 _MOST_BYTES = 1_000_000
 _LONGEST_VALUE_SHOWN = 40
 _TOP_KEYS = ("observer", "solar_elevations_deg", "atmosphere")
@@ -65,6 +81,11 @@ solar_elevations_deg = [
 
 # One table for each atmosphere. Its name is part of the addresses of its pages:
 # {name_rule}.
+# haze is one of: {hazes}. Depth and scale height go with a haze only;
+# left out, they are those of its kind.
+# ground_albedo is a grey share of light or one of:
+{grounds}.
+
 {atmospheres}"""
 
 
@@ -73,14 +94,26 @@ class AirSettings:
     """One atmosphere; checked when made, ConfigError naming every fault.
 
     name: appears in addresses of pages, 1 to 24 of a-z, 0-9 and "-".
+    haze: its kind, one of `HAZES`, or "none".
+    haze_depth_550: optical depth at 550 nm from sea level up, 0 to 2; None: that of the kind, or no haze.
+    haze_scale_height_km: over which haze thins to 1/e [km], 0.3 to 10; None: that of the kind, or no haze.
     ozone_du: ozone column [Dobson units], 100 to 600.
-    ground_albedo: share of light that the ground returns, the same at all wavelengths, 0 to 1.
+    water_cm: column of water vapour, as liquid [cm], 0 to 10.
+    no2_du: column of nitrogen dioxide [Dobson units], 0 to 2.
+    pressure_hpa: at sea level [hPa], 500 to 1080.
+    ground_albedo: share of light that the ground returns, 0 to 1 at all wavelengths, or one of `GROUNDS`.
     altitude_km: of the observer above sea level [km], 0 to 20.
     """
 
     name: str = "molecular"
+    haze: str = NO_HAZE
+    haze_depth_550: float | None = None
+    haze_scale_height_km: float | None = None
     ozone_du: float = 300.0
-    ground_albedo: float = 0.18
+    water_cm: float = 1.42
+    no2_du: float = 0.0
+    pressure_hpa: float = 1013.25
+    ground_albedo: float | str = 0.18
     altitude_km: float = 0.0
 
     def __post_init__(self) -> None:
@@ -88,7 +121,9 @@ class AirSettings:
         if faults:
             raise ConfigError(faults)
         for key in AIR_QUANTITIES:
-            object.__setattr__(self, key, _plain_float(getattr(self, key)))
+            value = getattr(self, key)
+            if value is not None and not isinstance(value, str):
+                object.__setattr__(self, key, _plain_float(value))
 
 
 @dataclass(frozen=True)
@@ -101,7 +136,7 @@ class Settings:
     observer: standard colorimetric observer, one of `OBSERVERS`.
     """
 
-    atmospheres: tuple[AirSettings, ...] = field(default_factory=lambda: (AirSettings(),))
+    atmospheres: tuple[AirSettings, ...] = field(default_factory=lambda: tuple(map(named_air, _DEFAULT_AIRS)))
     solar_elevations_deg: tuple[float, ...] = _DEFAULT_ELEVATIONS_DEG
     observer: str = OBSERVERS[0]
 
@@ -119,11 +154,10 @@ class Settings:
 
 
 def named_air(name: str) -> AirSettings:
-    """The atmosphere that the default settings know by this name; InputError lists the known ones."""
-    known = {air.name: air for air in DEFAULT_SETTINGS.atmospheres}
-    if name not in known:
-        raise InputError(f"unknown atmosphere {shown(name)}; known: {', '.join(known)}")
-    return known[name]
+    """The atmosphere of `NAMED_AIRS` that has this name; InputError lists the known ones."""
+    if name not in NAMED_AIRS:
+        raise InputError(f"unknown atmosphere {shown(name)}; known: {', '.join(NAMED_AIRS)}")
+    return NAMED_AIRS[name]
 
 
 def load_settings(path: Path) -> Settings:
@@ -148,6 +182,8 @@ def default_toml() -> str:
         most_elevations=_MOST_ELEVATIONS,
         elevations=_wrapped(f"{value:g}," for value in DEFAULT_SETTINGS.solar_elevations_deg),
         name_rule=_NAME_RULE,
+        hazes=", ".join((NO_HAZE, *HAZES)),
+        grounds=_wrapped((", ".join(GROUNDS),), "# "),
         atmospheres="\n".join(_air_toml(air) for air in DEFAULT_SETTINGS.atmospheres),
     )
 
@@ -223,7 +259,7 @@ def _table_faults(tables: object) -> list[str]:
     faults = _atmosphere_count_faults(tables)
     for number, table in enumerate(tables, start=1):
         missing = [] if "name" in table else [f"name is missing, accepted is {_NAME_RULE}"]
-        own = [*_unknown_key_faults(table, ("name", *AIR_QUANTITIES)), *missing, *_air_faults(table)]
+        own = [*_unknown_key_faults(table, ("name", "haze", *AIR_QUANTITIES)), *missing, *_air_faults(table)]
         faults += [f"atmosphere {number}: {fault}" for fault in own]
     return faults + _repeated_name_faults(table["name"] for table in tables if _is_name(table.get("name")))
 
@@ -232,11 +268,24 @@ def _air_faults(values: Mapping[str, Any]) -> list[str]:
     faults = []
     if "name" in values and not _is_name(values["name"]):
         faults.append(f"name is {shown(values['name'])}, accepted is {_NAME_RULE}")
+    haze = values.get("haze", NO_HAZE)
+    if haze != NO_HAZE and haze not in HAZES:
+        faults.append(f"haze is {shown(haze)}, accepted is {_either((NO_HAZE, *HAZES))}")
     for key, quantity in AIR_QUANTITIES.items():
-        fault = number_fault(values[key], quantity) if key in values else None
+        fault = _quantity_fault(key, values.get(key), quantity)
         if fault:
             faults.append(f"{key} {fault}")
+        elif key in _HAZE_QUANTITIES and values.get(key) is not None and haze == NO_HAZE:
+            faults.append(f"{key} is {shown(values[key])}, accepted is a value only with a haze")
     return faults
+
+
+def _quantity_fault(key: str, value: Any, quantity: Quantity) -> str | None:
+    """What is wrong with a quantity of an atmosphere; None, where it was not given, is not."""
+    if value is None or (key == "ground_albedo" and value in GROUNDS):
+        return None
+    fault = number_fault(value, quantity)
+    return f"{fault}, or {_either(GROUNDS)}" if fault and key == "ground_albedo" else fault
 
 
 def _is_name(value: object) -> bool:
@@ -290,15 +339,37 @@ def _plain_float(value: float) -> float:
     return float(value) + 0.0
 
 
-def _wrapped(words: Iterable[str]) -> str:
-    return textwrap.fill(" ".join(words), width=80, initial_indent="    ", subsequent_indent="    ")
+def _wrapped(words: Iterable[str], indent: str = "    ") -> str:
+    text = " ".join(words)
+    return textwrap.fill(text, width=80, initial_indent=indent, subsequent_indent=indent, break_on_hyphens=False)
 
 
 def _air_toml(air: AirSettings) -> str:
-    lines = ["[[atmosphere]]", f'name = "{air.name}"']
+    lines = ["[[atmosphere]]", f'name = "{air.name}"', _toml_line("haze", f'"{air.haze}"', "its kind")]
     for key, quantity in AIR_QUANTITIES.items():
-        lines.append(f"{key + ' = ' + format(getattr(air, key), 'g'):<22}# {quantity.meaning}, {quantity}")
+        value, about = getattr(air, key), f"{quantity.meaning}, {quantity}"
+        unset = value is None
+        example = getattr(NAMED_AIRS["clear"], key) if unset else value
+        lines.append("# " * unset + _toml_line(key, format(example, ".8g"), about))
     return "\n".join(lines) + "\n"
 
 
-DEFAULT_SETTINGS = Settings()  # at the end, for the checks above must exist when it is made
+def _toml_line(key: str, value: str, about: str) -> str:
+    return f"{f'{key} = {value}':<28}# {about}"
+
+
+# At the end, for the checks above must exist when these are made.
+NAMED_AIRS: Mapping[str, AirSettings] = {
+    air.name: air
+    for air in (
+        AirSettings(),
+        AirSettings("clear", "clean", 0.05, 2),
+        AirSettings("average", "average", 0.15, 2),
+        AirSettings("hazy", "hazy", 0.4, 2),
+        AirSettings("maritime", "maritime", 0.1, 1),
+        AirSettings("dusty", "dusty", 0.4, 2),
+    )
+}
+"""The atmospheres that have a name of their own; those of a site by default are among them."""
+
+DEFAULT_SETTINGS = Settings()

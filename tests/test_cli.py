@@ -197,7 +197,7 @@ FAULTY_LINES = [
             f"--sun is -13, {SUN}",
             f"--elevation is 91, {VIEW}",
             f"--azimuth is missing, {AZIMUTH}",
-            "unknown atmosphere 'fog'; known: molecular",
+            "unknown atmosphere 'fog'; known: molecular, clear, average, hazy, maritime, dusty",
         ],
     ),
     ("read --json=yes", ["--json takes no value"]),
@@ -348,7 +348,7 @@ def test_help_gives_range_and_default_of_every_value(skychart_command) -> None:
     text = " ".join(skychart_command("read", "--help").out.split())
     for quantity in READ_ANGLES.values():
         assert f"{quantity.meaning}, {quantity}; needed" in text
-    assert "one of: molecular; default: molecular" in text
+    assert "one of: molecular, clear, average, hazy, maritime, dusty; default: molecular" in text
     assert "1 to 64; default: as many as processors" in " ".join(skychart_command("build", "--help").out.split())
 
 

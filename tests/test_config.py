@@ -11,6 +11,10 @@ from hypothesis import strategies as st
 from skychart.config import (
     AIR_QUANTITIES,
     DEFAULT_SETTINGS,
+    GROUNDS,
+    HAZES,
+    NAMED_AIRS,
+    NO_HAZE,
     OBSERVERS,
     SOLAR_ELEVATION_DEG,
     AirSettings,
@@ -21,12 +25,17 @@ from skychart.config import (
     shown,
 )
 from skychart.errors import ConfigError, InputError
+from skychart.sky.ground import ground_names
+from skychart.sky.haze_types import HAZE_TYPES
 
 BOUNDS = [
     pytest.param(key, bound, id=f"{key}-{bound}")
     for key, quantity in AIR_QUANTITIES.items()
     for bound in (quantity.low, quantity.high)
 ]
+
+
+HAZE_KEYS = {"haze_depth_550", "haze_scale_height_km"}
 
 
 @pytest.fixture
@@ -45,8 +54,12 @@ def faults_of(path: Path) -> list[str]:
     return [fault.removeprefix(f"{path}: ") for fault in faults]
 
 
-def test_the_defaults_are_the_28_sun_elevations_of_plain_air() -> None:
-    assert DEFAULT_SETTINGS.atmospheres == (AirSettings("molecular", 300.0, 0.18, 0.0),)
+def test_the_defaults_are_the_28_sun_elevations_of_three_airs() -> None:
+    assert [air.name for air in DEFAULT_SETTINGS.atmospheres] == ["molecular", "clear", "hazy"]
+    assert DEFAULT_SETTINGS.atmospheres[0] == AirSettings(
+        name="molecular", haze="none", ozone_du=300, water_cm=1.42, no2_du=0, pressure_hpa=1013.25, ground_albedo=0.18,
+        altitude_km=0,
+    )  # fmt: skip
     assert DEFAULT_SETTINGS.observer == "cie-1931-2"
     twilight, low = [-12, -10, -8, -6, -5, -4, -3, -2, -1], [0, 1, 2, 3, 4, 5, 6, 8, 10, 12, 15]
     assert list(DEFAULT_SETTINGS.solar_elevations_deg) == [*twilight, *low, 20, 25, 30, 40, 50, 60, 75, 90]
@@ -60,7 +73,13 @@ def test_the_default_file_loads_back_to_the_defaults(path: Path) -> None:
 def test_the_default_file_names_every_setting_and_its_range() -> None:
     document = tomllib.loads(default_toml())
     assert set(document) == {"observer", "solar_elevations_deg", "atmosphere"}
-    assert set(document["atmosphere"][0]) == {field.name for field in dataclasses.fields(AirSettings)}
+    fields = {field.name for field in dataclasses.fields(AirSettings)}
+    plain, *hazy = document["atmosphere"]
+    assert [set(table) for table in hazy] == [fields, fields]
+    assert set(plain) == fields - HAZE_KEYS
+    assert all(f"# {key} = " in default_toml() for key in HAZE_KEYS)
+    for word in (NO_HAZE, *HAZES, *GROUNDS):
+        assert word in default_toml()
     for quantity in (*AIR_QUANTITIES.values(), SOLAR_ELEVATION_DEG):
         assert str(quantity) in default_toml()
     for observer in OBSERVERS:
@@ -88,17 +107,20 @@ def test_all_faults_of_a_file_are_told_at_once(path: Path) -> None:
         [[atmosphere]]
         name = "plain"
         ozone_du = 99
+        fog = 1
         haze = 1
         [[atmosphere]]
         name = "plain"
         altitude_km = inf
+        haze_depth_550 = 0.1
         [[atmosphere]]
         name = "static"
         ground_albedo = -0.1
         [[atmosphere]]
-        ground_albedo = "grass"
+        ground_albedo = "gras"
     """)
-    name_rule = "1 to 24 of the characters a-z, 0-9 and -, not 'static'"
+    grounds = f"{', '.join(GROUNDS[:-1])} or {GROUNDS[-1]}"
+    name_rule = "1 to 24 of the characters a-z, 0-9 and -, not 'static' or 'compare'"
     assert faults_of(path) == [
         "unknown key 'observr'; known: observer, solar_elevations_deg, atmosphere",
         "observer is 'cie-1924', accepted is cie-1931-2, cie-1964-10, cie-2015-2 or cie-2015-10",
@@ -109,13 +131,15 @@ def test_all_faults_of_a_file_are_told_at_once(path: Path) -> None:
         "solar_elevations_deg holds 'x', accepted is -12 to 90 degrees in steps of 0.1",
         "solar_elevations_deg holds 2 more than once",
         "solar_elevations_deg holds 0 more than once",
-        "atmosphere 1: unknown key 'haze'; known: name, ozone_du, ground_albedo, altitude_km",
+        f"atmosphere 1: unknown key 'fog'; known: name, haze, {', '.join(AIR_QUANTITIES)}",
+        "atmosphere 1: haze is 1, accepted is none, clean, average, hazy, maritime or dusty",
         "atmosphere 1: ozone_du is 99, accepted is 100 to 600 Dobson units",
+        "atmosphere 2: haze_depth_550 is 0.1, accepted is a value only with a haze",
         "atmosphere 2: altitude_km is inf, accepted is 0 to 20 km",
         f"atmosphere 3: name is 'static', accepted is {name_rule}",
-        "atmosphere 3: ground_albedo is -0.1, accepted is 0 to 1",
+        f"atmosphere 3: ground_albedo is -0.1, accepted is 0 to 1, or {grounds}",
         f"atmosphere 4: name is missing, accepted is {name_rule}",
-        "atmosphere 4: ground_albedo is 'grass', accepted is 0 to 1",
+        f"atmosphere 4: ground_albedo is 'gras', accepted is 0 to 1, or {grounds}",
         "atmosphere name 'plain' is given more than once",
     ]
 
@@ -154,7 +178,7 @@ def test_a_fault_is_told_with_the_value_seen_and_what_is_accepted(path: Path, te
     assert faults_of(path) == [fault]
 
 
-@pytest.mark.parametrize("name", ["", "A", "a b", "../x", "x" * 25, "é", "a\n", "static"])
+@pytest.mark.parametrize("name", ["", "A", "a b", "../x", "x" * 25, "é", "a\n", "static", "compare"])
 def test_a_name_that_would_make_a_bad_address_is_refused(path: Path, name: str) -> None:
     path.write_text(f"[[atmosphere]]\nname = {_toml_string(name)}\n", encoding="utf-8")
     assert len(faults_of(path)) == 1
@@ -166,9 +190,9 @@ def test_a_name_that_would_make_a_bad_address_is_refused(path: Path, name: str) 
 def test_a_range_includes_its_ends_and_nothing_beyond(key: str, bound: float) -> None:
     quantity = AIR_QUANTITIES[key]
     step = 0.001 if bound == quantity.high else -0.001
-    assert getattr(AirSettings(**{key: bound}), key) == bound
-    with pytest.raises(ConfigError, match=rf"^{key} is .*, accepted is {quantity}$"):
-        AirSettings(**{key: bound + step})
+    assert getattr(AirSettings(haze="clean", **{key: bound}), key) == bound
+    with pytest.raises(ConfigError, match=rf"^{key} is .*, accepted is {quantity}(, or grass.*)?$"):
+        AirSettings(haze="clean", **{key: bound + step})
 
 
 def test_made_from_python_all_faults_are_told_as_well() -> None:
@@ -194,8 +218,27 @@ def test_whole_numbers_become_floats_so_that_pages_print_them_alike() -> None:
 
 def test_an_atmosphere_is_known_by_its_name() -> None:
     assert named_air("molecular") == AirSettings()
-    with pytest.raises(InputError, match=r"^unknown atmosphere 'fog'; known: molecular$"):
+    known = "molecular, clear, average, hazy, maritime, dusty"
+    with pytest.raises(InputError, match=rf"^unknown atmosphere 'fog'; known: {known}$"):
         named_air("fog")
+
+
+def test_kinds_of_haze_and_ground_are_those_of_the_physics() -> None:
+    assert tuple(HAZE_TYPES) == HAZES
+    assert ground_names() == GROUNDS
+
+
+def test_named_atmospheres_state_the_depth_and_height_of_their_kind_of_haze() -> None:
+    hazy = [air for air in NAMED_AIRS.values() if air.haze != NO_HAZE]
+    assert [air.haze_depth_550 for air in hazy] == [0.05, 0.15, 0.40, 0.10, 0.40]
+    for air in hazy:
+        kind = HAZE_TYPES[air.haze]
+        assert (air.haze_depth_550, air.haze_scale_height_km) == (kind.depth_550, kind.scale_height_km)
+
+
+def test_the_ground_is_a_share_or_a_name(path: Path) -> None:
+    path.write_text("[[atmosphere]]\nname = 'field'\nground_albedo = 'grass'\n")
+    assert load_settings(path).atmospheres[0].ground_albedo == "grass"
 
 
 def test_a_file_that_is_absent_is_told(path: Path) -> None:
@@ -254,8 +297,9 @@ def test_a_value_is_shown_on_one_short_line(value: object, text: str) -> None:
 airs = st.builds(
     AirSettings,
     name=st.text("abcdefghijklmnopqrstuvwxyz0123456789-", min_size=1, max_size=24).filter(
-        lambda name: name != "static"
+        lambda name: name not in ("static", "compare")
     ),
+    haze=st.sampled_from(HAZES),
     **{key: st.floats(quantity.low, quantity.high) for key, quantity in AIR_QUANTITIES.items()},
 )
 sound_settings = st.builds(
@@ -276,9 +320,9 @@ def test_sound_settings_survive_a_file(path: Path, wanted: Settings) -> None:
     assert load_settings(path) == wanted
 
 
-keys = st.sampled_from(["observer", "solar_elevations_deg", "atmosphere", "name", *AIR_QUANTITIES, "hue", '"ö"'])
+keys = st.sampled_from(["observer", "solar_elevations_deg", "atmosphere", "name", "haze", *AIR_QUANTITIES, "hue", '"ö"'])
 scalars = st.sampled_from(
-    ["0", "-13", "5", "1e400", "nan", "-inf", "true", "'molecular'", "''", "1979-05-27", "07:32:00"]
+    ["0", "-13", "5", "1e400", "nan", "-inf", "true", "'molecular'", "'clean'", "'grass'", "''", "1979-05-27", "07:32:00"]
 )
 values = st.recursive(
     scalars | st.floats(-20, 700).map(repr),
@@ -326,7 +370,7 @@ def _settings_or_faults(path: Path) -> tuple[Settings | None, tuple[str, ...]]:
 
 def _toml(wanted: Settings) -> str:
     tables = [
-        f"[[atmosphere]]\nname = {_toml_string(air.name)}\n"
+        f"[[atmosphere]]\nname = {_toml_string(air.name)}\nhaze = {_toml_string(air.haze)}\n"
         + "".join(f"{key} = {getattr(air, key)!r}\n" for key in AIR_QUANTITIES)
         for air in wanted.atmospheres
     ]
