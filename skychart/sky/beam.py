@@ -59,7 +59,7 @@ class SunTable:
             part = place - low
             refraction[start] = bent[low] + part * (bent[low + 1] - bent[low])
             depth = rays.depth(start, cosine)
-            depth -= np.log(rays.thinned(start, np.radians(computed)))[:, None]
+            depth -= np.log(_thinned(np.radians(computed), bent, lowest[start]))[:, None]
             values[start] = np.exp(-(depth[low] + part[:, None] * (depth[low + 1] - depth[low])))
 
         with ThreadPoolExecutor(THREADS) as pool:
@@ -82,6 +82,17 @@ class SunTable:
         """Apparent zenith angle [rad] of the sun at ``boundary``, by its geometric one; broadcasts."""
         place = np.degrees(zenith_angle) / _STEP_DEG
         return zenith_angle - np.interp(place, np.arange(self.values.shape[1]), self.refraction[boundary])
+
+
+def _thinned(angle: Array, refraction: Array, lowest: float) -> Array:
+    """``BentRays.thinned`` from refraction known at apparent zenith angles; past the grazing ray, what that one has."""
+    clear = angle <= lowest
+    stretch = 1 + np.gradient(refraction[clear], angle[clear])
+    seen, true = np.sin(angle[clear]), np.sin((angle + refraction)[clear])
+    thinned = np.ones_like(angle)
+    thinned[clear] = np.where(true > 0, seen / np.where(true > 0, true, 1), 1 / stretch) / stretch
+    thinned[~clear] = thinned[clear][-1]
+    return thinned
 
 
 def _computed_angles(uniform: Array) -> Array:

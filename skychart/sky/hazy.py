@@ -20,7 +20,7 @@ from skychart.sky.field import Field
 from skychart.sky.grid import Grid, solar_zenith_nodes_deg
 from skychart.sky.haze import Haze
 from skychart.sky.interpolation import spline_matrix
-from skychart.sky.local import FlatAir, FlatField, one_scattering, solve_closure, solve_flat
+from skychart.sky.local import FlatAir, FlatField, one_scattering, solve_closure, solve_flat, through_peak
 from skychart.sky.local.streams import MOMENTS, legendre
 from skychart.sky.molecular import solve_field
 from skychart.sky.observer import Lines, Station
@@ -39,7 +39,8 @@ _FLAT_KM = np.concatenate(
         [4, 5, 6, 7, 8, 9, 10, 11, 12, 15, 18, 22, 27, 35, 50, 80],
     ]
 )
-_LOWEST_FLAT_SUN_DEG = 97.0
+_LOWEST_FLAT_SUN_DEG = 97
+_WHOLE = 1e-6  # degrees
 _LOWEST_VIEW = 0.01  # cosine of zenith angle: flat air has no horizon
 
 
@@ -104,25 +105,26 @@ class HazyLight:
             raise TypeError("a station in air without haze")
         remainder = replace(station, table=station.beyond)
         molecules = self.scatterers._replace(forward=None)
-        light = remainder.single(lines, molecules, _haze(self.air).phase_at)
+        light = remainder.single(lines, molecules, through_peak(_haze(self.air), 2, _haze(self.air).peak).phase_at)
         return light + station.multiple(self.field, lines, molecules, self.air.ground_albedo, self.scattered)
 
     def correction(self, lines: Lines, altitude_km: float = 0.0) -> Array:
         """F / G of flat air for the same sun and direction at the boundary nearest the altitude, (line, wavelength)."""
         boundary = int(np.argmin(np.abs(self.flat_altitude_km - altitude_km)))
-        node = _flat_suns()
         down = np.where(lines.view_cosine < 0, -1.0, 1.0)
         view, which = np.unique(down * np.maximum(np.abs(lines.view_cosine), _LOWEST_VIEW), return_inverse=True)
-        pairs = np.stack([which, np.round(np.cos(lines.relative_azimuth), 12)], axis=1)
-        distinct, pair = np.unique(pairs, axis=0, return_inverse=True)
-        sun, number, azimuth = np.arange(len(node)), distinct[:, 0].astype(int), np.arccos(distinct[:, 1])
-        full, closed = (
-            one_scattering(light, view, boundary).stokes(sun[:, None], number, azimuth)[..., 0, :]
-            for light in (self.full, self.closed)
-        )
-        between = spline_matrix(node, np.minimum(lines.solar_zenith, node[-1]))
-        ratio = full / closed
-        return np.einsum("ls,slw->lw", between, ratio[:, pair.ravel()])
+        full, closed = (one_scattering(light, view, boundary) for light in (self.full, self.closed))
+
+        def ratio(sun: NDArray[np.intp]) -> Array:
+            angles = sun, which, lines.relative_azimuth
+            return full.stokes(*angles)[:, 0] / closed.stokes(*angles)[:, 0]
+
+        place = np.minimum(np.degrees(lines.solar_zenith), _LOWEST_FLAT_SUN_DEG)
+        sun = np.floor(np.round(place, 9)).astype(np.intp)
+        part = (place - sun)[:, None]
+        if np.abs(part).max(initial=0) < _WHOLE:
+            return ratio(sun)
+        return (1 - part) * ratio(sun) + part * ratio(np.minimum(sun + 1, _LOWEST_FLAT_SUN_DEG))
 
 
 def solve_hazy(air: Atmosphere, typical: int) -> HazyLight:
@@ -149,9 +151,8 @@ def solve_hazy(air: Atmosphere, typical: int) -> HazyLight:
 
 
 def _flat_suns() -> Array:
-    """Zenith angles [rad] at which flat air is solved: while the sun still lights some of the air above the place."""
-    nodes = solar_zenith_nodes_deg()
-    return np.radians(nodes[nodes <= _LOWEST_FLAT_SUN_DEG])
+    """Zenith angles [rad] at which flat air is solved: every degree while the sun lights some of the air above."""
+    return np.radians(np.arange(_LOWEST_FLAT_SUN_DEG + 1))
 
 
 def _haze(air: Atmosphere) -> Haze:

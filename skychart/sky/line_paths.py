@@ -1,4 +1,4 @@
-"""Lines of water vapour and oxygen in the sky's light, by the path from the sun over the point of scattering to the eye.
+"""Lines of water vapour and oxygen in the sky's light: by the path from sun over the point of scattering to the eye.
 
 Light scattered once is weakened by the lines along exactly that path, a mean over the line of sight; the same factor
 is given to all other light of that direction. Where nothing is scattered once it is that of the line of sight itself.

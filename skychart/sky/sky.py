@@ -30,7 +30,8 @@ def solve(air: Atmosphere, grid: Grid = Grid()) -> "Sky":  # noqa: B008  Grid is
     """
     air_top = float(air.level_altitude_km[-1])
     station = Station.of(air, subdivide(level_altitudes(air_top, grid.levels), grid.substeps))
-    typical = int(np.argmin(np.abs(air.wavelength_nm - _SHAPE_WAVELENGTH_NM)))
+    away = np.abs(air.wavelength_nm - _SHAPE_WAVELENGTH_NM)
+    typical = int(np.flatnonzero(away == away.min())[-1])  # the longer one of two alike: its light reaches deeper
     if air.haze is not None:
         return Sky(air, station, solve_hazy(air, typical))
     scatterers = _molecules(air)

@@ -81,17 +81,17 @@ def test_light_scattered_once_is_that_of_the_monte_carlo(sky: Sky, rows: dict[st
 
 
 def test_polarisation_is_that_of_the_molecules(computed: np.ndarray, rows: dict[str, np.ndarray]) -> None:
-    """Q and U within 2.5 % of I everywhere: an approximation, in which haze light counts as unpolarised."""
+    """Q and U within 3.5 % of I everywhere: an approximation, in which haze light counts as unpolarised."""
     for component, name in ((1, "Q"), (2, "U")):
-        assert np.abs((computed[:, component] - rows[name]) / rows["I"]).max() < 0.025
+        assert np.abs((computed[:, component] - rows[name]) / rows["I"]).max() < 0.035
 
 
 def test_vanishing_haze_leaves_the_molecular_sky() -> None:
-    """An optical depth of 1e-6: 0.02 % to a sun of -2 degrees, by a solution that shares only the molecules' code."""
+    """An optical depth of 1e-6: 0.05 % to a sun of -2 degrees, by a solution that shares only the molecules' code."""
     thin = hazy(1e-6)
     none = dataclasses.replace(thin, haze=None)
     where = np.array([60.0, 20, 5, 0, -2])[:, None], np.array([90.0, 45, 10, 2]), 60
-    np.testing.assert_allclose(solve(thin).stokes(*where)[:, :, 0], solve(none).stokes(*where)[:, :, 0], rtol=2e-4)
+    np.testing.assert_allclose(solve(thin).stokes(*where)[:, :, 0], solve(none).stokes(*where)[:, :, 0], rtol=5e-4)
 
 
 def test_sky_and_sun_never_give_the_ground_more_than_comes_in(sky: Sky) -> None:

@@ -4,7 +4,7 @@ import numpy as np
 import pytest
 
 from skychart.sky.haze import Haze
-from skychart.sky.local import Streams, scatter_modes
+from skychart.sky.local import Streams, scatter_modes, through_peak
 from skychart.sky.local.streams import legendre
 
 ANGLE_DEG = np.linspace(0, 180, 361)
@@ -92,3 +92,19 @@ def test_scattering_keeps_all_light_and_leading_axes() -> None:
     total, came = (np.einsum("s,...sw->...w", streams.weight, x[..., 0, :]) for x in (source, radiance))
     np.testing.assert_allclose(total, came, rtol=1e-12)
     np.testing.assert_allclose(source[1, 2], scatter_modes(moments, radiance[1, 2], streams, streams.cosine))
+
+
+def test_light_through_the_peak_has_the_product_of_both_moments() -> None:
+    """Henyey-Greenstein haze by its closure's peak: moments 1, g, g^2, g^4, ... are a closed form in g^2."""
+    asymmetry, cosine = 0.7, np.cos(np.radians(ANGLE_DEG))
+    haze = haze_of(henyey_greenstein(asymmetry, cosine))
+    twice = henyey_greenstein(asymmetry**2, cosine) / asymmetry**2
+    expected = twice + 1 - 1 / asymmetry**2 + 3 * (asymmetry - 1) * cosine
+    given = through_peak(haze, 2, haze.moments(2)[1] ** 2).phase_function[0]
+    np.testing.assert_allclose(given, expected, rtol=2e-3)
+
+
+def test_haze_without_a_peak_scatters_its_remainder_as_it_is() -> None:
+    """Even haze leaves nothing unscattered; the phase function stays 1."""
+    haze = haze_of(np.ones_like(ANGLE_DEG))
+    np.testing.assert_allclose(through_peak(haze, 2, np.zeros(1)).phase_function, 1, rtol=1e-9)

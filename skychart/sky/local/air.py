@@ -1,6 +1,6 @@
 """Flat air for the local solver: each place taken as flat, its direct light as it truly arrives."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -10,6 +10,8 @@ from skychart.sky.haze import Haze
 Array = NDArray[np.float64]
 
 _ISOTROPIC = 1e-6
+_SMOOTH_MOMENTS = 128  # of light scattered twice, forward by the peak and then by all the haze
+_LEAST = 1e-3
 
 
 @dataclass(frozen=True, eq=False)
@@ -40,12 +42,14 @@ class Optics:
 
     ``scattering`` (species, layer, wavelength), molecules first, and ``extinction`` (layer, wavelength): vertical
     optical depths. ``moments`` (moment, wavelength) of the haze's phase function. ``beam`` (boundary, sun, wavelength).
+    ``remainder``: phase function that the beam's unscattered remainder is scattered by.
     """
 
     scattering: Array
     extinction: Array
     moments: Array
     beam: Array
+    remainder: Haze
 
 
 def peak_fraction(haze: Haze) -> Array:
@@ -55,6 +59,21 @@ def peak_fraction(haze: Haze) -> Array:
     doi:10.1175/1520-0469(1976)033<2452:TDEAFR>2.0.CO;2.
     """
     return haze.moments(2)[1] ** 2
+
+
+def through_peak(haze: Haze, moments: int, fraction: Array) -> Haze:
+    """The haze with the phase function of light that its forward peak has scattered before.
+
+    The peak is the ``fraction`` (wavelength,) taken for unscattered where ``moments`` moments are kept: it has moments
+    of 1 below ``moments``, and chi_l / fraction from there. Nakajima & Tanaka 1988, Algorithms for radiative intensity
+    calculations, doi:10.1016/0022-4073(88)90031-3, correct secondary scattering by the same products.
+    """
+    chi = haze.moments(_SMOOTH_MOMENTS)
+    degree = np.arange(_SMOOTH_MOMENTS)[:, None]
+    peak = np.clip(chi / np.maximum(fraction, _ISOTROPIC), 0, 1)
+    series = (2 * degree + 1) * chi * np.where(degree < moments, 1, peak)
+    phase = np.polynomial.legendre.legval(np.cos(np.radians(haze.scattering_angle_deg)), series)
+    return replace(haze, phase_function=np.maximum(phase, _LEAST))
 
 
 def unscaled(air: FlatAir, moments: int) -> Optics:
@@ -87,4 +106,5 @@ def _optics(air: FlatAir, moments: Array, fraction: Array, beam: Array) -> Optic
     haze = air.haze.depth * air.haze.single_scattering_albedo * (1 - fraction)
     absorbed = air.absorption_depth + air.haze.depth * (1 - air.haze.single_scattering_albedo)
     scattering = np.stack([air.rayleigh_depth, haze])
-    return Optics(scattering, scattering.sum(axis=0) + absorbed, moments, beam)
+    remainder = through_peak(air.haze, len(moments), fraction)
+    return Optics(scattering, scattering.sum(axis=0) + absorbed, moments, beam, remainder)

@@ -1,9 +1,9 @@
 """What an observer in flat air sees besides the light scattered once: one exact scattering of a solved field.
 
 The light that falls on a point is the field's, plus the beam its scaled haze let pass but the true haze does not,
-scaled beam minus true beam, in the sun's direction. It is scattered by the full phase function and gathered along the
-line of sight with the true extinction. Of the full field this is the multiply scattered light; of the closure it is the
-same in the closure's geometry-independent approximation.
+scaled beam minus true beam, about the sun's direction as the peak scatters it. All of it is scattered by the full phase
+function and gathered along the line of sight with the true extinction. From the full field this gives the multiply
+scattered light; from the closure's, what the closure makes of it.
 """
 
 from dataclasses import dataclass
@@ -12,6 +12,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from skychart.sky.dipole import molecular_coefficients
+from skychart.sky.haze import Haze
 from skychart.sky.local import tensor
 from skychart.sky.local.air import FlatAir, unscaled
 from skychart.sky.local.field import FlatField
@@ -27,12 +28,14 @@ class FlatLight:
     """Light scattered more than once, seen along ``view_cosine`` (view,), cosines of the zenith angle of sight.
 
     ``tensor`` (sun, view, entry, wavelength): the molecules' tensor averaged along the line of sight (entries as in
-    FlatField), ``haze`` (sun, view, mode, wavelength) [1/sr]: light sent by the haze, in cosine modes of azimuth;
-    ``peak`` (sun, view, wavelength): what the phase function at the angle from the sun multiplies [1/sr] to give the
-    light that the haze scatters from the beam's remainder; ``ground`` (sun, view, wavelength) [1/sr]: the lit ground.
+    FlatField). ``haze`` (sun, view, mode, wavelength) [1/sr]: light sent by the haze, in cosine modes of azimuth.
+    ``peak`` (sun, view, wavelength) [1/sr]: what the phase function of ``remainder`` at the angle from the sun
+    multiplies to give the light that the haze scatters from the beam's remainder, which its peak has blurred.
+    ``ground`` (sun, view, wavelength) [1/sr]: the lit ground.
     """
 
     air: FlatAir
+    remainder: Haze
     view_cosine: Array
     tensor: Array
     haze: Array
@@ -53,7 +56,7 @@ class FlatLight:
         waves = np.cos(azimuth[..., None] * np.arange(self.haze.shape[2]))
         by_haze = (waves[..., None, :] @ self.haze[suns, views])[..., 0, :]
         angle = cosine * cos_sun + np.sqrt((1 - cosine**2) * (1 - cos_sun**2)) * np.cos(azimuth)
-        by_peak = self.peak[suns, views] * self.air.haze.phase_at(angle)
+        by_peak = self.peak[suns, views] * self.remainder.phase_at(angle)
         light[..., 0, :] += by_haze + by_peak + self.ground[suns, views]
         return light
 
@@ -78,6 +81,7 @@ def one_scattering(field: FlatField, view_cosine: Array, boundary: int = 0) -> F
     below = from_ground(optics.extinction, view_cosine)[:, :, boundary]
     return FlatLight(
         air=air,
+        remainder=field.optics.remainder,
         view_cosine=view_cosine,
         tensor=molecules,
         haze=haze,
