@@ -36,12 +36,12 @@ def test_overhead_sun_passes_the_vertical_depth(straight: Shells, bent: Shells) 
 
 @pytest.mark.parametrize("kind", ["straight", "bent"])
 def test_table_follows_the_direct_computation(kind: str, request: pytest.FixtureRequest) -> None:
-    """Within 0.3 % of all light in the lower air and 0.7 % aloft, where the sun grazes; 0.02 % with it 5 degrees up."""
+    """Within 0.4 % of all light in the lower air and 0.7 % aloft, where the sun grazes; 0.02 % with it 5 degrees up."""
     shells = request.getfixturevalue(kind)
     table = SunTable.of(shells)
     cosine = np.cos(np.radians(np.random.default_rng(3).uniform(0, 99, 400)))
     high = cosine > np.sin(np.radians(5))
-    for start, within in ((0, 3e-3), (12, 3e-3), (40, 3e-3), (70, 7e-3)):
+    for start, within in ((0, 4e-3), (12, 4e-3), (40, 4e-3), (70, 7e-3)):
         exact = transmission(shells, start, cosine)
         tabulated = table.at(np.array(start), cosine)
         np.testing.assert_allclose(tabulated, exact, rtol=0, atol=within)
