@@ -1,7 +1,7 @@
 """Chromaticity of scattered light and of daylight on the horizontal, and colour temperatures of known whites.
 
-Sources: Judd, MacAdam & Wyszecki 1964 (daylight locus), CIE 015 (daylight illuminants), and limits that follow from
-formulas.
+Sources: Judd, MacAdam & Wyszecki 1964 (daylight locus), CIE 015 (daylight illuminants), Chain, Dumortier & Fontoynont
+1999 (colour temperature of clear sky), and limits that follow from formulas.
 """
 
 import functools
@@ -12,15 +12,19 @@ from numpy.typing import ArrayLike, NDArray
 from skychart.checks.check import Check
 from skychart.checks.standard import StandardSky
 from skychart.colour.chromaticity import xyz_of_xy
+from skychart.colour.differences import uv_prime
 from skychart.colour.integrate import tristimulus_matrix
 from skychart.colour.observers import colour_matching_functions
 from skychart.colour.temperature import cct_duv
+from skychart.data.tables import load_table
 from skychart.sky.air import rayleigh_cross_section
 
 TOPIC = "Chromaticity"
 
 _NODES_NM = np.arange(360.0, 831.0, 10.0)
-_SUNS_DEG = (60, 30, 10)
+_SUNS_DEG = (60, 50, 40, 30, 20, 10)
+_TEMPERATURE_SUNS_DEG = (60, 30)
+_LOCUS_X = np.arange(0.25, 0.38235, 1e-5)  # of the daylight illuminants, 25 000 to 4000 K
 _LOCUS_TOLERANCE = 0.006
 _WHITES = (  # key, chromaticity, published temperature, relative tolerance, its reason, source
     ("illuminant-a", (0.44758, 0.40745), 2856.0, 5e-4, "chromaticity of five decimals",
@@ -36,15 +40,22 @@ _WHITES = (  # key, chromaticity, published temperature, relative tolerance, its
 )  # fmt: skip
 
 
-def checks(sky: StandardSky) -> tuple[Check, ...]:
+def checks(clear: StandardSky) -> tuple[Check, ...]:
     """Limits of scattered light, daylight on the horizontal, and colour temperatures."""
-    return (*_scattered_limits(), *_daylight(sky), *_temperatures())
+    return (*_scattered_limits(), *_daylight(clear), *_temperatures())
 
 
 def daylight_locus_y(x: ArrayLike) -> NDArray[np.float64]:
     """Chromaticity y of the daylight locus at x (Judd, MacAdam & Wyszecki 1964)."""
     x = np.asarray(x, dtype=float)
     return 2.870 * x - 3.000 * x**2 - 0.275
+
+
+def chain1999_temperature(luminance_cd_m2: ArrayLike) -> NDArray[np.float64]:
+    """Correlated colour temperature [K] of a piece of clear sky of a luminance [cd/m²]; nan where the fit has none."""
+    columns = load_table("checks/published_sky_temperature_chain1999").columns
+    reciprocal = columns["offset"][0] + columns["slope"][0] * np.log10(np.asarray(luminance_cd_m2, dtype=float))
+    return 1e6 / np.where(reciprocal > 0, reciprocal, np.nan)
 
 
 def _scattered_limits() -> list[Check]:
@@ -78,41 +89,47 @@ def _scattered_limits() -> list[Check]:
     ]
 
 
-def _daylight(sky: StandardSky) -> list[Check]:
-    XYZ = sky.horizontal_XYZ(np.array(_SUNS_DEG, dtype=float))
-    x, y = XYZ[:, 0] / XYZ.sum(axis=1), XYZ[:, 1] / XYZ.sum(axis=1)
-    cct, _ = cct_duv(XYZ)
+def locus_distance(XYZ: ArrayLike) -> NDArray[np.float64]:
+    """Distance in u'v' from the daylight locus between 4000 and 25 000 K, shape (..., 3) to (...)."""
+    locus = uv_prime(xyz_of_xy(np.stack([_LOCUS_X, daylight_locus_y(_LOCUS_X)], axis=-1)))
+    apart = uv_prime(np.asarray(XYZ, dtype=float))[..., None, :] - locus
+    return np.asarray(np.hypot(apart[..., 0], apart[..., 1]).min(axis=-1))
+
+
+def _daylight(clear: StandardSky) -> list[Check]:
+    XYZ = clear.horizontal_XYZ(np.array(_SUNS_DEG, dtype=float))
+    cct = dict(zip(_SUNS_DEG, cct_duv(XYZ)[0], strict=True))
     locus = [
         Check(
             key=f"daylight-locus-{sun}",
             topic=TOPIC,
-            quantity="Chromaticity y of daylight on the horizontal",
-            conditions=f"sun {sun}° up, at its x of {x[place]:.4f}; sun and sky without haze",
-            source="Judd, MacAdam & Wyszecki 1964, J. Opt. Soc. Am. 54, 1031, daylight locus at that x (abstract read)",
-            published=float(daylight_locus_y(x[place])),
-            computed=float(y[place]),
+            quantity="Distance in u′v′ of daylight on the horizontal from the daylight locus",
+            conditions=f"sun {sun}° up, sun and sky in air called clear",
+            source="Judd, MacAdam & Wyszecki 1964, J. Opt. Soc. Am. 54, 1031, daylight locus (abstract read)",
+            published=0.0,
+            computed=float(distance),
             tolerance=_LOCUS_TOLERANCE,
             tolerance_reason="the source states no spread; 0.006 was set before it was measured",
             unit="1",
             relative=False,
         )
-        for place, sun in enumerate(_SUNS_DEG)
+        for sun, distance in zip(_SUNS_DEG, locus_distance(XYZ), strict=True)
     ]
     temperature = [
         Check(
             key=f"daylight-temperature-{sun}",
             topic=TOPIC,
             quantity="Correlated colour temperature of daylight on the horizontal",
-            conditions=f"sun {sun}° up, sun and sky without haze",
+            conditions=f"sun {sun}° up, sun and sky in air called clear",
             source="common knowledge: 5500 to 6500 K by day (from memory, no source)",
             published=6000.0,
-            computed=float(cct[place]),
+            computed=float(cct[sun]),
             tolerance=500.0,
             tolerance_reason="the stated range",
             unit="K",
             relative=False,
         )
-        for place, sun in enumerate(_SUNS_DEG[:2])
+        for sun in _TEMPERATURE_SUNS_DEG
     ]
     return [*locus, *temperature]
 

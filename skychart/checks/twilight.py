@@ -2,7 +2,9 @@
 
 Sources: Koomen et al. 1952, Patat, Ugolnikov & Postylyakov 2006; see the tables. Below a sun of about -11 degrees the
 night sky, which is not computed, takes part, so nothing is compared there. Of Patat et al. only the rate is compared:
-their magnitudes would need a spectrum to become luminances, and a sun that refraction lifts.
+their magnitudes would need a spectrum to become luminances. At their last sun the night sky is a thirtieth of the
+light, so it is added here. Koomen's sites are compared with the air called clear, the clean mountain of Patat et al.
+with air without haze.
 """
 
 import math
@@ -22,7 +24,8 @@ _SITES = {  # column of the table: place as printed
     "sacramento_peak": "Sacramento Peak, 2800 m",
     "maryland": "Maryland, 30 m, computed at sea level",
 }
-_MOUNTAIN_KM = 2.8
+_KOOMEN_MOUNTAIN_KM, _PARANAL_KM = 2.8, 2.635
+_NIGHT_SKY_CD_M2 = 1.08e5 * 10 ** (-0.4 * 21.61)  # V of the dark zenith at Paranal, Patat 2003, A&A 400, 1183
 _COMPARED_DEG = (0.0, -3.0, -6.0, -9.0)  # with Koomen's luminances
 _SEA_RATE_DEG = (-3.0, -11.0)
 _MOUNTAIN_RATE_DEG = (-5.0, -10.0)
@@ -34,15 +37,17 @@ def koomen1952_zenith_luminance(site: str) -> tuple[NDArray[np.float64], NDArray
     return columns["solar_elevation_deg"], columns[f"{site}_cd_ft2"] * _CD_M2_PER_CD_FT2
 
 
-def checks(sky: StandardSky) -> tuple[Check, ...]:
+def checks(clear: StandardSky, molecular: StandardSky) -> tuple[Check, ...]:
     """Luminance at two sites, and the rate at which the zenith darkens."""
-    sea = _luminances(sky, {*_COMPARED_DEG, *_SEA_RATE_DEG}, 0.0)
-    mountain = _luminances(sky, {*_COMPARED_DEG, *_MOUNTAIN_RATE_DEG}, _MOUNTAIN_KM)
+    sea = _luminances(clear, {*_COMPARED_DEG, *_SEA_RATE_DEG}, 0.0)
+    mountain = _luminances(clear, set(_COMPARED_DEG), _KOOMEN_MOUNTAIN_KM)
+    paranal = _luminances(molecular, set(_MOUNTAIN_RATE_DEG), _PARANAL_KM)
+    dimmest = {sun: luminance + _NIGHT_SKY_CD_M2 for sun, luminance in paranal.items()}
     return (
         *_koomen("sacramento_peak", mountain),
         *_koomen("maryland", sea),
         _koomen_rate(_darkening(sea, *_SEA_RATE_DEG)),
-        _patat_rate(_darkening(mountain, *_MOUNTAIN_RATE_DEG)),
+        _patat_rate(_darkening(dimmest, *_MOUNTAIN_RATE_DEG)),
     )
 
 
@@ -65,7 +70,7 @@ def _koomen(site: str, luminance: dict[float, float]) -> list[Check]:
             quantity="Zenith luminance, log₁₀ of cd/m²",
             conditions=(
                 f"{_SITES[site]}, sun at {sun:g}°; published {measured[sun]:.3g} cd/m², "
-                f"computed {luminance[sun]:.3g} cd/m² without haze"
+                f"computed {luminance[sun]:.3g} cd/m² in air called clear"
             ),
             source=_KOOMEN.format("Tables I and II"),
             published=math.log10(measured[sun]),
@@ -103,7 +108,10 @@ def _patat_rate(computed: float) -> Check:
         key="zenith-patat2006-rate",
         topic=TOPIC,
         quantity="Darkening of the zenith per degree of sun",
-        conditions="Paranal, 2600 m (computed for 2800 m), sun from −5° to −10°; band V there, luminance here",
+        conditions=(
+            "Paranal, 2635 m, sun from −5° to −10°; band V there, here luminance in air without haze and the published "
+            "light of the night sky"
+        ),
         source=(
             "Patat, Ugolnikov & Postylyakov 2006, Astron. Astrophys. 455, 385, Table 1, measured "
             "(derived here from the published fit, read in copies that agree)"

@@ -1,12 +1,13 @@
 """Everything together: enough published values, each with its source, and all of them met."""
 
+import dataclasses
 import itertools
 from collections import Counter
 
 import pytest
 
 from skychart.checks import Check, all_passed, rayleigh, run_checks, standard
-from skychart.config import AirSettings
+from skychart.config import NAMED_AIRS, AirSettings
 from skychart.sky.spectral import NODES_NM
 
 
@@ -25,14 +26,14 @@ def test_every_published_value_is_met(checks: tuple[Check, ...]) -> None:
 
 def test_there_are_far_more_than_sixty_under_unique_keys(checks: tuple[Check, ...]) -> None:
     """At least 60 were asked for; a key names one comparison only."""
-    assert len(checks) >= 120
+    assert len(checks) >= 200
     assert [key for key, count in Counter(check.key for check in checks).items() if count > 1] == []
 
 
 def test_topics_follow_each_other_in_one_piece_each(checks: tuple[Check, ...]) -> None:
-    """Thirteen topics, so that a page can set a heading where the topic changes."""
+    """Seventeen topics, so that a page can set a heading where the topic changes."""
     headings = [topic for topic, _ in itertools.groupby(check.topic for check in checks)]
-    assert len(headings) == len(set(headings)) == 13
+    assert len(headings) == len(set(headings)) == 17
 
 
 def test_numbers_are_plain_floats_for_json(checks: tuple[Check, ...]) -> None:
@@ -68,11 +69,12 @@ class Solved:
         self.settings = settings
 
 
-def test_a_sky_already_solved_is_used_only_if_it_is_that_of_the_default_settings(
+def test_a_sky_already_solved_is_used_only_if_it_is_that_of_the_wanted_settings(
     monkeypatch: pytest.MonkeyPatch,
 ) -> None:
     """Another atmosphere of a build may not slip into the comparison."""
     monkeypatch.setattr(standard, "solve_spectral", Solved)
-    right, wrong = Solved(AirSettings()), Solved(AirSettings(ozone_du=200))
-    assert standard.StandardSky([wrong, right])._sky is right
-    assert standard.StandardSky([wrong])._sky.settings == AirSettings()
+    wanted = NAMED_AIRS["clear"]
+    right, wrong = Solved(wanted), Solved(dataclasses.replace(wanted, ozone_du=200))
+    assert standard.StandardSky([wrong, right], wanted)._sky is right
+    assert standard.StandardSky([wrong], wanted)._sky.settings == wanted
