@@ -4,6 +4,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from skychart.charts.aureole import DISTANCE_DEG
 from skychart.charts.survey import (
     DIRECTIONS,
     RELATIVE_AZIMUTH_DEG,
@@ -88,7 +89,7 @@ def spectra(survey: Survey, sun: int) -> Spectra:
         _spectrum(survey, stem, DIRECTIONS[stems.index(stem)].title, unit, survey.radiance[sun, stems.index(stem)])
         for stem in KEY_DIRECTIONS
     ]
-    if survey.solar_elevation_deg[sun] >= 0 and survey.beam_XYZ[sun, 1] > 0:
+    if survey.sun_seen(sun):
         beam = survey.beam_irradiance[sun]
         curves.append(_spectrum(survey, "sun", "Sun, direct", "W m⁻² nm⁻¹", beam))
     return Spectra(survey.wavelength_nm, tuple(curves))
@@ -101,14 +102,21 @@ def _spectrum(survey: Survey, key: str, title: str, unit: str, absolute: np.ndar
 
 def principal_plane(survey: Survey, sun: int) -> PrincipalPlane:
     """The vertical plane through the sun at the `sun`-th elevation."""
-    toward = survey.stokes_XYZ[sun, :, azimuth_index(0)]
-    away = survey.stokes_XYZ[sun, -2::-1, azimuth_index(180)]
-    plane = np.concatenate([toward, away])
-    arc = np.concatenate([VIEW_ELEVATION_DEG, 180 - VIEW_ELEVATION_DEG[-2::-1]])
+    apparent = float(survey.apparent_elevation_deg[sun])
+    up, _, down = survey.aureole_XYZ[sun]
+    nodes = [
+        (VIEW_ELEVATION_DEG, survey.stokes_XYZ[sun, :, azimuth_index(0)]),
+        (180 - VIEW_ELEVATION_DEG[:-1], survey.stokes_XYZ[sun, :-1, azimuth_index(180)]),
+        (apparent + DISTANCE_DEG, up),
+        (apparent - DISTANCE_DEG[1:], down[1:]),
+    ]
+    arc, plane = (np.concatenate(part) for part in zip(*nodes, strict=True))
+    arc, first = np.unique(np.where(np.isfinite(plane[:, 0, 1]), arc, np.nan), return_index=True)
+    arc, plane = arc[np.isfinite(arc)], plane[first[np.isfinite(arc)]]
     intensity, q = plane[:, 0, 1], plane[:, 1, 1]
     return PrincipalPlane(
         arc_deg=arc,
-        sun_arc_deg=float(survey.solar_elevation_deg[sun]),
+        sun_arc_deg=apparent,
         luminance_cd_m2=intensity,
         uv=uv_prime(plane[:, 0]),
         degree=q / intensity,
@@ -131,6 +139,6 @@ def polarisation_map(survey: Survey, sun: int) -> Polarisation:
         relative_azimuth_deg=RELATIVE_AZIMUTH_DEG,
         degree_map=degree,
         ticks=tuple(ticks),
-        sun_elevation_deg=float(survey.solar_elevation_deg[sun]),
+        sun_elevation_deg=float(survey.apparent_elevation_deg[sun]),
         largest=float(degree.max()),
     )

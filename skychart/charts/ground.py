@@ -6,6 +6,8 @@ import numpy as np
 
 from skychart.charts.numbers import fixed, significant, spaced
 from skychart.charts.survey import Survey
+from skychart.config import NO_HAZE, AirSettings
+from skychart.sky.haze_types import HAZE_TYPES
 
 _REFLECTED_LIGHT_CONSTANT = 12.5
 """K of reflected-light exposure meters [cd s m⁻² ISO] (ISO 2720:1974 allows 10.6 to 13.4)."""
@@ -54,8 +56,29 @@ def ground(survey: Survey, sun: int) -> Ground:
     )
 
 
-def air_summary(ozone_du: float, ground_albedo: float, altitude_km: float) -> str:
+def air_summary(air: AirSettings) -> str:
     """An atmosphere in one line, from its settings."""
-    altitude = "at sea level" if altitude_km == 0 else f"at {altitude_km:g} km"
-    ground_share = f"{100 * ground_albedo:g} % grey ground"
-    return f"air and ozone, {ozone_du:g} Dobson units, {ground_share}, observer {altitude}"
+    parts = [
+        _haze(air),
+        f"ozone {air.ozone_du:g} Dobson units",
+        f"water {air.water_cm:g} cm",
+        f"nitrogen dioxide {air.no2_du:g} Dobson units" if air.no2_du else "",
+        f"{air.pressure_hpa:.4g} hPa",
+        _ground(air.ground_albedo),
+        "observer at sea level" if air.altitude_km == 0 else f"observer at {air.altitude_km:g} km",
+    ]
+    return ", ".join(part for part in parts if part)
+
+
+def _haze(air: AirSettings) -> str:
+    """Kind, optical depth and scale height of the haze, its own where the settings leave them to it."""
+    if air.haze == NO_HAZE:
+        return "no haze"
+    kind = HAZE_TYPES[air.haze]
+    depth = kind.depth_550 if air.haze_depth_550 is None else air.haze_depth_550
+    height = kind.scale_height_km if air.haze_scale_height_km is None else air.haze_scale_height_km
+    return f"haze “{air.haze}” of optical depth {depth:g} at 550 nm, scale height {height:g} km"
+
+
+def _ground(albedo: float | str) -> str:
+    return f"ground {albedo}" if isinstance(albedo, str) else f"{100 * albedo:g} % grey ground"

@@ -10,7 +10,7 @@ from skychart.charts.ground import ground
 from skychart.charts.numbers import degrees, fixed, kelvin, significant, spaced
 from skychart.charts.reading import read_colours
 from skychart.charts.sheet import sheet_stem
-from skychart.charts.survey import DIRECTIONS, Survey, azimuth_index, elevation_index
+from skychart.charts.survey import DIRECTIONS, SkyView, Survey, azimuth_index, elevation_index
 
 BANDS = (("toward", "Toward the sun", 0.0), ("beside", "Beside the sun", 90.0), ("away", "Away from the sun", 180.0))
 _COLUMNS = (
@@ -30,11 +30,11 @@ _COLUMNS = (
 
 @dataclass(frozen=True)
 class DayBand:
-    """A band of the picture: `XYZ` [cd m⁻²] (sun, view elevation, XYZ) from horizon to zenith."""
+    """A band of the picture, at an azimuth from the sun [deg], from horizon to zenith."""
 
     key: str
     title: str
-    XYZ: np.ndarray
+    relative_azimuth_deg: float
 
 
 @dataclass(frozen=True)
@@ -47,11 +47,12 @@ class DayColumn:
 
 @dataclass(frozen=True)
 class Overview:
-    """Everything the start page shows of one atmosphere; `exposures` has one entry for each sun."""
+    """Everything the start page shows of one atmosphere; `exposures` and `skies` have one entry for each sun."""
 
     atmosphere: str
     columns: tuple[DayColumn, ...]
     exposures: tuple[Exposure, ...]
+    skies: tuple[SkyView, ...]
     bands: tuple[DayBand, ...]
     heads: tuple[Column, ...]
     rows: tuple[Row, ...]
@@ -60,10 +61,11 @@ class Overview:
 def overview(survey: Survey) -> Overview:
     """The day of a survey, suns in their order."""
     own = [exposures(sky, card)[0] for sky, card in zip(survey.sky_XYZ, survey.card_XYZ, strict=True)]
-    bands = [DayBand(key, title, survey.stokes_XYZ[:, :, azimuth_index(at), 0]) for key, title, at in BANDS]
+    skies = [survey.sky_view(sun) for sun in range(len(survey.solar_elevation_deg))]
+    bands = [DayBand(*band) for band in BANDS]
     rows = _rows(survey)
     columns = [DayColumn(row.labels[0], row.anchor) for row in rows]
-    return Overview(survey.air.name, tuple(columns), tuple(own), tuple(bands), _COLUMNS, rows)
+    return Overview(survey.air.name, tuple(columns), tuple(own), tuple(skies), tuple(bands), _COLUMNS, rows)
 
 
 def _rows(survey: Survey) -> tuple[Row, ...]:

@@ -42,6 +42,9 @@ class Sky(Protocol):
     def ground_irradiance(self, solar_elevation_deg: np.ndarray | float) -> tuple[np.ndarray, np.ndarray]:
         """Diffuse and direct irradiance of the level ground per unit solar irradiance, (..., wavelength)."""
 
+    def apparent_elevation_deg(self, solar_elevation_deg: np.ndarray | float) -> np.ndarray:
+        """Elevation of the refracted sun's centre [deg]; below the horizon, where it would stand."""
+
 
 @dataclass(frozen=True)
 class Reading:

@@ -4,6 +4,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from skychart.charts.aureole import ARMS, DISTANCE_DEG, arms
 from skychart.charts.columns import Column, NumberTable, number_table
 from skychart.charts.curves import (
     Chromaticities,
@@ -18,11 +19,13 @@ from skychart.charts.exposure import Exposure, Swatch, exposures, swatches
 from skychart.charts.ground import Ground, ground
 from skychart.charts.numbers import degrees, fixed, signed_stem, significant, spaced
 from skychart.charts.reading import Reading, read_colours
-from skychart.charts.survey import Survey, azimuth_index, elevation_index
+from skychart.charts.survey import SkyView, Survey, azimuth_index, elevation_index
 from skychart.colour.differences import uv_prime
 
 TABLE_ELEVATION_DEG = (90.0, 60.0, 45.0, 30.0, 20.0, 10.0, 5.0, 2.0, 0.0)
-TABLE_AZIMUTH_DEG = (0.0, 15.0, 30.0, 60.0, 90.0, 135.0, 180.0)
+TABLE_AZIMUTH_DEG = (0.0, 30.0, 60.0, 90.0, 135.0, 180.0)
+AUREOLE_DISTANCE_DEG = (1.0, 2.0, 5.0, 10.0)
+AUREOLE_ARMS = (("up", "Above"), ("beside", "Beside"))
 LABELS = (
     Column("view_elevation_deg", "View elevation", "°", ""),
     Column("relative_azimuth_deg", "Azimuth", "°", ""),
@@ -60,20 +63,24 @@ class Rendering:
 
 @dataclass(frozen=True)
 class Sheet:
-    """Everything an elevation sheet shows. `sky_XYZ` [cd m⁻²] (view elevation, azimuth, XYZ) is for the pictures."""
+    """Everything an elevation sheet shows; `sky` is for the pictures, `aureole_rows` stand where a sun is seen."""
 
     atmosphere: str
     stem: str
     solar_elevation_deg: float
     label: str
+    apparent_elevation_deg: float
+    apparent: str
     ground: Ground
     renderings: tuple[Rendering, ...]
     azimuth_labels: tuple[str, ...]
     block_rows: tuple[BlockRow, ...]
+    aureole_labels: tuple[str, ...]
+    aureole_rows: tuple[BlockRow, ...]
     over_range: int
     table: NumberTable
     readings: Reading
-    sky_XYZ: np.ndarray
+    sky: SkyView
     spectra: Spectra
     chromaticities: Chromaticities
     principal_plane: PrincipalPlane
@@ -92,35 +99,50 @@ def elevation_sheet(survey: Survey, sun: int) -> Sheet:
     shown = exposures(survey.sky_XYZ[sun], survey.card_XYZ[sun])
     views = [(view, azimuth) for view in TABLE_ELEVATION_DEG for azimuth in _azimuths(view)]
     picks = tuple(zip(*((elevation_index(v), azimuth_index(a)) for v, a in views), strict=True))
-    stokes = survey.stokes_XYZ[sun][picks]
+    anchors = [f"e{view:02.0f}a{azimuth:03.0f}" for view, azimuth in views]
+    labels = [(f"{view:g}", f"{azimuth:g}") for view, azimuth in views]
+    grid_count, near = len(views), _near_the_sun(survey, sun)
+    views += [near_view for _, near_view, _ in near]
+    anchors += [anchor for anchor, _, _ in near]
+    labels += [(fixed(view, 2), fixed(azimuth, 2)) for _, (view, azimuth), _ in near]
+    stokes = np.stack([*survey.stokes_XYZ[sun][picks], *(light for _, _, light in near)])
     view_deg, azimuth_deg = (np.array(axis) for axis in zip(*views, strict=True))
     card = np.full(len(views), survey.card_XYZ[sun, 1])
     readings, colours = read_colours(
         survey.air.name, np.full(len(views), elevation), view_deg, azimuth_deg, stokes, card
     )
     colour_swatches = swatches(readings.XYZ, shown[0])
-    anchors = [f"e{view:02.0f}a{azimuth:03.0f}" for view, azimuth in views]
-    labels = [(f"{view:g}", f"{azimuth:g}") for view, azimuth in views]
     hexes = [swatch.hex for swatch in colour_swatches]
     return Sheet(
         atmosphere=survey.air.name,
         stem=sheet_stem(elevation),
         solar_elevation_deg=elevation,
         label=degrees(elevation),
+        apparent_elevation_deg=float(survey.apparent_elevation_deg[sun]),
+        apparent=apparent_label(survey, sun),
         ground=ground(survey, sun),
         renderings=tuple(_rendering(exposure, survey.stokes_XYZ[sun, :, :, 0]) for exposure in shown),
         azimuth_labels=tuple(degrees(azimuth) for azimuth in TABLE_AZIMUTH_DEG),
-        block_rows=_block_rows(views, readings, colour_swatches, anchors),
+        block_rows=_block_rows(views[:grid_count], readings, colour_swatches, anchors),
+        aureole_labels=tuple(degrees(distance) for distance in AUREOLE_DISTANCE_DEG),
+        aureole_rows=_aureole_rows(range(grid_count, len(views)), readings, colour_swatches, anchors),
         over_range=int(shown[0].over_range(readings.XYZ).sum()),
         table=number_table(LABELS, anchors, labels, readings, colours, hexes),
         readings=readings,
-        sky_XYZ=survey.stokes_XYZ[sun, :, :, 0],
+        sky=survey.sky_view(sun),
         spectra=spectra(survey, sun),
         chromaticities=Chromaticities(readings.uv_prime, tuple(hexes), sun_uv(survey, sun)),
         principal_plane=principal_plane(survey, sun),
         polarisation=polarisation_map(survey, sun),
         deep_twilight=elevation <= DEEP_TWILIGHT_DEG,
     )
+
+
+def apparent_label(survey: Survey, sun: int) -> str:
+    """Where the refracted sun is seen, in words; it is not, once refraction no longer lifts it over the horizon."""
+    if not survey.sun_seen(sun):
+        return "below the horizon"
+    return spaced(fixed(float(survey.apparent_elevation_deg[sun]), 2)) + "°"
 
 
 def sun_uv(survey: Survey, sun: int) -> np.ndarray | None:
@@ -168,6 +190,30 @@ def _block_rows(
         ]
         rows.append(BlockRow(degrees(view), tuple(blocks)))
     return tuple(rows)
+
+
+def _near_the_sun(survey: Survey, sun: int) -> list[tuple[str, tuple[float, float], np.ndarray]]:
+    """Anchor, view elevation and azimuth [deg], and light of each block of the aureole; none of a sun not seen."""
+    apparent = float(survey.apparent_elevation_deg[sun])
+    if not survey.sun_seen(sun) or apparent < 0:
+        return []
+    view, azimuth = arms(apparent)
+    return [
+        (f"{arm}{distance:02.0f}", (float(view[row, column]), float(azimuth[row, column])), light)
+        for arm, _ in AUREOLE_ARMS
+        for distance in AUREOLE_DISTANCE_DEG
+        for row, column in [(ARMS.index(arm), int(np.flatnonzero(distance == DISTANCE_DEG)[0]))]
+        for light in [survey.aureole_XYZ[sun, row, column]]
+    ]
+
+
+def _aureole_rows(
+    places: range, readings: Reading, colours: tuple[Swatch, ...], anchors: list[str]
+) -> tuple[BlockRow, ...]:
+    blocks = [block(i, readings, colours[i], anchors[i]) for i in places]
+    count = len(AUREOLE_DISTANCE_DEG)
+    rows = (tuple(blocks[i : i + count]) for i in range(0, len(blocks), count))
+    return tuple(BlockRow(title, row) for (_, title), row in zip(AUREOLE_ARMS, rows, strict=False))
 
 
 def _rendering(exposure: Exposure, sky_XYZ: np.ndarray) -> Rendering:

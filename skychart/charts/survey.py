@@ -8,6 +8,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from skychart.charts.aureole import arms
 from skychart.charts.reading import Sky
 from skychart.colour.integrate import tristimulus_matrix
 from skychart.config import AirSettings
@@ -41,11 +42,25 @@ DIRECTIONS = (
 
 
 @dataclass(frozen=True)
+class SkyView:
+    """The sky of one sun, as a picture takes it.
+
+    `grid_XYZ` [cd m⁻²] (view elevation, azimuth, XYZ) on the survey's grid; `arms_XYZ` (arm, distance, XYZ) around the
+    sun, whose apparent elevation is `sun_elevation_deg`; nan below the horizon.
+    """
+
+    grid_XYZ: np.ndarray
+    arms_XYZ: np.ndarray
+    sun_elevation_deg: float
+
+
+@dataclass(frozen=True)
 class Survey:
     """A sky at every sun elevation and view direction, as tristimulus values and a few spectra.
 
     `stokes_XYZ` [cd m⁻²] (sun, view elevation, azimuth, Stokes I Q U, XYZ); `sky_XYZ` and `sun_XYZ` [lx] of the
-    level ground (sun, XYZ); `beam_XYZ` [lx] of a plane facing the sun (sun, XYZ); `radiance`
+    level ground (sun, XYZ); `beam_XYZ` [lx] of a plane facing the sun (sun, XYZ); `aureole_XYZ` as `stokes_XYZ`
+    along the arms around the sun (sun, arm, distance, Stokes I Q U, XYZ), nan below the horizon; `radiance`
     [W m⁻² sr⁻¹ nm⁻¹] of `DIRECTIONS` (sun, direction, wavelength); `beam_irradiance` [W m⁻² nm⁻¹] of a plane
     facing the sun (sun, wavelength), both on the sky's wavelengths with the solar spectrum averaged about each.
     """
@@ -53,8 +68,10 @@ class Survey:
     air: AirSettings
     observer: str
     solar_elevation_deg: np.ndarray
+    apparent_elevation_deg: np.ndarray
     wavelength_nm: np.ndarray
     stokes_XYZ: np.ndarray
+    aureole_XYZ: np.ndarray
     sky_XYZ: np.ndarray
     sun_XYZ: np.ndarray
     beam_XYZ: np.ndarray
@@ -66,12 +83,22 @@ class Survey:
         """Luminance [cd m⁻²] of a level, perfectly white card, as (sun, XYZ)."""
         return (self.sky_XYZ + self.sun_XYZ) / np.pi
 
+    def sky_view(self, sun: int) -> SkyView:
+        """The `sun`-th sky for a picture."""
+        apparent = float(self.apparent_elevation_deg[sun])
+        return SkyView(self.stokes_XYZ[sun, :, :, 0], self.aureole_XYZ[sun, :, :, 0], apparent)
+
+    def sun_seen(self, sun: int) -> bool:
+        """Whether the `sun`-th sun stands above the horizon as it is seen."""
+        return bool(self.beam_XYZ[sun, 1] > 0)
+
 
 def survey(sky: Sky, solar_elevation_deg: tuple[float, ...], observer: str) -> Survey:
     """Ask `sky` for every direction at every sun elevation [deg]."""
     suns = np.array(solar_elevation_deg, float)
     matrix = tristimulus_matrix(sky.wavelength_nm, observer)
     stokes = sky.stokes(suns[:, None, None], VIEW_ELEVATION_DEG[:, None], RELATIVE_AZIMUTH_DEG)
+    apparent = np.asarray(sky.apparent_elevation_deg(suns), float)
     diffuse, direct = sky.ground_irradiance(suns)
     beam = sky.beam(suns)
     solar = _solar_about(sky.wavelength_nm)
@@ -81,8 +108,10 @@ def survey(sky: Sky, solar_elevation_deg: tuple[float, ...], observer: str) -> S
         air=sky.settings,
         observer=observer,
         solar_elevation_deg=suns,
+        apparent_elevation_deg=apparent,
         wavelength_nm=sky.wavelength_nm,
         stokes_XYZ=stokes @ matrix,
+        aureole_XYZ=_aureole(sky, suns, apparent, matrix),
         sky_XYZ=diffuse @ matrix,
         sun_XYZ=direct @ matrix,
         beam_XYZ=beam @ matrix,
@@ -99,6 +128,16 @@ def elevation_index(view_elevation_deg: float) -> int:
 def azimuth_index(relative_azimuth_deg: float) -> int:
     """Index of a relative azimuth on the survey's grid, which must hold it."""
     return int(np.flatnonzero(relative_azimuth_deg == RELATIVE_AZIMUTH_DEG)[0])
+
+
+def _aureole(sky: Sky, suns: np.ndarray, apparent_deg: np.ndarray, matrix: np.ndarray) -> np.ndarray:
+    """The sky along the arms around each sun, in one question for all that lie above the horizon."""
+    places = [arms(float(elevation)) for elevation in apparent_deg]
+    view, azimuth = (np.stack(axis) for axis in zip(*places, strict=True))
+    seen = np.isfinite(view)
+    found = np.full((*view.shape, 3, 3), np.nan)
+    found[seen] = sky.stokes(np.broadcast_to(suns[:, None, None], view.shape)[seen], view[seen], azimuth[seen]) @ matrix
+    return found
 
 
 def _solar_about(wavelength_nm: np.ndarray) -> np.ndarray:

@@ -1,11 +1,12 @@
 """Build the site: solve each atmosphere, make all chart data, render sheets side by side, write once at the end."""
 
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from concurrent.futures import Executor, Future, as_completed
 from dataclasses import dataclass, replace
 from pathlib import Path
 
 from skychart.charts.checks import methods
+from skychart.charts.comparison import comparison
 from skychart.charts.direction import direction_sheet
 from skychart.charts.overview import overview
 from skychart.charts.sheet import elevation_sheet
@@ -13,7 +14,7 @@ from skychart.charts.survey import DIRECTIONS, Survey, survey
 from skychart.checks import run_checks
 from skychart.config import AirSettings, Settings
 from skychart.pages.environment import static_files
-from skychart.pages.render import direction_files, methods_files, sheet_files, start_files
+from skychart.pages.render import comparison_files, direction_files, methods_files, sheet_files, start_files
 from skychart.pages.site import Atlas, make_atlas
 from skychart.pages.workers import workers
 from skychart.pages.write import swap_in
@@ -50,6 +51,7 @@ def build_site(settings: Settings, out: Path, jobs: int, progress: Callable[[str
         checking = pool.submit(run_checks, skies)
         surveys = [_survey(sky, settings, progress) for sky in skies]
         rendering = [work for found in surveys for work in _submit_pages(pool, atlas, found)]
+        rendering += _submit_comparisons(pool, atlas, surveys)
         for count, done in enumerate(as_completed(rendering), start=1):
             files |= done.result()
             progress(f"page {count} of {len(rendering)}")
@@ -86,3 +88,9 @@ def _submit_pages(pool: Executor, atlas: Atlas, found: Survey) -> list[Future[di
         *(pool.submit(sheet_files, atlas, elevation_sheet(found, sun)) for sun in suns),
         *(pool.submit(direction_files, atlas, direction_sheet(found, view)) for view in DIRECTIONS),
     ]
+
+
+def _submit_comparisons(pool: Executor, atlas: Atlas, surveys: Sequence[Survey]) -> list[Future[dict[str, bytes]]]:
+    """A page for each sun where there are several atmospheres."""
+    suns = range(len(surveys[0].solar_elevation_deg)) if atlas.compares else ()
+    return [pool.submit(comparison_files, atlas, comparison(surveys, sun)) for sun in suns]

@@ -9,15 +9,17 @@ from typing import Any
 from jinja2 import Environment
 
 from skychart.charts.checks import Methods
+from skychart.charts.comparison import Comparison
 from skychart.charts.direction import DirectionSheet
+from skychart.charts.ground import air_summary
 from skychart.charts.overview import DayBand, Overview
 from skychart.charts.sheet import Sheet
 from skychart.export.png import srgb_png
 from skychart.export.tables import readings_json, table_csv
 from skychart.pages.environment import environment, render
 from skychart.pages.figures import direction_figures, light_figure, sheet_figures
-from skychart.pages.site import METHODS_PATH, SITE_TITLE, Atlas, Link, describe_air, neighbours, sun_in_words
-from skychart.plots.picture import DOME_PIXELS, OVERLAP_PIXELS, RIM_PIXELS, day_band, half_dome
+from skychart.pages.site import COMPARE_FOLDER, METHODS_PATH, SITE_TITLE, Atlas, Link, neighbours, sun_in_words
+from skychart.plots.picture import DOME_PIXELS, OVERLAP_PIXELS, RIM_PIXELS, day_band, half_dome, half_sky
 
 _DAY_COLUMN_PIXELS = 32
 _DAY_HEIGHT_PIXELS = 160
@@ -56,20 +58,22 @@ def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
     page = atlas.page("sun", chart.atmosphere, f"{stem}.html", title, description, before, after)
     figures, files = sheet_figures(chart)
     pictures = {shown.exposure.key: f"{stem}-{shown.exposure.key}.png" for shown in chart.renderings}
+    pixels = half_sky(chart.sky)
     for shown in chart.renderings:
-        files[pictures[shown.exposure.key]] = srgb_png(half_dome(chart.sky_XYZ, shown.exposure))
-    pixel = _DOME_RADIUS / (DOME_PIXELS / 2 - RIM_PIXELS)
-    sun_y = _DOME_RADIUS * (90 - chart.solar_elevation_deg) / 90
-    about = _about(atlas, chart.atmosphere) | {"solar_elevation_deg": chart.solar_elevation_deg}
+        files[pictures[shown.exposure.key]] = srgb_png(half_dome(pixels, shown.exposure))
+    about = _about(atlas, chart.atmosphere) | {
+        "solar_elevation_deg": chart.solar_elevation_deg,
+        "apparent_elevation_deg": round(chart.apparent_elevation_deg, 3),
+    }
     exports, downloads = _exports(stem, title, about, chart.table, (chart.readings, chart.ground, chart.spectra))
     context = {
         "page": page,
         "chart": chart,
         "heading": heading,
         "air": atlas.air(chart.atmosphere),
-        "switch": atlas.switch(chart.atmosphere, chart.stem),
+        "switch": atlas.sun_switch(chart.atmosphere, chart.solar_elevation_deg),
         "ruler": ruler,
-        "dome": Dome(pictures, round(-OVERLAP_PIXELS * pixel, 2), round(-DOME_PIXELS / 2 * pixel, 2), round(sun_y, 2)),
+        "dome": _dome(pictures, chart.apparent_elevation_deg),
         "figures": figures,
         "downloads": downloads,
     }
@@ -134,12 +138,39 @@ def start_files(atlas: Atlas, chart: Overview) -> dict[str, bytes]:
     return {page.path: render(_pages(), "start.html", context), **files}
 
 
+def comparison_files(atlas: Atlas, chart: Comparison) -> dict[str, bytes]:
+    """A page of all atmospheres side by side."""
+    sun = chart.solar_elevation_deg
+    path = atlas.compare_path(sun)
+    stem = path.removesuffix(".html")
+    ruler = atlas.ruler(COMPARE_FOLDER, sun)
+    before, after = neighbours(ruler)
+    heading = sun_in_words(sun)
+    title = f"Sun {chart.label}, side by side"
+    description = f"{heading}: {', '.join(atlas.atmospheres)} side by side at one exposure."
+    page = atlas.page("compare", atlas.atmospheres[0], path, title, description, before, after)
+    pictures = {shown.atmosphere: f"{stem}-{shown.atmosphere}.png" for shown in chart.skies}
+    context = {
+        "page": page,
+        "chart": chart,
+        "heading": heading,
+        "switch": atlas.sun_switch(COMPARE_FOLDER, sun),
+        "ruler": ruler,
+        "domes": [_dome(pictures, shown.sky.sun_elevation_deg) for shown in chart.skies],
+        "airs": [atlas.air(shown.atmosphere) for shown in chart.skies],
+    }
+    files = {
+        pictures[shown.atmosphere]: srgb_png(half_dome(half_sky(shown.sky), chart.exposure)) for shown in chart.skies
+    }
+    return {page.path: render(_pages(), "compare.html", context), **files}
+
+
 def methods_files(atlas: Atlas, chart: Methods) -> dict[str, bytes]:
     """The methods page."""
     description = "What is computed, from which data, and every published value beside the computed one."
     page = atlas.page("methods", atlas.atmospheres[0], METHODS_PATH, "Methods and checks", description)
     figure, files = light_figure(chart.course)
-    airs = [(air.name, describe_air(air)) for air in atlas.settings.atmospheres]
+    airs = [(air.name, air_summary(air)) for air in atlas.settings.atmospheres]
     context = {"page": page, "chart": chart, "figure": figure, "atmospheres": airs}
     return {page.path: render(_pages(), "methods.html", context), **files}
 
@@ -150,8 +181,15 @@ def _pages() -> Environment:
     return environment()
 
 
+def _dome(pictures: dict[str, str], sun_elevation_deg: float) -> Dome:
+    pixel = _DOME_RADIUS / (DOME_PIXELS / 2 - RIM_PIXELS)
+    sun_y = _DOME_RADIUS * (90 - sun_elevation_deg) / 90
+    return Dome(pictures, round(-OVERLAP_PIXELS * pixel, 2), round(-DOME_PIXELS / 2 * pixel, 2), round(sun_y, 2))
+
+
 def _band_png(chart: Overview, band: DayBand) -> bytes:
-    return srgb_png(day_band(band.XYZ, chart.exposures, _DAY_COLUMN_PIXELS, _DAY_HEIGHT_PIXELS))
+    pixels = day_band(chart.skies, band.relative_azimuth_deg, chart.exposures, _DAY_COLUMN_PIXELS, _DAY_HEIGHT_PIXELS)
+    return srgb_png(pixels)
 
 
 def _about(atlas: Atlas, atmosphere: str) -> dict[str, Any]:
@@ -162,7 +200,7 @@ def _about(atlas: Atlas, atmosphere: str) -> dict[str, Any]:
         "atmosphere": atmosphere,
         "air": atlas.air(atmosphere),
         "observer": atlas.settings.observer,
-        "method": "multiple scattering with polarisation in a spherical atmosphere; geometric elevations",
+        "method": "multiple scattering with polarisation in a spherical atmosphere; geometric elevations of the sun",
     }
 
 

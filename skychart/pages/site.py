@@ -12,6 +12,7 @@ from skychart.config import AirSettings, Settings
 
 SITE_TITLE = "Sky-colour reference charts"
 METHODS_PATH = "methods.html"
+COMPARE_FOLDER = "compare"
 OBSERVER_TITLES = {
     "cie-1931-2": "CIE 1931 2° observer",
     "cie-1964-10": "CIE 1964 10° observer",
@@ -61,6 +62,15 @@ class Atlas:
         """The start page, and for each further atmosphere its own."""
         return "index.html" if atmosphere == self.atmospheres[0] else f"{atmosphere}/index.html"
 
+    @property
+    def compares(self) -> bool:
+        """Whether there are several atmospheres to set side by side."""
+        return len(self.atmospheres) > 1
+
+    def compare_path(self, sun: float) -> str:
+        """The page that sets all atmospheres side by side."""
+        return f"{COMPARE_FOLDER}/{sheet_stem(sun)}.html"
+
     def menu(self, kind: str, atmosphere: str) -> tuple[Link, ...]:
         """The site's menu; kinds of sheet that are added later get their line here."""
         suns = self.settings.solar_elevations_deg
@@ -69,6 +79,7 @@ class Atlas:
             Link("The day", self.start_path(atmosphere), kind == "start"),
             Link("By sun elevation", f"{atmosphere}/{sheet_stem(middle)}.html", kind == "sun"),
             Link("By direction", f"{atmosphere}/{DIRECTIONS[0].stem}.html", kind == "view"),
+            *([Link("Side by side", self.compare_path(middle), kind == "compare")] if self.compares else []),
             Link("Methods and checks", METHODS_PATH, kind == "methods"),
         )
 
@@ -106,20 +117,20 @@ class Atlas:
             for name in self.atmospheres
         )
 
+    def sun_switch(self, folder: str, sun: float) -> tuple[Link, ...]:
+        """The sheet of one sun in every atmosphere, and all side by side; `folder` is that of the present page."""
+        beside = Link("side by side", self.compare_path(sun), folder == COMPARE_FOLDER)
+        return self.switch(folder, sheet_stem(sun)) + ((beside,) if self.compares else ())
+
     def air(self, atmosphere: str) -> str:
         """An atmosphere's settings in one line."""
         settings = next(air for air in self.settings.atmospheres if air.name == atmosphere)
-        return describe_air(settings)
+        return air_summary(settings)
 
 
 def make_atlas(settings: Settings) -> Atlas:
     """The map of a build, with the version of the installed package."""
     return Atlas(settings, version("sky-colour-charts"))
-
-
-def describe_air(settings: AirSettings) -> str:
-    """An atmosphere in one line."""
-    return air_summary(settings.ozone_du, settings.ground_albedo, settings.altitude_km)
 
 
 def neighbours(links: Sequence[Link]) -> tuple[Link | None, Link | None]:

@@ -223,7 +223,25 @@ def _lean(svg: str) -> str:
         svg, count = re.subn(r"<g>((?:(?!<g\b|</g>).)*)</g>", r"\1", svg, flags=re.DOTALL)
     svg = re.sub(r' style="fill: (#\w+); ([^"]*)"', r' fill="\1" style="\2"', svg)
     svg = re.sub(r'style="[^"]*"', lambda style: style.group().replace(": ", ":").replace("; ", ";"), svg)
-    return re.sub(r"\s*\n\s*", "\n", _classed(_renamed(svg)))
+    svg = re.sub(r"\s*\n\s*", "\n", _classed(_renamed(svg)))
+    return "\n".join(_regrouped(svg.replace("xlink:href=", "href=").split("\n")))
+
+
+def _regrouped(lines: Sequence[str]) -> Iterator[str]:
+    """Without the end of a group, and the start of the next, where one under the same clip follows another."""
+    opened: list[str] = []
+    skip = False
+    for line, following in zip(lines, [*lines[1:], ""], strict=True):
+        if skip:
+            skip = False
+        elif line == "</g>" and opened and following == opened[-1] and "clip-path" in following:
+            skip = True
+        else:
+            if line == "</g>":
+                opened.pop()
+            elif line.startswith("<g") and not line.endswith("/>"):
+                opened.append(line)
+            yield line
 
 
 def _short(number: re.Match[str]) -> str:

@@ -40,5 +40,10 @@ class FakeSky:
         sine = np.sin(np.radians(np.asarray(solar_elevation_deg, float)))[..., None]
         return diffuse, np.maximum(sine, 0) * self.beam(solar_elevation_deg)
 
+    def apparent_elevation_deg(self, solar_elevation_deg):
+        """Lifted by half a degree at the horizon, by nothing at the zenith."""
+        sun = np.asarray(solar_elevation_deg, float)
+        return sun + 0.5 * np.exp(-np.maximum(sun, -1.0) / 4) * (90 - sun) / 90
+
     def _dusk(self, sun):
         return 10.0 ** (np.degrees(np.minimum(sun, 0)) / 3)

@@ -3,6 +3,7 @@
 import numpy as np
 import pytest
 
+from skychart.charts.aureole import distance_and_side
 from skychart.charts.direction import direction_sheet
 from skychart.charts.overview import overview
 from skychart.charts.reading import reading
@@ -51,6 +52,7 @@ def test_zenith_is_one_block(found):
     sheet = elevation_sheet(found, 0)
     assert [block.span for block in sheet.block_rows[0].blocks] == [len(TABLE_AZIMUTH_DEG)]
     assert len(sheet.table.rows) == 1 + (len(TABLE_ELEVATION_DEG) - 1) * len(TABLE_AZIMUTH_DEG)
+    assert sheet.aureole_rows == (), "the sun is not seen"
     anchors = [block.anchor for row in sheet.block_rows for block in row.blocks]
     assert anchors == [row.anchor for row in sheet.table.rows]
 
@@ -78,9 +80,39 @@ def test_principal_plane_is_polarised_across_itself(found):
     sun = SUNS_DEG.index(10.0)
     plane = elevation_sheet(found, sun).principal_plane
     cosine = np.cos(np.radians(plane.arc_deg - 10.0))
+    assert np.all(np.diff(plane.arc_deg) > 0)
+    assert np.sum(abs(plane.arc_deg - plane.sun_arc_deg) < 3) >= 5, "fine steps near the sun"
     np.testing.assert_allclose(plane.degree, 0.9 * (1 - cosine**2) / (1 + cosine**2), atol=1e-6)
     assert plane.arc_deg[0] == 0
     assert plane.arc_deg[-1] == 180
+
+
+def test_blocks_around_the_sun_are_readings_of_the_sky(sky, found):
+    """Above and beside at 1, 2, 5 and 10 degrees from where the sun is seen, each the number of a reading there."""
+    sheet = elevation_sheet(found, SUNS_DEG.index(10.0))
+    assert [row.label for row in sheet.aureole_rows] == ["Above", "Beside"]
+    assert sheet.aureole_labels == ("1°", "2°", "5°", "10°")
+    rows = {row.anchor: number for number, row in enumerate(sheet.table.rows)}
+    for arm, row in zip(("up", "beside"), sheet.aureole_rows, strict=True):
+        for distance, block in zip((1, 2, 5, 10), row.blocks, strict=True):
+            assert block.anchor == f"{arm}{distance:02d}"
+            place = rows[block.anchor]
+            view, azimuth = (
+                float(angle[place]) for angle in (sheet.readings.view_elevation_deg, sheet.readings.relative_azimuth_deg)
+            )
+            apart, side = distance_and_side(sheet.apparent_elevation_deg, np.array(view), np.array(azimuth))
+            assert apart == pytest.approx(distance, abs=1e-6)
+            assert side == pytest.approx(1 if arm == "up" else 0, abs=0.02)
+            single = reading(sky, 10.0, view, azimuth)
+            assert sheet.readings.luminance_cd_m2[place] == pytest.approx(float(single.luminance_cd_m2))
+
+
+def test_the_seen_sun_stands_higher(found):
+    """Sheets give the apparent elevation, and say so where the sun is below the horizon."""
+    low, zenith = elevation_sheet(found, SUNS_DEG.index(0.0)), elevation_sheet(found, SUNS_DEG.index(90.0))
+    assert (low.apparent, zenith.apparent) == ("0.50°", "90.00°")
+    assert low.sky.sun_elevation_deg == low.principal_plane.sun_arc_deg == low.apparent_elevation_deg == 0.5
+    assert elevation_sheet(found, SUNS_DEG.index(-8.0)).apparent == "below the horizon"
 
 
 def test_deep_twilight_is_told(found):
@@ -94,5 +126,6 @@ def test_overview_has_a_column_and_a_row_for_each_sun(found):
     day = overview(found)
     assert [row.anchor for row in day.rows] == [column.stem for column in day.columns]
     assert [column.label for column in day.columns] == ["−8°", "−2°", "0°", "10°", "45°", "90°"]
-    assert all(band.XYZ.shape == (len(SUNS_DEG), len(VIEW_ELEVATION_DEG), 3) for band in day.bands)
+    assert [band.relative_azimuth_deg for band in day.bands] == [0, 90, 180]
+    assert len(day.skies) == len(day.exposures) == len(SUNS_DEG)
     assert all(len(row.cells) == len(day.heads) for row in day.rows)

@@ -28,7 +28,8 @@ def test_csv_reads_back(sheet):
     rows = list(csv.DictReader(lines[2:]))
     assert len(rows) == len(sheet.table.rows)
     assert [float(row["luminance_cd_m2"]) for row in rows] == pytest.approx(sheet.readings.luminance_cd_m2, rel=1e-3)
-    assert {row["view_elevation_deg"] for row in rows} == {f"{view:g}" for view in sheet.readings.view_elevation_deg}
+    views = [float(row["view_elevation_deg"]) for row in rows]
+    assert views == pytest.approx(sheet.readings.view_elevation_deg, abs=0.005)
     assert len(set(rows[0])) == len(sheet.table.columns) + 2
 
 

@@ -11,7 +11,7 @@ from pathlib import Path
 import pytest
 
 GOLDEN = Path(__file__).parent / "golden"
-PAGES = ("index", "methods", "molecular/sun+20", "molecular/view-45-beside")
+PAGES = ("index", "methods", "molecular/sun+20", "molecular/view-45-beside", "compare/sun+20")
 
 
 def scrubbed(text):
