@@ -12,7 +12,7 @@ from skychart.charts.overview import overview
 from skychart.charts.sheet import elevation_sheet
 from skychart.charts.survey import DIRECTIONS, Survey, survey
 from skychart.checks import run_checks
-from skychart.config import AirSettings, Settings
+from skychart.config import NAMED_AIRS, AirSettings, Settings
 from skychart.pages.environment import static_files
 from skychart.pages.render import comparison_files, direction_files, methods_files, sheet_files, start_files
 from skychart.pages.site import Atlas, make_atlas
@@ -57,7 +57,7 @@ def build_site(settings: Settings, out: Path, jobs: int, progress: Callable[[str
             progress(f"page {count} of {len(rendering)}")
         progress("comparing with published values")
         checks = checking.result()
-    files |= methods_files(atlas, methods(checks, surveys[0]))
+    files |= methods_files(atlas, methods(checks, _measured_alike(surveys)))
     progress("writing")
     swap_in(files, out)
     return BuildReport(
@@ -68,6 +68,11 @@ def build_site(settings: Settings, out: Path, jobs: int, progress: Callable[[str
         checks=len(checks),
         checks_met=sum(check.passed for check in checks),
     )
+
+
+def _measured_alike(surveys: Sequence[Survey]) -> Survey:
+    """The sky to set beside measured ones: that of clear air, or the first where it is not among them."""
+    return next((found for found in surveys if found.air == NAMED_AIRS["clear"]), surveys[0])
 
 
 def _solve(air: AirSettings, progress: Callable[[str], None]) -> SpectralSky:

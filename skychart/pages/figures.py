@@ -4,7 +4,7 @@ from collections.abc import Callable
 from dataclasses import dataclass
 from typing import Any
 
-from skychart.charts.checks import LightCourse
+from skychart.charts.checks import Methods
 from skychart.charts.direction import DirectionSheet
 from skychart.charts.sheet import Sheet
 from skychart.plots.chromaticity import SIZE_IN as CHROMATICITY_IN
@@ -19,6 +19,8 @@ from skychart.plots.principal_plane import SIZE_IN as PLANE_IN
 from skychart.plots.principal_plane import principal_plane_svg
 from skychart.plots.spectra import SIZE_IN as SPECTRA_IN
 from skychart.plots.spectra import spectra_svg
+from skychart.plots.temperature import SIZE_IN as TEMPERATURE_IN
+from skychart.plots.temperature import temperature_svg
 
 _PIXELS_PER_INCH = 96
 
@@ -110,6 +112,17 @@ _LIGHT = _Plan(
 )
 
 
+_TEMPERATURE = _Plan(
+    "temperature",
+    temperature_svg,
+    TEMPERATURE_IN,
+    "Colour temperature and luminance",
+    "A mark for each piece of sky that has a colour temperature, beside a fit to measured clear skies. Bluer pieces, and "
+    "many are, have none.",
+    "Correlated colour temperature of pieces of sky over their luminance, computed and measured",
+)
+
+
 def sheet_figures(chart: Sheet) -> tuple[tuple[Figure, ...], dict[str, bytes]]:
     """Figures of an elevation sheet, and their files by path."""
     data = (
@@ -127,10 +140,9 @@ def direction_figures(chart: DirectionSheet) -> tuple[tuple[Figure, ...], dict[s
     return _drawn(f"{chart.atmosphere}/{chart.direction.stem}", data)
 
 
-def light_figure(course: LightCourse) -> tuple[Figure, dict[str, bytes]]:
-    """The figure of the methods page, and its file."""
-    figures, files = _drawn("methods", ((_LIGHT, course),))
-    return figures[0], files
+def methods_figures(chart: Methods) -> tuple[tuple[Figure, ...], dict[str, bytes]]:
+    """Figures of the methods page, light first, and their files by path."""
+    return _drawn("methods", ((_LIGHT, chart.course), (_TEMPERATURE, chart.temperatures)))
 
 
 def _drawn(stem: str, data: tuple[tuple[_Plan, Any], ...]) -> tuple[tuple[Figure, ...], dict[str, bytes]]:

@@ -17,7 +17,7 @@ from skychart.charts.sheet import Sheet
 from skychart.export.png import srgb_png
 from skychart.export.tables import readings_json, table_csv
 from skychart.pages.environment import environment, render
-from skychart.pages.figures import direction_figures, light_figure, sheet_figures
+from skychart.pages.figures import direction_figures, methods_figures, sheet_figures
 from skychart.pages.site import COMPARE_FOLDER, METHODS_PATH, SITE_TITLE, Atlas, Link, neighbours, sun_in_words
 from skychart.plots.picture import DOME_PIXELS, OVERLAP_PIXELS, RIM_PIXELS, day_band, half_dome, half_sky
 
@@ -132,6 +132,7 @@ def start_files(atlas: Atlas, chart: Overview) -> dict[str, bytes]:
         "air": atlas.air(name),
         "switch": atlas.switch(name, None),
         "directions": atlas.directions(name, None),
+        "compared": atlas.compare_path(atlas.middle_sun) if atlas.compares else None,
         "bands": bands,
         "groups": [(group, len(list(heads))) for group, heads in groupby(chart.heads, lambda head: head.group)],
     }
@@ -169,9 +170,9 @@ def methods_files(atlas: Atlas, chart: Methods) -> dict[str, bytes]:
     """The methods page."""
     description = "What is computed, from which data, and every published value beside the computed one."
     page = atlas.page("methods", atlas.atmospheres[0], METHODS_PATH, "Methods and checks", description)
-    figure, files = light_figure(chart.course)
+    (light, temperature), files = methods_figures(chart)
     airs = [(air.name, air_summary(air)) for air in atlas.settings.atmospheres]
-    context = {"page": page, "chart": chart, "figure": figure, "atmospheres": airs}
+    context = {"page": page, "chart": chart, "light": light, "temperature": temperature, "atmospheres": airs}
     return {page.path: render(_pages(), "methods.html", context), **files}
 
 

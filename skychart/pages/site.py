@@ -63,6 +63,11 @@ class Atlas:
         return "index.html" if atmosphere == self.atmospheres[0] else f"{atmosphere}/index.html"
 
     @property
+    def middle_sun(self) -> float:
+        """The sun that the menu leads to [deg]: the one nearest to 30."""
+        return min(self.settings.solar_elevations_deg, key=lambda sun: abs(sun - 30))
+
+    @property
     def compares(self) -> bool:
         """Whether there are several atmospheres to set side by side."""
         return len(self.atmospheres) > 1
@@ -73,8 +78,7 @@ class Atlas:
 
     def menu(self, kind: str, atmosphere: str) -> tuple[Link, ...]:
         """The site's menu; kinds of sheet that are added later get their line here."""
-        suns = self.settings.solar_elevations_deg
-        middle = min(suns, key=lambda sun: abs(sun - 30))
+        middle = self.middle_sun
         return (
             Link("The day", self.start_path(atmosphere), kind == "start"),
             Link("By sun elevation", f"{atmosphere}/{sheet_stem(middle)}.html", kind == "sun"),

@@ -26,7 +26,7 @@ def light_svg(chart: LightCourse) -> bytes:
         top = Panel(figure, _TOP, unlabelled, log_scale(both, "Illuminance of level ground, lx", most=8))
         top.curve(chart.solar_elevation_deg, chart.illuminance_lx)
         top.curve(published.solar_elevation_deg, published.values, 1)
-        top.key(("computed, air and ozone", published.title), (1.9,), 0.62, 2)
+        top.key((f"computed, {chart.air}", published.title), (1.9,), 0.62, 2)
         every = np.concatenate([chart.zenith_cd_m2, *(measured.values for measured in chart.measured_zenith)])
         scale = log_scale(every, "Luminance of the zenith, cd/m²", most=8)
         bottom = Panel(figure, _BOTTOM, sun_scale(chart.solar_elevation_deg), scale)
