@@ -15,7 +15,7 @@ from numpy.typing import NDArray
 
 from skychart.sky import dipole
 from skychart.sky.atmosphere import Atmosphere
-from skychart.sky.beam import THREADS, SunTable, transmission
+from skychart.sky.beam import THREADS, SunTable
 from skychart.sky.field import Field
 from skychart.sky.grid import Grid, solar_zenith_nodes_deg
 from skychart.sky.haze import Haze
@@ -25,11 +25,11 @@ from skychart.sky.local.streams import MOMENTS, legendre
 from skychart.sky.molecular import solve_field
 from skychart.sky.observer import Lines, Station
 from skychart.sky.shape import Shape, insert_between
-from skychart.sky.shells import Shells, level_altitudes, redistribute, subdivide
+from skychart.sky.shells import Shells, redistribute
 
 Array = NDArray[np.float64]
 
-_GRID = Grid(azimuth=4)
+_AZIMUTHS = 4  # of the closure's solution
 _DIRECTIONS = Grid(zenith=8, azimuth=8)  # in which the closure's radiance is known where it is scattered once more
 _MODES = 8
 _HAZE_LEFT = 1e-3  # of the haze may lie above the levels whose haze scatters once more
@@ -101,11 +101,10 @@ class HazyLight:
 
     def one_scattering(self, station: Station, lines: Lines) -> Array:
         """G on the sphere: I, Q, U (line, 3, wavelength)."""
-        if station.beyond is None:
-            raise TypeError("a station in air without haze")
-        remainder = replace(station, table=station.beyond)
         molecules = self.scatterers._replace(forward=None)
-        light = remainder.single(lines, molecules, through_peak(_haze(self.air), 2, _haze(self.air).peak).phase_at)
+        light = station.beyond().single(
+            lines, molecules, through_peak(_haze(self.air), 2, _haze(self.air).peak).phase_at
+        )
         return light + station.multiple(self.field, lines, molecules, self.air.ground_albedo, self.scattered)
 
     def correction(self, lines: Lines, altitude_km: float = 0.0) -> Array:
@@ -127,24 +126,28 @@ class HazyLight:
         return (1 - part) * ratio(sun) + part * ratio(np.minimum(sun + 1, _LOWEST_FLAT_SUN_DEG))
 
 
-def solve_hazy(air: Atmosphere, typical: int) -> HazyLight:
-    """Solve the light of air with haze. ``typical``: index of the wavelength whose first order gives the shapes."""
+def solve_hazy(air: Atmosphere, grid: Grid, station: Station, typical: int) -> HazyLight:
+    """Solve the light of air with haze.
+
+    ``station``: on the ground, its boundaries those of ``grid``; ``typical``: index of the wavelength whose first order
+    gives the shapes.
+    """
     haze = _haze(air)
-    altitude = subdivide(level_altitudes(float(air.level_altitude_km[-1]), _GRID.levels), _GRID.substeps)
-    shells = Shells.of(air, altitude, haze.peak)
-    table = SunTable.of(shells)
+    if station.scaled is None:
+        raise TypeError("a station in air without haze")
+    shells = Shells.of(air, station.shells.altitude_km, haze.peak)
     forward = 3 * haze.asymmetry / (1 + haze.asymmetry)
     scatterers = dipole.Scatterers(*dipole.molecular_coefficients(air.depolarisation), forward)
-    field = solve_field(shells, table, _GRID, scatterers, air.ground_albedo, typical)
-    top = float(air.level_altitude_km[-1])
-    boundaries = np.append(_FLAT_KM[top > _FLAT_KM], top)
-    flat = _flat_air(air, boundaries)
+    grid = replace(grid, azimuth=_AZIMUTHS)
+    field = solve_field(shells, station.scaled, grid, scatterers, air.ground_albedo, typical)
+    boundaries = _flat_boundaries(shells.altitude_km)
+    flat = _flat_air(air, station, boundaries)
     return HazyLight(
         air=air,
         scatterers=scatterers,
         field=field,
-        scattered=_scattered(haze, shells, table, field, scatterers, air.ground_albedo),
-        flat_altitude_km=boundaries,
+        scattered=_scattered(haze, grid, shells, station.scaled, field, scatterers, air.ground_albedo),
+        flat_altitude_km=shells.altitude_km[boundaries],
         full=solve_flat(flat),
         closed=solve_closure(flat),
     )
@@ -161,18 +164,21 @@ def _haze(air: Atmosphere) -> Haze:
     return air.haze
 
 
-def _flat_air(air: Atmosphere, boundaries: Array) -> FlatAir:
-    """The same air in flat layers, thinnest at the ground, under the sphere's own beam at every solver's sun."""
-    top = float(boundaries[-1])
-    altitude = np.union1d(boundaries, subdivide(level_altitudes(top, _GRID.levels), _GRID.substeps))
+def _flat_boundaries(altitude_km: Array) -> NDArray[np.intp]:
+    """Those of the boundaries that are nearest to the wanted ones of flat air, and the top."""
+    nearest = np.abs(altitude_km - _FLAT_KM[:, None]).argmin(axis=1)
+    return np.union1d(nearest, len(altitude_km) - 1)
+
+
+def _flat_air(air: Atmosphere, station: Station, boundaries: NDArray[np.intp]) -> FlatAir:
+    """The same air in flat layers, thinnest at the ground, under the sphere's own beam at every whole degree."""
+    if station.scaled is None:
+        raise TypeError("a station in air without haze")
     cosine = np.cos(_flat_suns())
-    places = np.searchsorted(altitude, boundaries)
-    beams = []
-    for unscattered in (0.0, _haze(air).peak):
-        shells = Shells.of(air, altitude, unscattered)
-        beams.append(np.stack([transmission(shells, place, cosine) for place in places]))
+    beam, scaled = (table.at(boundaries[:, None], cosine) for table in (station.table, station.scaled))
+    altitude = station.shells.altitude_km[boundaries]
     rayleigh, absorption, haze = (
-        redistribute(air, depth, boundaries) for depth in (air.rayleigh_depth, air.absorption_depth, _haze(air).depth)
+        redistribute(air, depth, altitude) for depth in (air.rayleigh_depth, air.absorption_depth, _haze(air).depth)
     )
     return FlatAir(
         rayleigh_depth=rayleigh,
@@ -181,17 +187,23 @@ def _flat_air(air: Atmosphere, boundaries: Array) -> FlatAir:
         depolarisation=air.depolarisation,
         ground_albedo=air.ground_albedo,
         solar_zenith_angle=_flat_suns(),
-        beam=beams[0],
-        scaled_beam=beams[1],
+        beam=beam.astype(float),
+        scaled_beam=scaled.astype(float),
     )
 
 
 def _scattered(
-    haze: Haze, shells: Shells, table: SunTable, field: Field, scatterers: dipole.Scatterers, albedo: Array
+    haze: Haze,
+    grid: Grid,
+    shells: Shells,
+    table: SunTable,
+    field: Field,
+    scatterers: dipole.Scatterers,
+    albedo: Array,
 ) -> Scattered:
     """Radiance of the closure in all directions from the lower levels, as harmonics times the full phase function's."""
     above = _haze_above(shells)
-    levels = [level for level in range(_GRID.levels) if above[level * _GRID.substeps] > _HAZE_LEFT]
+    levels = [level for level in range(grid.levels) if above[level * grid.substeps] > _HAZE_LEFT]
     node = np.radians(solar_zenith_nodes_deg())
     moments = haze.moments(MOMENTS)
 
@@ -199,7 +211,7 @@ def _scattered(
         return 1 + (scatterers.forward if scatterers.forward is not None else 0) * cosine[..., None]
 
     def harmonics(level: int) -> Array:
-        station = Station(shells, table, level * _GRID.substeps)
+        station = Station(shells, table, level * grid.substeps)
         altitude, radius = shells.altitude_km[station.start], shells.planet_radius_km
         cosine, weight = _DIRECTIONS.cosines(float(np.sqrt(altitude * (2 * radius + altitude)) / (radius + altitude)))
         cos_phi, _, phi_weight = _DIRECTIONS.azimuths()

@@ -53,25 +53,31 @@ class Lines:
 class Station:
     """An observer's place: the layers with its altitude among the boundaries, and the sun's table on them.
 
-    ``beyond``: in hazy air, the light that reaches each boundary beside the beam when the peak of the haze's phase
-    function counts as unscattered.
+    ``scaled``: in hazy air, the same table when the peak of the haze's phase function counts as unscattered.
     """
 
     shells: Shells
     table: SunTable
     start: int
-    beyond: SunTable | None = None
+    scaled: SunTable | None = None
 
     @classmethod
     def of(cls, air: Atmosphere, altitude_km: Array, observer_km: float = 0.0) -> "Station":
         """An observer at ``observer_km``, one of the layer boundaries ``altitude_km`` [km], shape (boundary,)."""
         shells = Shells.of(air, altitude_km)
-        table = SunTable.of(shells)
         start = int(np.searchsorted(altitude_km, observer_km))
         if air.haze is None:
-            return cls(shells, table, start)
-        scaled = SunTable.of(Shells.of(air, altitude_km, air.haze.peak))
-        return cls(shells, table, start, replace(table, values=scaled.values - table.values))
+            return cls(shells, SunTable.of(shells), start)
+        depths = shells.extinction_depth, Shells.of(air, altitude_km, air.haze.peak).extinction_depth
+        both = SunTable.of(replace(shells, extinction_depth=np.concatenate(depths, axis=1)))
+        table, scaled = (replace(both, values=values) for values in np.split(both.values, 2, axis=2))
+        return cls(shells, table, start, scaled)
+
+    def beyond(self) -> "Station":
+        """The same place under the light that, beside the beam, counts as unscattered. Hazy air only."""
+        if self.scaled is None:
+            raise TypeError("a station in air without haze")
+        return replace(self, table=replace(self.table, values=self.scaled.values - self.table.values))
 
     def single(self, lines: Lines, scatterers: dipole.Scatterers, phase: Phase | None) -> NDArray[np.float64]:
         """I, Q, U of light scattered once, shape (line, 3, wavelength) [1/sr].

@@ -24,16 +24,13 @@ _SHAPE_WAVELENGTH_NM = 500.0
 
 
 def solve(air: Atmosphere, grid: Grid = Grid()) -> "Sky":  # noqa: B008  Grid is frozen
-    """Solve every order of scattering for each wavelength of ``air`` and all sun heights at once.
-
-    ``grid`` is that of air without haze; hazy air has its own.
-    """
+    """Solve every order of scattering for each wavelength of ``air`` and all sun heights at once."""
     air_top = float(air.level_altitude_km[-1])
     station = Station.of(air, subdivide(level_altitudes(air_top, grid.levels), grid.substeps))
     away = np.abs(air.wavelength_nm - _SHAPE_WAVELENGTH_NM)
     typical = int(np.flatnonzero(away == away.min())[-1])  # the longer one of two alike: its light reaches deeper
     if air.haze is not None:
-        return Sky(air, station, solve_hazy(air, typical))
+        return Sky(air, station, solve_hazy(air, grid, station, typical))
     scatterers = _molecules(air)
     solved = solve_field(station.shells, station.table, grid, scatterers, air.ground_albedo, typical)
     return Sky(air, station, MolecularLight(solved, scatterers, air.ground_albedo))
