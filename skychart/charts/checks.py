@@ -6,10 +6,12 @@ from dataclasses import dataclass
 import numpy as np
 
 from skychart.charts.numbers import fixed, significant, spaced
-from skychart.charts.survey import Survey, elevation_index
+from skychart.charts.survey import RELATIVE_AZIMUTH_DEG, VIEW_ELEVATION_DEG, Survey, elevation_index
 from skychart.checks.check import Check
+from skychart.checks.chromaticity import chain1999_temperature
 from skychart.checks.illuminance import usno1987_illuminance
 from skychart.checks.twilight import koomen1952_zenith_luminance
+from skychart.colour.temperature import cct_duv
 from skychart.data.tables import load_table
 
 _FIELDS = ("Quantity", "Source", "Citation", "Licence/terms", "Processing")
@@ -18,9 +20,20 @@ _RUNTIME_TABLES = (
     "us76_density_profile",
     "atmosphere_profiles_afgl",
     "ozone_cross_section_serdyuchenko_1nm",
+    "o4_cross_section_1nm",
+    "gas_h2o_o2_k4_1nm",
+    "no2_cross_section_1nm",
+    "no2_mixing_ratio_afgl",
+    "ground_albedo",
+    "aerosol_bulk_opac_mie",
+    "aerosol_phase_functions_mie",
 )
 _SITES = (("maryland", "measured, Maryland, 30 m"), ("sacramento_peak", "measured, Sacramento Peak, 2800 m"))
 _DIGITS = 4
+_SKY_SUNS_DEG = (10, 30, 60)  # as near as the build has them
+_SKY_LOWEST_DEG = 10
+_SKY_EVERY = 2  # view elevation, and twice that azimuth
+_CHAIN_CD_M2 = np.geomspace(700, 20_000, 60)
 
 
 @dataclass(frozen=True)
@@ -68,13 +81,37 @@ class MeasuredLight:
 
 @dataclass(frozen=True)
 class LightCourse:
-    """Illuminance of level ground [lx] and luminance of the zenith [cd m⁻²] by sun elevation, and measurements."""
+    """Illuminance of level ground [lx] and luminance of the zenith [cd m⁻²] by sun elevation, and measurements.
 
+    `air`: name of the atmosphere that is compared.
+    """
+
+    air: str
     solar_elevation_deg: np.ndarray
     illuminance_lx: np.ndarray
     zenith_cd_m2: np.ndarray
     published_illuminance: MeasuredLight
     measured_zenith: tuple[MeasuredLight, ...]
+
+
+@dataclass(frozen=True)
+class SkyPieces:
+    """Pieces of the sky at one sun: luminance [cd m⁻²] and correlated colour temperature [K], where there is one."""
+
+    title: str
+    luminance_cd_m2: np.ndarray
+    cct_k: np.ndarray
+
+
+@dataclass(frozen=True)
+class SkyTemperatures:
+    """Colour temperature of pieces of sky over their luminance, and the fit to measured skies."""
+
+    air: str
+    skies: tuple[SkyPieces, ...]
+    published_title: str
+    published_cd_m2: np.ndarray
+    published_k: np.ndarray
 
 
 @dataclass(frozen=True)
@@ -96,11 +133,12 @@ class Methods:
     met: int
     course: LightCourse
     light_rows: tuple[LightRow, ...]
+    temperatures: SkyTemperatures
     provenance: tuple[Provenance, ...]
 
 
 def methods(checks: Sequence[Check], survey: Survey) -> Methods:
-    """The page's data from the checks and from the survey of the first atmosphere."""
+    """The page's data from the checks and from the survey of the atmosphere that is compared with measured light."""
     course = _course(survey)
     return Methods(
         topics=_topics(checks),
@@ -108,6 +146,7 @@ def methods(checks: Sequence[Check], survey: Survey) -> Methods:
         met=sum(check.passed for check in checks),
         course=course,
         light_rows=_light_rows(course),
+        temperatures=_sky_temperatures(survey),
         provenance=tuple(_provenance(name) for name in _RUNTIME_TABLES),
     )
 
@@ -174,11 +213,32 @@ def _course(survey: Survey) -> LightCourse:
     fine = np.linspace(low, high, 205)
     measured = [(title, *koomen1952_zenith_luminance(site)) for site, title in _SITES]
     return LightCourse(
+        air=survey.air.name,
         solar_elevation_deg=suns,
         illuminance_lx=np.pi * survey.card_XYZ[:, 1],
         zenith_cd_m2=survey.stokes_XYZ[:, elevation_index(90), 0, 0, 1],
         published_illuminance=MeasuredLight("published, USNO Circular 171", fine, usno1987_illuminance(fine)),
         measured_zenith=tuple(MeasuredLight(title, at[at >= low], values[at >= low]) for title, at, values in measured),
+    )
+
+
+def _sky_temperatures(survey: Survey) -> SkyTemperatures:
+    suns = survey.solar_elevation_deg
+    nearest = sorted({int(np.argmin(np.abs(suns - sun))) for sun in _SKY_SUNS_DEG})
+    up = np.flatnonzero(VIEW_ELEVATION_DEG >= _SKY_LOWEST_DEG)[::_SKY_EVERY]
+    across = np.arange(0, len(RELATIVE_AZIMUTH_DEG), 2 * _SKY_EVERY)
+    skies = []
+    for sun in nearest:
+        XYZ = survey.stokes_XYZ[sun][np.ix_(up, across)][:, :, 0].reshape(-1, 3)
+        cct, _ = cct_duv(XYZ, survey.observer)
+        some = np.isfinite(cct)
+        skies.append(SkyPieces(f"sun {spaced(f'{suns[sun]:g}')}° up", XYZ[some, 1], cct[some]))
+    return SkyTemperatures(
+        air=survey.air.name,
+        skies=tuple(skies),
+        published_title="measured clear skies, Chain et al. 1999",
+        published_cd_m2=_CHAIN_CD_M2,
+        published_k=chain1999_temperature(_CHAIN_CD_M2),
     )
 
 
@@ -198,4 +258,5 @@ def _light_rows(course: LightCourse) -> tuple[LightRow, ...]:
 
 def _provenance(name: str) -> Provenance:
     pairs = (line.partition(":") for line in load_table(name).header)
-    return Provenance(name, tuple((field, text.strip()) for field, _, text in pairs if field in _FIELDS))
+    kept = ((field, text.strip()) for field, _, text in pairs if field.partition(",")[0] in _FIELDS)
+    return Provenance(name, tuple(kept))
