@@ -6,6 +6,7 @@ from their temperature and pressure to those of the standard atmosphere.
 """
 
 import functools
+import math
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -192,7 +193,7 @@ def _refraction() -> list[Check]:
 
 def _quadrature() -> Check:
     case = MountainCase()
-    to_arcmin = 60 * np.degrees(1)
+    to_arcmin = 60 * 180 / math.pi
     return Check(
         key="refraction-hohenkerk1985",
         topic=TOPIC,
