@@ -1,4 +1,4 @@
-"""Build the site: solve each atmosphere, make all chart data, render sheets side by side, write once at the end."""
+"""Build the site: solve the atmospheres side by side, make all chart data, render sheets, write once at the end."""
 
 from collections.abc import Callable, Sequence
 from concurrent.futures import Executor, Future, as_completed
@@ -47,9 +47,9 @@ def build_site(settings: Settings, out: Path, jobs: int, progress: Callable[[str
     atlas = make_atlas(settings)
     files = static_files()
     with workers(jobs) as pool:
-        skies = [_solve(air, progress) for air in settings.atmospheres]
+        solving = [_submit_air(pool, air, settings, progress) for air in settings.atmospheres]
+        skies, surveys = zip(*(done.result() for done in solving), strict=True)
         checking = pool.submit(run_checks, skies)
-        surveys = [_survey(sky, settings, progress) for sky in skies]
         rendering = [work for found in surveys for work in _submit_pages(pool, atlas, found)]
         rendering += _submit_comparisons(pool, atlas, surveys)
         for count, done in enumerate(as_completed(rendering), start=1):
@@ -75,14 +75,19 @@ def _measured_alike(surveys: Sequence[Survey]) -> Survey:
     return next((found for found in surveys if found.air == NAMED_AIRS["clear"]), surveys[0])
 
 
-def _solve(air: AirSettings, progress: Callable[[str], None]) -> SpectralSky:
+def _submit_air(
+    pool: Executor, air: AirSettings, settings: Settings, progress: Callable[[str], None]
+) -> Future[tuple[SpectralSky, Survey]]:
+    """One atmosphere, solved and looked at in every direction, as work for the pool."""
     progress(f"{air.name}: solving")
-    return solve_spectral(air)
+    return pool.submit(_solved, solve_spectral, air, settings)
 
 
-def _survey(sky: SpectralSky, settings: Settings, progress: Callable[[str], None]) -> Survey:
-    progress(f"{sky.settings.name}: looking in every direction")
-    return survey(sky, settings.solar_elevations_deg, settings.observer)
+def _solved(
+    solve: Callable[[AirSettings], SpectralSky], air: AirSettings, settings: Settings
+) -> tuple[SpectralSky, Survey]:
+    sky = solve(air)
+    return sky, survey(sky, settings.solar_elevations_deg, settings.observer)
 
 
 def _submit_pages(pool: Executor, atlas: Atlas, found: Survey) -> list[Future[dict[str, bytes]]]:
