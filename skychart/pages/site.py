@@ -8,7 +8,7 @@ from skychart.charts.ground import air_summary
 from skychart.charts.numbers import degrees
 from skychart.charts.sheet import sheet_stem
 from skychart.charts.survey import DIRECTIONS, Direction
-from skychart.config import AirSettings, Settings
+from skychart.config import Settings
 
 SITE_TITLE = "Sky-colour reference charts"
 METHODS_PATH = "methods.html"

@@ -216,7 +216,7 @@ def _lean(svg: str) -> str:
     svg = re.sub(r"<[^>]*>", lambda tag: re.sub(r"(?<![\w.#])-?\d+\.\d+(?![\w.])", _short, tag.group()), svg)
     svg = re.sub(r' transform="rotate\(-?0 [^)]*\)"', "", svg)
     svg = re.sub(r' d="([^"]*)"', lambda path: f' d="{_joined(path.group(1))}"', svg)
-    svg = re.sub(r'<path d="M[\d.]+ [\d.]+"[^>]*/>', "", svg)  # the line through a single marker
+    svg = re.sub(r'<path d="[Mm][\d.]+ [\d.]+"[^>]*/>', "", svg)  # the line through a single marker
     svg = re.sub(r'<g id="[^"]*">', "<g>", svg)
     count = 1
     while count:
@@ -250,8 +250,25 @@ def _short(number: re.Match[str]) -> str:
 
 
 def _joined(path: str) -> str:
-    """Path data on one line; after a move, further points are lines without saying so."""
-    return re.sub(r"\s+", " ", re.sub(r"(?<=[\d.])\s*\n?L ", " ", path.strip())).replace("M ", "M")
+    """Path data on one line; after a move, further points are lines without saying so, counted from the last point."""
+    joined = re.sub(r"\s+", " ", re.sub(r"(?<=[\d.])\s*\n?L ", " ", path.strip())).replace("M ", "M")
+    return _relative(joined) if re.fullmatch(r"[M\d. -]+", joined) else joined
+
+
+def _relative(path: str) -> str:
+    """Lines between absolute points as steps of whole tenths, so that no rounding adds up."""
+    parts, last = [], np.zeros(2, int)
+    for piece in path.split("M")[1:]:
+        points = np.rint(10 * np.array(piece.split(), float)).astype(int).reshape(-1, 2)
+        steps = np.diff(points, axis=0, prepend=last[None])
+        last = points[-1]
+        parts.append("m" + " ".join(_tenths(int(step)) for step in steps.ravel()).replace(" -", "-"))
+    return "".join(parts)
+
+
+def _tenths(count: int) -> str:
+    sign, size = "-" * (count < 0), abs(count)
+    return sign + f"{size / 10:g}".removeprefix("0") if size else "0"
 
 
 def _renamed(svg: str) -> str:

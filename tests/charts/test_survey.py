@@ -98,7 +98,8 @@ def test_blocks_around_the_sun_are_readings_of_the_sky(sky, found):
             assert block.anchor == f"{arm}{distance:02d}"
             place = rows[block.anchor]
             view, azimuth = (
-                float(angle[place]) for angle in (sheet.readings.view_elevation_deg, sheet.readings.relative_azimuth_deg)
+                float(angle[place])
+                for angle in (sheet.readings.view_elevation_deg, sheet.readings.relative_azimuth_deg)
             )
             apart, side = distance_and_side(sheet.apparent_elevation_deg, np.array(view), np.array(azimuth))
             assert apart == pytest.approx(distance, abs=1e-6)

@@ -24,7 +24,7 @@ def dome(brightness):
 
 
 def glow(sun, view, azimuth):
-    """A hazy sky: a narrow bright peak at the sun over a horizon that is brighter than the zenith, bluer away from it."""
+    """A hazy sky: a narrow bright peak at the sun, less blue near it, over a horizon brighter than the zenith."""
     distance, _ = distance_and_side(sun, np.asarray(view, float), np.asarray(azimuth, float))
     log = 1.5 * np.exp(-distance / 3) + 1.5 * np.exp(-distance / 20) - 0.01 * np.asarray(view)
     return np.exp(log[..., None] * np.array([1.0, 1.0, 0.9]))
