@@ -50,7 +50,7 @@ def run_checks(solved: Iterable[SpectralSky] = ()) -> tuple[Check, ...]:
         *polarisation.checks(flat),
         *sphere.checks(),
         *haze_sphere.checks(hazy),
-        *g173.checks(hazy),
+        *g173.checks(),
         *illuminance.checks(clear, molecular, hazy),
         *twilight.checks(clear, molecular),
         *chromaticity.checks(clear),
