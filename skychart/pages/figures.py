@@ -117,8 +117,8 @@ _TEMPERATURE = _Plan(
     temperature_svg,
     TEMPERATURE_IN,
     "Colour temperature and luminance",
-    "A mark for each piece of sky that has a colour temperature, beside a fit to measured clear skies. Bluer pieces have "
-    "none.",
+    "A mark for each piece of sky that has a colour temperature, beside a fit to measured clear skies. "
+    "Bluer pieces have none.",
     "Correlated colour temperature of pieces of sky over their luminance, computed and measured",
 )
 
