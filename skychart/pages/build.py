@@ -49,7 +49,7 @@ def build_site(settings: Settings, out: Path, jobs: int, progress: Callable[[str
     with workers(jobs) as pool:
         solving = [_submit_air(pool, air, settings, progress) for air in settings.atmospheres]
         skies, surveys = zip(*(done.result() for done in solving), strict=True)
-        checking = pool.submit(run_checks, skies)
+        checking = pool.submit(run_checks, [sky for sky in skies if sky is not None])
         rendering = [work for found in surveys for work in _submit_pages(pool, atlas, found)]
         rendering += _submit_comparisons(pool, atlas, surveys)
         for count, done in enumerate(as_completed(rendering), start=1):
@@ -77,7 +77,7 @@ def _measured_alike(surveys: Sequence[Survey]) -> Survey:
 
 def _submit_air(
     pool: Executor, air: AirSettings, settings: Settings, progress: Callable[[str], None]
-) -> Future[tuple[SpectralSky, Survey]]:
+) -> Future[tuple[SpectralSky | None, Survey]]:
     """One atmosphere, solved and looked at in every direction, as work for the pool."""
     progress(f"{air.name}: solving")
     return pool.submit(_solved, solve_spectral, air, settings)
@@ -85,9 +85,11 @@ def _submit_air(
 
 def _solved(
     solve: Callable[[AirSettings], SpectralSky], air: AirSettings, settings: Settings
-) -> tuple[SpectralSky, Survey]:
+) -> tuple[SpectralSky | None, Survey]:
+    """The survey, and the sky itself where there is no haze: a hazy one is too large to be handed about."""
     sky = solve(air)
-    return sky, survey(sky, settings.solar_elevations_deg, settings.observer)
+    found = survey(sky, settings.solar_elevations_deg, settings.observer)
+    return (sky if air.haze == "none" else None), found
 
 
 def _submit_pages(pool: Executor, atlas: Atlas, found: Survey) -> list[Future[dict[str, bytes]]]:

@@ -26,8 +26,8 @@ class Grid:
     many between; ``azimuth`` directions on half a turn; ``substeps`` parts of each layer for the direct beam.
     """
 
-    levels: int = 28
-    zenith: int = 6
+    levels: int = 32
+    zenith: int = 7
     azimuth: int = 5
     substeps: int = 5
 

@@ -29,7 +29,7 @@ from skychart.sky.shells import Shells, redistribute
 
 Array = NDArray[np.float64]
 
-_AZIMUTHS = 4  # of the closure's solution
+HAZY_GRID = Grid(levels=28, zenith=6, azimuth=4)
 _DIRECTIONS = Grid(zenith=8, azimuth=8)  # in which the closure's radiance is known where it is scattered once more
 _MODES = 8
 _HAZE_LEFT = 1e-3  # of the haze may lie above the levels whose haze scatters once more
@@ -138,7 +138,6 @@ def solve_hazy(air: Atmosphere, grid: Grid, station: Station, typical: int) -> H
     shells = Shells.of(air, station.shells.altitude_km, haze.peak)
     forward = 3 * haze.asymmetry / (1 + haze.asymmetry)
     scatterers = dipole.Scatterers(*dipole.molecular_coefficients(air.depolarisation), forward)
-    grid = replace(grid, azimuth=_AZIMUTHS)
     field = solve_field(shells, station.scaled, grid, scatterers, air.ground_albedo, typical)
     boundaries = _flat_boundaries(shells.altitude_km)
     flat = _flat_air(air, station, boundaries)

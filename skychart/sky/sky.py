@@ -11,7 +11,7 @@ from skychart.errors import InputError
 from skychart.sky import beam, dipole
 from skychart.sky.atmosphere import Atmosphere
 from skychart.sky.grid import Grid
-from skychart.sky.hazy import solve_hazy
+from skychart.sky.hazy import HAZY_GRID, solve_hazy
 from skychart.sky.molecular import MolecularLight, solve_field
 from skychart.sky.observer import Lines, Station
 from skychart.sky.shells import level_altitudes, subdivide
@@ -23,8 +23,12 @@ HIGHEST_OBSERVER_KM = 50.0
 _SHAPE_WAVELENGTH_NM = 500.0
 
 
-def solve(air: Atmosphere, grid: Grid = Grid()) -> "Sky":  # noqa: B008  Grid is frozen
-    """Solve every order of scattering for each wavelength of ``air`` and all sun heights at once."""
+def solve(air: Atmosphere, grid: Grid | None = None) -> "Sky":
+    """Solve every order of scattering for each wavelength of ``air`` and all sun heights at once.
+
+    ``grid``: by default the standard one without haze, and a coarser one with it, whose errors the correction shares.
+    """
+    grid = grid or (Grid() if air.haze is None else HAZY_GRID)
     air_top = float(air.level_altitude_km[-1])
     station = Station.of(air, subdivide(level_altitudes(air_top, grid.levels), grid.substeps))
     away = np.abs(air.wavelength_nm - _SHAPE_WAVELENGTH_NM)
