@@ -17,8 +17,8 @@ def follow(start: int, cos_zenith: list[float], absorbing: float = 0.0) -> Cross
     shells = Shells.of(exponential(), LEVELS)
     cosine = np.array(cos_zenith)
     factors = shells.slant_factors(tangent_altitude(LEVELS[start], cosine, EARTH_RADIUS_KM))[..., None]
-    scattering = factors * shells.scattering_depth
-    return crossings(LEVELS, scattering, (1 + absorbing) * scattering, start, cosine, EARTH_RADIUS_KM)
+    scattering = factors * shells.scattering_depth[0]
+    return crossings(LEVELS, [scattering], (1 + absorbing) * scattering, start, cosine, EARTH_RADIUS_KM)
 
 
 def test_each_kind_of_ray_crosses_its_own_levels() -> None:
@@ -40,11 +40,11 @@ def test_a_constant_source_gives_one_minus_transmission(cos_zenith: float, absor
     seen = follow(4, [cos_zenith], absorbing)
     shells = Shells.of(exponential(), LEVELS)
     factors = shells.slant_factors(tangent_altitude(LEVELS[4], np.array(cos_zenith), EARTH_RADIUS_KM))
-    depth = factors * shells.scattering_depth[:, 0] * (1 + absorbing)
+    depth = factors * shells.scattering_depth[0][:, 0] * (1 + absorbing)
     strikes = seen.ground[0, 0] > 0
     total = depth[:4].sum() if strikes else depth[4:].sum() + (2 * depth[:4].sum() if cos_zenith < 0 else 0)
     expected = (1 - np.exp(-total)) / (1 + absorbing)
-    assert seen.weight[0].sum() == pytest.approx(expected, rel=1e-10)
+    assert seen.weight[0, 0].sum() == pytest.approx(expected, rel=1e-10)
     assert seen.ground[0, 0] == pytest.approx(np.exp(-total) if strikes else 0.0, rel=1e-10)
 
 

@@ -26,10 +26,10 @@ def shells() -> Shells:
 
 def test_redistribution_keeps_the_whole_depth(shells: Shells) -> None:
     """What is spread over the solver's layers is what the air held; each layer holds its share within 0.4 %."""
-    assert shells.scattering_depth.sum() == pytest.approx(1, rel=1e-12)
+    assert shells.scattering_depth[0].sum() == pytest.approx(1, rel=1e-12)
     edges = np.exp(-shells.altitude_km / HEIGHT_KM)
     share = -np.diff(edges) / (1 - edges[-1])
-    np.testing.assert_allclose(shells.scattering_depth[:, 0], share, rtol=4e-3)
+    np.testing.assert_allclose(shells.scattering_depth[0][:, 0], share, rtol=4e-3)
 
 
 @pytest.mark.parametrize("cos_zenith", [1.0, 0.5, 0.1, 0.02, 0.0])
@@ -44,7 +44,7 @@ def test_slant_column_of_an_exponential_air(shells: Shells, cos_zenith: float) -
     end = distance_from_tangent(80.0, tangent_altitude(0.0, cos_zenith, radius), radius) - radius * cos_zenith
     expected = quad(density, 0, end, limit=200)[0] / quad(lambda z: np.exp(-z / HEIGHT_KM), 0, 80)[0]
     factors = shells.slant_factors(tangent_altitude(0.0, np.array(cos_zenith), radius))
-    assert (factors @ shells.scattering_depth)[0] == pytest.approx(expected, rel=1e-3)
+    assert (factors @ shells.scattering_depth[0])[0] == pytest.approx(expected, rel=1e-3)
 
 
 def test_layers_below_the_tangent_point_are_not_crossed(shells: Shells) -> None:
