@@ -1,7 +1,17 @@
-"""Settings that hold for every test."""
+"""Settings that hold for every test, and a sky that many of them look at."""
 
+import pytest
 from hypothesis import settings
+
+from skychart.config import AirSettings
+from skychart.sky.spectral import SpectralSky, solve_spectral
 
 # The first example of a property may pay for an import of a second, and other work may share the machine.
 settings.register_profile("no deadline", deadline=None)
 settings.load_profile("no deadline")
+
+
+@pytest.fixture(scope="session")
+def default_sky() -> SpectralSky:
+    """The sky of the default settings, solved once."""
+    return solve_spectral(AirSettings())

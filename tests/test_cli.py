@@ -550,6 +550,9 @@ def test_every_reading_of_a_real_sky_is_finite(skychart_command, sun: float, vie
     assert 0 <= values["polarisation_degree"] <= 1
 
 
+READING = "    $ .venv/bin/skychart read", "`--sun`"
+
+
 def readme_block(start: str, end: str) -> str:
     """The lines of the README after the one that begins with `start`, up to the one that begins with `end`."""
     lines = (REPOSITORY / "README.md").read_text(encoding="utf-8").splitlines()
@@ -564,14 +567,29 @@ def test_the_python_of_the_readme_runs(capsys: pytest.CaptureFixture[str]) -> No
     assert len(capsys.readouterr().out.splitlines()) == 3
 
 
-def test_the_reading_in_the_readme_is_what_is_printed_even_on_a_terminal_without_the_characters() -> None:
+def printed_reading(encoding: str) -> str:
+    """What the README's `read` prints on a terminal of an encoding."""
     process = subprocess.run(
         [sys.executable, "-m", "skychart", *READ],
-        env=os.environ | {"PYTHONIOENCODING": "ascii"},
+        env=os.environ | {"PYTHONIOENCODING": encoding},
         capture_output=True,
-        text=True,
+        encoding=encoding,
         check=False,
     )
-    expected = readme_block("    $ .venv/bin/skychart read", "`--sun`")
     assert (process.returncode, process.stderr) == (0, "")
-    assert process.stdout == expected.encode("ascii", "replace").decode("ascii")
+    return process.stdout
+
+
+def test_the_reading_in_the_readme_is_what_is_printed_even_on_a_terminal_without_the_characters() -> None:
+    """A change on purpose is written into the README with SKYCHART_ACCEPT=1 and shows in the diff."""
+    if os.environ.get("SKYCHART_ACCEPT"):
+        accept_reading(printed_reading("utf-8"))
+    expected = readme_block(*READING)
+    assert printed_reading("ascii") == expected.encode("ascii", "replace").decode("ascii")
+
+
+def accept_reading(text: str) -> None:
+    """Put `text` in the place of the README's reading."""
+    readme = REPOSITORY / "README.md"
+    former, new = (textwrap.indent(block, "    ") for block in (readme_block(*READING), text))
+    readme.write_text(readme.read_text(encoding="utf-8").replace(former, new), encoding="utf-8", newline="\n")

@@ -8,13 +8,13 @@ import pytest
 
 from skychart.checks import Check, all_passed, rayleigh, run_checks, standard
 from skychart.config import NAMED_AIRS, AirSettings
-from skychart.sky.spectral import NODES_NM
+from skychart.sky.spectral import NODES_NM, SpectralSky
 
 
 @pytest.fixture(scope="module")
-def checks() -> tuple[Check, ...]:
+def checks(default_sky: SpectralSky) -> tuple[Check, ...]:
     """Every check, run once."""
-    return run_checks()
+    return run_checks([default_sky])
 
 
 def test_every_published_value_is_met(checks: tuple[Check, ...]) -> None:

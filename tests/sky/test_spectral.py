@@ -1,53 +1,56 @@
 """The sky on the colour nodes against the solver at every node."""
 
+from dataclasses import replace
+
 import numpy as np
-import pytest
 
 from skychart.colour.chromaticity import uv_prime
 from skychart.colour.integrate import tristimulus_matrix
 from skychart.config import AirSettings
 from skychart.sky import solve
-from skychart.sky.spectral import NODES_NM, SpectralSky, solve_spectral
+from skychart.sky.grid import Grid
+from skychart.sky.spectral import NODES_NM, SpectralSky
 
 SUN = np.array([50.0, 10, 2, 0, -4, -8])[:, None]
 VIEW = np.array([90.0, 45, 10, 2])
+COARSE = Grid(levels=16, zenith=5, azimuth=5, substeps=3)
 
 
-@pytest.fixture(scope="module")
-def sky() -> SpectralSky:
-    """The default air."""
-    return solve_spectral(AirSettings())
+def test_spline_over_wavelength_costs_no_visible_colour(default_sky: SpectralSky) -> None:
+    """Eleven wavelengths of multiple scattering against every node: 0.1 % of luminance and 0.0003 in u'v' at most.
 
-
-def test_spline_over_wavelength_costs_no_visible_colour(sky: SpectralSky) -> None:
-    """Eleven wavelengths of multiple scattering against every node: 0.1 % of luminance and 0.0003 in u'v' at most."""
-    every = solve(sky.once.air).multiple(SUN, VIEW, 90) + sky.once.single(SUN, VIEW, 90)
+    Both on the same coarse grid, for what lies between wavelengths does not depend on it.
+    """
+    once = default_sky.once
+    every = solve(once.air, COARSE).multiple(SUN, VIEW, 90) + once.single(SUN, VIEW, 90)
     every = every[..., 0, :] @ tristimulus_matrix(NODES_NM)
+    sky = replace(default_sky, every_order=solve(default_sky.every_order.air, COARSE))
     splined = sky.stokes(SUN, VIEW, 90)[..., 0, :] @ tristimulus_matrix(NODES_NM)
     np.testing.assert_allclose(splined[..., 1], every[..., 1], rtol=1e-3)
     assert np.linalg.norm(uv_prime(splined) - uv_prime(every), axis=-1).max() < 3e-4
 
 
-def test_shapes_follow_the_interface(sky: SpectralSky) -> None:
+def test_shapes_follow_the_interface(default_sky: SpectralSky) -> None:
     """Wavelength last, 48 nodes, Stokes before it."""
-    assert sky.wavelength_nm.shape == (48,)
-    assert sky.stokes(SUN, VIEW, 90).shape == (6, 4, 3, 48)
-    assert sky.beam(10.0).shape == (48,)
-    diffuse, direct = sky.ground_irradiance(np.array([10.0, -5.0]))
+    assert default_sky.wavelength_nm.shape == (48,)
+    assert default_sky.stokes(SUN, VIEW, 90).shape == (6, 4, 3, 48)
+    assert default_sky.beam(10.0).shape == (48,)
+    diffuse, direct = default_sky.ground_irradiance(np.array([10.0, -5.0]))
     assert diffuse.shape == direct.shape == (2, 48)
     assert np.all(diffuse > 0)
     assert np.all(direct[1] == 0)
 
 
-def test_polarised_part_is_never_more_than_the_whole(sky: SpectralSky) -> None:
+def test_polarised_part_is_never_more_than_the_whole(default_sky: SpectralSky) -> None:
     """At every node, the spline's ends included."""
-    i, q, u = np.moveaxis(sky.stokes(SUN, VIEW, np.array([[[0.0]], [[60]], [[90]], [[180]]])), -2, 0)
+    i, q, u = np.moveaxis(default_sky.stokes(SUN, VIEW, np.array([[[0.0]], [[60]], [[90]], [[180]]])), -2, 0)
     assert np.all(i > 0)
     assert np.all(np.hypot(q, u) <= i)
 
 
-def test_observer_on_a_mountain_sees_less_sky_and_more_sun() -> None:
+def test_observer_on_a_mountain_sees_less_sky_and_more_sun(default_sky: SpectralSky) -> None:
     """Diffuse light falls and direct light grows with the observer's altitude."""
-    low, high = (solve_spectral(AirSettings(altitude_km=z)).ground_irradiance(40.0) for z in (0.0, 3.0))
+    mountain_sky = replace(default_sky, settings=AirSettings(altitude_km=3.0))
+    low, high = (sky.ground_irradiance(40.0) for sky in (default_sky, mountain_sky))
     assert np.all(high[0] < low[0])
     assert np.all(high[1] > low[1])
