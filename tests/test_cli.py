@@ -504,7 +504,7 @@ def test_as_a_module_it_is_the_same_command() -> None:
 
 def test_ctrl_c_while_workers_start_is_one_line_and_they_end_with_the_build(tmp_path: Path) -> None:
     config = tmp_path / "one.toml"
-    config.write_text("solar_elevations_deg = [30]\n")
+    config.write_text('solar_elevations_deg = [30]\n[[atmosphere]]\nname = "molecular"\n')
     swap_in({"index.html": b"former"}, tmp_path / "site")
     command = [sys.executable, "-m", "skychart", "build", str(config), "--out", str(tmp_path / "site"), "--jobs", "2"]
     with (

@@ -25,9 +25,7 @@ def test_arms_leave_the_sun_in_three_directions(sun):
     """Up is straight up, beside nearly at right angles to it, down the opposite of up."""
     view, azimuth = arms(sun)
     _, side = distance_and_side(sun, view[:, 1:], azimuth[:, 1:])
-    for row, seen, expected, within in zip(
-        side, np.isfinite(view[:, 1:]), (1, 0, -1), (1e-6, 0.15, 1e-6), strict=True
-    ):
+    for row, seen, expected, within in zip(side, np.isfinite(view[:, 1:]), (1, 0, -1), (1e-6, 0.15, 1e-6), strict=True):
         assert seen.any()
         np.testing.assert_allclose(row[seen], expected, atol=within)
 

@@ -92,7 +92,9 @@ def test_vanishing_haze_leaves_the_molecular_sky() -> None:
     thin = hazy(1e-6)
     none = dataclasses.replace(thin, haze=None)
     where = np.array([60.0, 20, 5, 0, -2])[:, None], np.array([90.0, 45, 10, 2]), 60
-    np.testing.assert_allclose(solve(thin).stokes(*where)[:, :, 0], solve(none, HAZY_GRID).stokes(*where)[:, :, 0], rtol=5e-4)
+    np.testing.assert_allclose(
+        solve(thin).stokes(*where)[:, :, 0], solve(none, HAZY_GRID).stokes(*where)[:, :, 0], rtol=5e-4
+    )
 
 
 def test_sky_and_sun_never_give_the_ground_more_than_comes_in(sky: Sky) -> None:

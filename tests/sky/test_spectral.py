@@ -9,6 +9,7 @@ from skychart.colour.integrate import tristimulus_matrix
 from skychart.config import AirSettings
 from skychart.sky import solve
 from skychart.sky.grid import Grid
+from skychart.sky.sky import lines_of_sight
 from skychart.sky.spectral import NODES_NM, SpectralSky
 
 SUN = np.array([50.0, 10, 2, 0, -4, -8])[:, None]
@@ -17,17 +18,24 @@ COARSE = Grid(levels=16, zenith=5, azimuth=5, substeps=3)
 
 
 def test_spline_over_wavelength_costs_no_visible_colour(default_sky: SpectralSky) -> None:
-    """Eleven wavelengths of multiple scattering against every node: 0.1 % of luminance and 0.0003 in u'v' at most.
+    """Eleven wavelengths of multiple scattering against every node.
 
-    Both on the same coarse grid, for what lies between wavelengths does not depend on it.
+    Luminance within 0.15 % by day, 1.1 % to a sun of -8 degrees; u'v' within 0.0002 to -4, 0.001 at -8, where the bands
+    of oxygen pairs are deep and narrow. Both on the same coarse grid, for what lies between wavelengths does not depend
+    on it.
     """
     once = default_sky.once
     every = solve(once.air, COARSE).multiple(SUN, VIEW, 90) + once.single(SUN, VIEW, 90)
-    every = every[..., 0, :] @ tristimulus_matrix(NODES_NM)
+    shape, lines = lines_of_sight(SUN, VIEW, 90)
+    every = every[..., 0, :] * default_sky.paths.factor(lines).reshape(*shape, -1) @ tristimulus_matrix(NODES_NM)
     sky = replace(default_sky, every_order=solve(default_sky.every_order.air, COARSE))
     splined = sky.stokes(SUN, VIEW, 90)[..., 0, :] @ tristimulus_matrix(NODES_NM)
-    np.testing.assert_allclose(splined[..., 1], every[..., 1], rtol=1e-3)
-    assert np.linalg.norm(uv_prime(splined) - uv_prime(every), axis=-1).max() < 3e-4
+    luminance = np.abs(splined[..., 1] / every[..., 1] - 1)
+    chromaticity = np.linalg.norm(uv_prime(splined) - uv_prime(every), axis=-1)
+    assert luminance[:4].max() < 1.5e-3
+    assert luminance.max() < 1.1e-2
+    assert chromaticity[:5].max() < 2e-4
+    assert chromaticity.max() < 1e-3
 
 
 def test_shapes_follow_the_interface(default_sky: SpectralSky) -> None:
