@@ -20,7 +20,7 @@ from skychart.sky.field import Field
 from skychart.sky.grid import Grid, solar_zenith_nodes_deg
 from skychart.sky.haze import Haze
 from skychart.sky.interpolation import spline_matrix
-from skychart.sky.local import FlatAir, FlatField, one_scattering, solve_closure, solve_flat, through_peak
+from skychart.sky.local import FlatAir, FlatField, FlatLight, one_scattering, solve_closure, solve_flat, through_peak
 from skychart.sky.local.streams import MOMENTS, legendre
 from skychart.sky.molecular import solve_field
 from skychart.sky.observer import Lines, Station
@@ -41,6 +41,7 @@ _FLAT_KM = np.concatenate(
 )
 _LOWEST_FLAT_SUN_DEG = 97
 _WHOLE = 1e-6  # degrees
+_VIEWS_AT_ONCE = 24  # for the sake of memory
 _LOWEST_VIEW = 0.01  # cosine of zenith angle: flat air has no horizon
 
 
@@ -112,18 +113,33 @@ class HazyLight:
         boundary = int(np.argmin(np.abs(self.flat_altitude_km - altitude_km)))
         down = np.where(lines.view_cosine < 0, -1.0, 1.0)
         view, which = np.unique(down * np.maximum(np.abs(lines.view_cosine), _LOWEST_VIEW), return_inverse=True)
-        full, closed = (one_scattering(light, view, boundary) for light in (self.full, self.closed))
+        result = np.empty((len(which), len(self.air.wavelength_nm)))
+        for first in range(0, len(view), _VIEWS_AT_ONCE):
+            some = np.flatnonzero((which >= first) & (which < first + _VIEWS_AT_ONCE))
+            full, closed = (
+                one_scattering(light, view[first : first + _VIEWS_AT_ONCE], boundary)
+                for light in (self.full, self.closed)
+            )
+            angles = lines.solar_zenith[some], which[some] - first, lines.relative_azimuth[some]
+            result[some] = _ratio(full, closed, *angles)
+        return result
 
-        def ratio(sun: NDArray[np.intp]) -> Array:
-            angles = sun, which, lines.relative_azimuth
-            return full.stokes(*angles)[:, 0] / closed.stokes(*angles)[:, 0]
 
-        place = np.minimum(np.degrees(lines.solar_zenith), _LOWEST_FLAT_SUN_DEG)
-        sun = np.floor(np.round(place, 9)).astype(np.intp)
-        part = (place - sun)[:, None]
-        if np.abs(part).max(initial=0) < _WHOLE:
-            return ratio(sun)
-        return (1 - part) * ratio(sun) + part * ratio(np.minimum(sun + 1, _LOWEST_FLAT_SUN_DEG))
+def _ratio(
+    full: FlatLight, closed: FlatLight, solar_zenith: Array, view: NDArray[np.intp], relative_azimuth: Array
+) -> Array:
+    """Full over closed light, (line, wavelength), linear between whole degrees of the sun."""
+
+    def at(sun: NDArray[np.intp]) -> Array:
+        seen = (light.stokes(sun, view, relative_azimuth)[:, 0] for light in (full, closed))
+        return np.divide(*seen)
+
+    place = np.minimum(np.degrees(solar_zenith), _LOWEST_FLAT_SUN_DEG)
+    sun = np.floor(np.round(place, 9)).astype(np.intp)
+    part = (place - sun)[:, None]
+    if np.abs(part).max(initial=0) < _WHOLE:
+        return at(sun)
+    return (1 - part) * at(sun) + part * at(np.minimum(sun + 1, _LOWEST_FLAT_SUN_DEG))
 
 
 def solve_hazy(air: Atmosphere, grid: Grid, station: Station, typical: int) -> HazyLight:
