@@ -96,7 +96,7 @@
         said.textContent = "Selected: copy with Ctrl+C.";
       }
     });
-    readout.replaceChildren(title, button, said, list);
+    readout.replaceChildren(title, list, button, said);
     return (numbers) => {
       shown = numbers;
       title.textContent = numbers.title;
