@@ -39,6 +39,7 @@ class _Stopped(BaseException):
 def main(argv: Sequence[str] | None = None) -> int:
     """Run one command and return its exit code: 0 done, 1 a check missed, 2 wrong input, 130 and 143 stopped."""
     _never_fail_on_a_character(sys.stdout, sys.stderr)
+    os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")  # the solver's own threads share the work; its would only wait
     try:
         with _signals_raise():
             options = parse(sys.argv[1:] if argv is None else argv)
