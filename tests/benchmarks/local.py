@@ -12,7 +12,7 @@ from itertools import pairwise
 import numpy as np
 
 from skychart.sky.haze import Haze
-from skychart.sky.local import FlatAir, FlatField, Streams, one_scattering, peak_fraction, solve_closure, solve_flat
+from skychart.sky.local import FlatAir, FlatField, Streams, one_scattering, solve_closure, solve_flat
 
 WAVELENGTH_NM = np.linspace(380, 780, 11)
 SUN = np.radians(np.linspace(0, 88, 60))
@@ -46,7 +46,7 @@ def air(boundaries: int = 23) -> FlatAir:
         ground_albedo=np.full(count, 0.2),
         solar_zenith_angle=SUN,
         beam=beam(rayleigh + depth),
-        scaled_beam=beam(rayleigh + depth * (1 - SCATTERED * peak_fraction(haze))),
+        scaled_beam=beam(rayleigh + depth * (1 - SCATTERED * haze.peak)),
     )
 
 

@@ -14,7 +14,7 @@ from numpy.typing import ArrayLike, NDArray
 from skychart.data.tables import load_table
 from skychart.sky.dipole import molecular_coefficients
 from skychart.sky.haze import Haze
-from skychart.sky.local import FlatAir, FlatField, one_scattering, peak_fraction, solve_closure, solve_flat, tensor
+from skychart.sky.local import FlatAir, FlatField, one_scattering, solve_closure, solve_flat, tensor
 from skychart.sky.local.air import unscaled
 from skychart.sky.local.paths import beam_averages
 from skychart.sky.local.streams import Streams, legendre
@@ -85,7 +85,7 @@ def flat_air(
         ground_albedo=np.broadcast_to(np.asarray(albedo, dtype=float), (cases,)),
         solar_zenith_angle=chi,
         beam=beam(rayleigh_depth + haze_depth),
-        scaled_beam=beam(rayleigh_depth + haze_depth * (1 - scattering * peak_fraction(given))),
+        scaled_beam=beam(rayleigh_depth + haze_depth * (1 - scattering * given.peak)),
     )
 
 

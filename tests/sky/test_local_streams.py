@@ -4,8 +4,8 @@ import numpy as np
 import pytest
 
 from skychart.sky.haze import Haze
-from skychart.sky.local import Streams, scatter_modes, through_peak
-from skychart.sky.local.streams import legendre
+from skychart.sky.local import Streams, through_peak
+from skychart.sky.local.streams import legendre, scattering_kernel
 
 ANGLE_DEG = np.linspace(0, 180, 361)
 
@@ -18,6 +18,12 @@ def henyey_greenstein(asymmetry: float, cosine: np.ndarray) -> np.ndarray:
 def haze_of(phase: np.ndarray, angle_deg: np.ndarray = ANGLE_DEG) -> Haze:
     """Haze of one layer and wavelength."""
     return Haze(np.ones((1, 1)), np.ones(1), angle_deg, phase[None])
+
+
+def scatter_modes(moments: np.ndarray, radiance: np.ndarray, streams: Streams, view_cosine: np.ndarray) -> np.ndarray:
+    """Haze's source in light given on (..., stream, mode, wavelength), by the kernel: (..., view, mode, wavelength)."""
+    kernel = scattering_kernel(moments, streams, view_cosine, radiance.shape[-2])
+    return np.einsum("mwvs,...smw->...vmw", kernel, radiance)
 
 
 def test_functions_are_the_normalised_associated_legendre_functions() -> None:

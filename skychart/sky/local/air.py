@@ -22,7 +22,7 @@ class FlatAir:
     wavelength). ``haze``: its depths in the same layers. ``depolarisation``, ``ground_albedo``: (wavelength,).
     ``solar_zenith_angle`` [rad]: (sun,). ``beam``: transmission from the sun to each layer boundary, the ground first,
     (layer + 1, sun, wavelength); it need not be that of flat layers, and may be 0 in the planet's shadow.
-    ``scaled_beam``: the same where the haze's optical depth is reduced by the part ``peak_fraction`` of its scattering,
+    ``scaled_beam``: the same where the haze's optical depth is reduced by the part ``Haze.peak`` of its scattering,
     as the closure has it. Trusted to be in range: they come from a checked Atmosphere.
     """
 
@@ -52,15 +52,6 @@ class Optics:
     remainder: Haze
 
 
-def peak_fraction(haze: Haze) -> Array:
-    """Part of the haze's scattering that the closure takes for unscattered, the asymmetry squared; (wavelength,).
-
-    Joseph, Wiscombe & Weinman 1976, The delta-Eddington approximation for radiative flux transfer,
-    doi:10.1175/1520-0469(1976)033<2452:TDEAFR>2.0.CO;2.
-    """
-    return haze.moments(2)[1] ** 2
-
-
 def through_peak(haze: Haze, moments: int, fraction: Array) -> Haze:
     """The haze with the phase function of light that its forward peak has scattered before.
 
@@ -88,7 +79,7 @@ def delta_m(air: FlatAir, moments: int) -> Optics:
     """
     values = air.haze.moments(moments + 1)
     fraction = np.maximum(values[-1], 0)
-    whole = peak_fraction(air.haze)
+    whole = air.haze.peak
     power = np.where(whole > _ISOTROPIC, fraction / np.maximum(whole, _ISOTROPIC), 0)
     lit = air.beam > 0
     beam = np.where(lit, air.beam * (air.scaled_beam / np.where(lit, air.beam, 1)) ** power, 0)
@@ -99,7 +90,7 @@ def delta_eddington(air: FlatAir) -> Optics:
     """The haze with two moments, the square of its asymmetry taken for unscattered."""
     asymmetry = air.haze.moments(2)[1]
     moments = np.array([np.ones_like(asymmetry), asymmetry / (1 + asymmetry)])
-    return _optics(air, moments, peak_fraction(air.haze), air.scaled_beam)
+    return _optics(air, moments, air.haze.peak, air.scaled_beam)
 
 
 def _optics(air: FlatAir, moments: Array, fraction: Array, beam: Array) -> Optics:

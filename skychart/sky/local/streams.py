@@ -67,17 +67,3 @@ def scattering_kernel(moments: Array, streams: Streams, view_cosine: Array, mode
     here = legendre(modes, count, streams.cosine) * streams.weight[:, None]
     share = 0.5 * (2 * np.arange(count) + 1) * moments.T
     return (there * share[:, None, :]) @ here[:, None].swapaxes(2, 3)
-
-
-def scatter_modes(moments: Array, radiance: Array, streams: Streams, view_cosine: Array) -> Array:
-    """Source of haze that stands in the given light [1/sr] per unit of its scattering optical depth.
-
-    ``moments`` of the phase function (moment, wavelength), the first 1; as many as there are streams are worth giving.
-    ``radiance`` (..., stream, mode, wavelength) at the cosines of ``streams``; ``view_cosine`` (view,).
-    Shape (..., view, mode, wavelength).
-    """
-    kernel = scattering_kernel(moments, streams, view_cosine, radiance.shape[-2])
-    light = np.moveaxis(radiance, (-2, -1), (0, 1))
-    mixed = kernel @ light.reshape(*light.shape[:2], -1, len(streams.cosine)).swapaxes(2, 3)
-    source = mixed.swapaxes(2, 3).reshape(*light.shape[:-1], len(view_cosine))
-    return np.moveaxis(source, (0, 1), (-2, -1))
