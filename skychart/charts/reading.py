@@ -28,6 +28,10 @@ class Sky(Protocol):
     def wavelength_nm(self) -> np.ndarray:
         """Wavelengths of all spectra [nm], ascending, shape (wavelength,)."""
 
+    @property
+    def ground_albedo(self) -> np.ndarray:
+        """Share of the light that the ground returns, shape (wavelength,)."""
+
     def stokes(
         self,
         solar_elevation_deg: np.ndarray | float,

@@ -18,6 +18,7 @@ VIEW_ELEVATION_DEG = np.array(
     [0, 0.5, 1, 2, 3, 4, 5, 6, 8, 10, 12, 15, 20, 25, 30, 35, 40, 45, 50, 55, 60, 65, 70, 75, 80, 85, 90], float
 )
 RELATIVE_AZIMUTH_DEG = np.arange(0.0, 181.0, 7.5)
+BELOW_ELEVATION_DEG = np.array([-90, -60, -40, -25, -15, -10, -7, -5, -4, -3, -2, -1, -0.5])
 
 
 @dataclass(frozen=True)
@@ -46,11 +47,13 @@ class SkyView:
     """The sky of one sun, as a picture takes it.
 
     `grid_XYZ` [cd m⁻²] (view elevation, azimuth, XYZ) on the survey's grid; `arms_XYZ` (arm, distance, XYZ) around the
-    sun, whose apparent elevation is `sun_elevation_deg`; nan below the horizon.
+    sun, whose apparent elevation is `sun_elevation_deg`; nan below the horizon. `below_XYZ` (elevation below the
+    horizon, azimuth, XYZ): the lit ground and the air before it.
     """
 
     grid_XYZ: np.ndarray
     arms_XYZ: np.ndarray
+    below_XYZ: np.ndarray
     sun_elevation_deg: float
 
 
@@ -60,7 +63,8 @@ class Survey:
 
     `stokes_XYZ` [cd m⁻²] (sun, view elevation, azimuth, Stokes I Q U, XYZ); `sky_XYZ` and `sun_XYZ` [lx] of the
     level ground (sun, XYZ); `beam_XYZ` [lx] of a plane facing the sun (sun, XYZ); `aureole_XYZ` as `stokes_XYZ`
-    along the arms around the sun (sun, arm, distance, Stokes I Q U, XYZ), nan below the horizon; `radiance`
+    along the arms around the sun (sun, arm, distance, Stokes I Q U, XYZ), nan below the horizon; `below_XYZ` [cd m⁻²]
+    (sun, elevation below the horizon, azimuth, XYZ): the lit ground and the air before it; `radiance`
     [W m⁻² sr⁻¹ nm⁻¹] of `DIRECTIONS` (sun, direction, wavelength); `beam_irradiance` [W m⁻² nm⁻¹] of a plane
     facing the sun (sun, wavelength), both on the sky's wavelengths with the solar spectrum averaged about each.
     """
@@ -72,6 +76,7 @@ class Survey:
     wavelength_nm: np.ndarray
     stokes_XYZ: np.ndarray
     aureole_XYZ: np.ndarray
+    below_XYZ: np.ndarray
     sky_XYZ: np.ndarray
     sun_XYZ: np.ndarray
     beam_XYZ: np.ndarray
@@ -86,7 +91,7 @@ class Survey:
     def sky_view(self, sun: int) -> SkyView:
         """The `sun`-th sky for a picture."""
         apparent = float(self.apparent_elevation_deg[sun])
-        return SkyView(self.stokes_XYZ[sun, :, :, 0], self.aureole_XYZ[sun, :, :, 0], apparent)
+        return SkyView(self.stokes_XYZ[sun, :, :, 0], self.aureole_XYZ[sun, :, :, 0], self.below_XYZ[sun], apparent)
 
     def sun_seen(self, sun: int) -> bool:
         """Whether the `sun`-th sun stands above the horizon as it is seen."""
@@ -112,6 +117,7 @@ def survey(sky: Sky, solar_elevation_deg: tuple[float, ...], observer: str) -> S
         wavelength_nm=sky.wavelength_nm,
         stokes_XYZ=stokes @ matrix,
         aureole_XYZ=_aureole(sky, suns, apparent, matrix),
+        below_XYZ=_below(sky, suns, diffuse + direct, matrix),
         sky_XYZ=diffuse @ matrix,
         sun_XYZ=direct @ matrix,
         beam_XYZ=beam @ matrix,
@@ -138,6 +144,16 @@ def _aureole(sky: Sky, suns: np.ndarray, apparent_deg: np.ndarray, matrix: np.nd
     found = np.full((*view.shape, 3, 3), np.nan)
     found[seen] = sky.stokes(np.broadcast_to(suns[:, None, None], view.shape)[seen], view[seen], azimuth[seen]) @ matrix
     return found
+
+
+def _below(sky: Sky, suns: np.ndarray, irradiance: np.ndarray, matrix: np.ndarray) -> np.ndarray:
+    """What is seen below the horizon: from the ground, the ground at one's feet; from aloft, a question of its own."""
+    shape = len(suns), len(BELOW_ELEVATION_DEG), len(RELATIVE_AZIMUTH_DEG), 3
+    if sky.settings.altitude_km == 0:
+        lit = irradiance * sky.ground_albedo @ matrix / np.pi
+        return np.broadcast_to(lit[:, None, None], shape)
+    light = sky.stokes(suns[:, None, None], BELOW_ELEVATION_DEG[:, None], RELATIVE_AZIMUTH_DEG)[..., 0, :]
+    return light @ matrix
 
 
 def _solar_about(wavelength_nm: np.ndarray) -> np.ndarray:

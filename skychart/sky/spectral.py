@@ -46,6 +46,11 @@ class SpectralSky:
         """Colour nodes [nm], shape (48,)."""
         return NODES_NM
 
+    @property
+    def ground_albedo(self) -> Array:
+        """Share of the light that the ground returns, shape (48,)."""
+        return self.once.air.ground_albedo
+
     def stokes(
         self, solar_elevation_deg: ArrayLike, view_elevation_deg: ArrayLike, relative_azimuth_deg: ArrayLike
     ) -> Array:

@@ -6,11 +6,12 @@ from skychart.config import AirSettings
 
 
 class FakeSky:
-    """The three methods of a sky on 48 wavelengths; light fades by a factor of ten each 3° below the horizon."""
+    """What charts ask of a sky, on 48 wavelengths; light fades by a factor of ten each 3° below the horizon."""
 
     def __init__(self, settings: AirSettings) -> None:
         self.settings = settings
         self.wavelength_nm = np.arange(360.0, 831.0, 10.0)
+        self.ground_albedo = np.full(48, 0.18)
         self.depth = 0.1 * (550.0 / self.wavelength_nm) ** 4 + 0.03 * np.exp(-(((self.wavelength_nm - 600) / 60) ** 2))
 
     def stokes(self, solar_elevation_deg, view_elevation_deg, relative_azimuth_deg):

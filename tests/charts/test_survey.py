@@ -130,3 +130,9 @@ def test_overview_has_a_column_and_a_row_for_each_sun(found):
     assert [band.relative_azimuth_deg for band in day.bands] == [0, 90, 180]
     assert len(day.skies) == len(day.exposures) == len(SUNS_DEG)
     assert all(len(row.cells) == len(day.heads) for row in day.rows)
+
+
+def test_the_ground_is_as_bright_as_what_falls_on_it(found):
+    """From the ground: everywhere below the horizon 18 % of the light of the white card."""
+    below = np.broadcast_to(0.18 * found.card_XYZ[:, None, None], found.below_XYZ.shape)
+    np.testing.assert_allclose(found.below_XYZ, below, rtol=1e-9)
