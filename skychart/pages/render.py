@@ -61,11 +61,11 @@ def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
     pixels = half_sky(chart.sky)
     for shown in chart.renderings:
         files[pictures[shown.exposure.key]] = srgb_png(half_dome(pixels, shown.exposure))
-    about = _about(atlas, chart.atmosphere) | {
+    about = file_head(atlas, chart.atmosphere) | {
         "solar_elevation_deg": chart.solar_elevation_deg,
         "apparent_elevation_deg": round(chart.apparent_elevation_deg, 3),
     }
-    exports, downloads = _exports(stem, title, about, chart.table, (chart.readings, chart.ground, chart.spectra))
+    exports, downloads = table_files(stem, title, about, chart.table, (chart.readings, chart.ground, chart.spectra))
     context = {
         "page": page,
         "chart": chart,
@@ -77,7 +77,7 @@ def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
         "figures": figures,
         "downloads": downloads,
     }
-    return {page.path: render(_pages(), "sheet.html", context), **files, **exports}
+    return {page.path: render(templates(), "sheet.html", context), **files, **exports}
 
 
 def direction_files(atlas: Atlas, chart: DirectionSheet) -> dict[str, bytes]:
@@ -90,11 +90,11 @@ def direction_files(atlas: Atlas, chart: DirectionSheet) -> dict[str, bytes]:
     description = f"{view.title}: colour, luminance and polarisation of the {chart.atmosphere} sky through the day."
     page = atlas.page("view", chart.atmosphere, f"{stem}.html", title, description, before, after)
     figures, files = direction_figures(chart)
-    about = _about(atlas, chart.atmosphere) | {
+    about = file_head(atlas, chart.atmosphere) | {
         "view_elevation_deg": view.view_elevation_deg,
         "relative_azimuth_deg": view.relative_azimuth_deg,
     }
-    exports, downloads = _exports(stem, title, about, chart.table, (chart.readings,))
+    exports, downloads = table_files(stem, title, about, chart.table, (chart.readings,))
     context = {
         "page": page,
         "chart": chart,
@@ -104,7 +104,7 @@ def direction_files(atlas: Atlas, chart: DirectionSheet) -> dict[str, bytes]:
         "figures": figures,
         "downloads": downloads,
     }
-    return {page.path: render(_pages(), "direction.html", context), **files, **exports}
+    return {page.path: render(templates(), "direction.html", context), **files, **exports}
 
 
 def start_files(atlas: Atlas, chart: Overview) -> dict[str, bytes]:
@@ -136,7 +136,7 @@ def start_files(atlas: Atlas, chart: Overview) -> dict[str, bytes]:
         "bands": bands,
         "groups": [(group, len(list(heads))) for group, heads in groupby(chart.heads, lambda head: head.group)],
     }
-    return {page.path: render(_pages(), "start.html", context), **files}
+    return {page.path: render(templates(), "start.html", context), **files}
 
 
 def comparison_files(atlas: Atlas, chart: Comparison) -> dict[str, bytes]:
@@ -163,7 +163,7 @@ def comparison_files(atlas: Atlas, chart: Comparison) -> dict[str, bytes]:
     files = {
         pictures[shown.atmosphere]: srgb_png(half_dome(half_sky(shown.sky), chart.exposure)) for shown in chart.skies
     }
-    return {page.path: render(_pages(), "compare.html", context), **files}
+    return {page.path: render(templates(), "compare.html", context), **files}
 
 
 def methods_files(atlas: Atlas, chart: Methods) -> dict[str, bytes]:
@@ -173,11 +173,11 @@ def methods_files(atlas: Atlas, chart: Methods) -> dict[str, bytes]:
     (light, temperature), files = methods_figures(chart)
     airs = [(air.name, air_summary(air)) for air in atlas.settings.atmospheres]
     context = {"page": page, "chart": chart, "light": light, "temperature": temperature, "atmospheres": airs}
-    return {page.path: render(_pages(), "methods.html", context), **files}
+    return {page.path: render(templates(), "methods.html", context), **files}
 
 
 @functools.cache
-def _pages() -> Environment:
+def templates() -> Environment:
     """One environment a process, so that each template is compiled once."""
     return environment()
 
@@ -193,7 +193,7 @@ def _band_png(chart: Overview, band: DayBand) -> bytes:
     return srgb_png(pixels)
 
 
-def _about(atlas: Atlas, atmosphere: str) -> dict[str, Any]:
+def file_head(atlas: Atlas, atmosphere: str) -> dict[str, Any]:
     """Where a file comes from, for its head."""
     return {
         "title": SITE_TITLE,
@@ -205,7 +205,7 @@ def _about(atlas: Atlas, atmosphere: str) -> dict[str, Any]:
     }
 
 
-def _exports(
+def table_files(
     stem: str, title: str, about: dict[str, Any], table: Any, readings: Sequence[Any]
 ) -> tuple[dict[str, bytes], tuple[Link, ...]]:
     """CSV and JSON of a sheet, and the links to them."""
