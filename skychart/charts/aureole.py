@@ -35,7 +35,7 @@ def arms(sun_elevation_deg: float) -> tuple[np.ndarray, np.ndarray]:
         along = sun_elevation_deg + sign * DISTANCE_DEG
         view[row] = np.where(along > 90, 180 - along, along)
         azimuth[row] = np.where(along > 90, 180.0, 0.0)
-    view[1], azimuth[1] = _beside(np.radians(DISTANCE_DEG), np.radians(sun_elevation_deg))
+    view[1], azimuth[1] = beside(np.radians(DISTANCE_DEG), np.radians(sun_elevation_deg))
     hidden = ~((view >= 0) & np.isfinite(azimuth))
     view[hidden] = azimuth[hidden] = np.nan
     return view, azimuth
@@ -72,7 +72,7 @@ def peak(sun_elevation_deg: float, arms_log_XYZ: np.ndarray) -> Peak:
 
     The arm down is left out, for the horizon cuts it short.
     """
-    mean = _filled(arms_log_XYZ)[:2].mean(axis=0)
+    mean = without_gaps(arms_log_XYZ)[:2].mean(axis=0)
     squared = DISTANCE_DEG[:, None] ** 2
     curve = (mean[-1] - mean[-2]) / (squared[-1] - squared[-2])
     return Peak(sun_elevation_deg, mean - mean[-1] - curve * (squared - squared[-1]))
@@ -88,12 +88,12 @@ def along_distance(values: np.ndarray, distance_deg: np.ndarray) -> np.ndarray:
 
 def toward_arms(sides_log: np.ndarray, distance_deg: np.ndarray, side: np.ndarray) -> np.ndarray:
     """Between arms (arm, distance, XYZ): their values at a distance, weighted by the direction from the sun."""
-    up, beside, down = (along_distance(values, distance_deg) for values in _filled(sides_log))
+    up, beside, down = (along_distance(values, distance_deg) for values in without_gaps(sides_log))
     vertical = (side**2)[..., None]
     return vertical * np.where((side > 0)[..., None], up, down) + (1 - vertical) * beside
 
 
-def _filled(arms_log: np.ndarray) -> np.ndarray:
+def without_gaps(arms_log: np.ndarray) -> np.ndarray:
     """Arms without gaps: beyond the horizon a value is held, and an arm that sees nothing is like the one beside."""
     filled = arms_log.copy()
     for arm in filled:
@@ -107,7 +107,7 @@ def _filled(arms_log: np.ndarray) -> np.ndarray:
     return filled
 
 
-def _beside(distance: np.ndarray, sun: float) -> tuple[np.ndarray, np.ndarray]:
+def beside(distance: np.ndarray, sun: float) -> tuple[np.ndarray, np.ndarray]:
     """View elevation and azimuth [deg] of the arm beside the sun, from angles in rad; nan nearer than the horizon.
 
     Along the sun's own elevation, which is one question less for each distance, but for a sun near the zenith.

@@ -4,7 +4,7 @@ The grid of view directions serves the pictures, which interpolate on it; the sw
 sheets take some of its nodes, so that a picture and a table never disagree.
 """
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -18,6 +18,10 @@ VIEW_ELEVATION_DEG = np.array(
     [0, 0.5, 1, 2, 3, 4, 5, 6, 8, 10, 12, 15, 20, 25, 30, 35, 40, 45, 50, 55, 60, 65, 70, 75, 80, 85, 90], float
 )
 RELATIVE_AZIMUTH_DEG = np.arange(0.0, 181.0, 7.5)
+_BY_SUN = (
+    *("solar_elevation_deg", "apparent_elevation_deg", "stokes_XYZ", "aureole_XYZ", "below_XYZ"),
+    *("sky_XYZ", "sun_XYZ", "beam_XYZ", "radiance", "beam_irradiance"),
+)
 BELOW_ELEVATION_DEG = np.array([-90, -60, -40, -25, -15, -10, -7, -5, -4, -3, -2, -1, -0.5])
 
 
@@ -124,6 +128,12 @@ def survey(sky: Sky, solar_elevation_deg: tuple[float, ...], observer: str) -> S
         radiance=stokes[:, rows, columns, 0] * solar,
         beam_irradiance=beam * solar,
     )
+
+
+def at_suns(found: Survey, solar_elevation_deg: tuple[float, ...]) -> Survey:
+    """The part of a survey that belongs to these suns [deg], which it must hold."""
+    suns = np.searchsorted(found.solar_elevation_deg, solar_elevation_deg)
+    return replace(found, **{name: getattr(found, name)[suns] for name in _BY_SUN})
 
 
 def elevation_index(view_elevation_deg: float) -> int:
