@@ -11,14 +11,19 @@ Spectra are kept for the survey's few directions; the page joins them and bends 
 """
 
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 
 from skychart.charts.aureole import ARMS, DISTANCE_DEG, LOWEST_SUN_DEG, arms, beside, distance_and_side, without_gaps
+from skychart.charts.columns import GAMUTS, SPACE_TITLES
 from skychart.charts.reading import Sky
 from skychart.charts.splines import spline
 from skychart.charts.survey import RELATIVE_AZIMUTH_DEG, VIEW_ELEVATION_DEG, Survey, at_suns
-from skychart.colour.integrate import tristimulus_matrix
+from skychart.colour.integrate import LUMINOUS_EFFICACY, tristimulus_matrix
+from skychart.colour.observers import colour_matching_functions
+from skychart.colour.spaces import SPACES, rgb
+from skychart.colour.temperature import planckian_locus
 
 READER_SUNS_DEG = (
     *(-12.0, -11.0, -10.0, -9.0, -8.0, -7.0, -6.0, -5.0, -4.0, -3.0, -2.0, -1.0, 0.0, 1.0, 2.0, 3.0, 4.0, 5.0, 6.0),
@@ -32,7 +37,7 @@ LIGHT_SUNS_DEG = tuple(sorted({*READER_SUNS_DEG, *np.arange(-0.5, 2, 0.125).toli
 PEAK_DEG = np.array([0, 0.2, 0.5, 1, 1.5, 2, 3, 5, 7.5, 10, 14, 20, 28])
 """Distances from the sun at which the peak is known."""
 
-SPECTRUM_NM = np.arange(380.0, 781.0, 20.0)
+SPECTRUM_NM = np.arange(380.0, 781.0, 10.0)
 
 _REACH_DEG = float(PEAK_DEG[-1])
 _FADE = 1 - (DISTANCE_DEG / DISTANCE_DEG[-1]) ** 4
@@ -43,10 +48,10 @@ _DARKEST = 1e-12
 class ReaderSky:
     """One atmosphere for the reader; logarithms are natural, of tristimulus values in cd m⁻² or lx.
 
-    `smooth_log` (sun, view elevation, azimuth, XYZ) without the peak, `peak_log` (sun, distance, XYZ), `sides_log` (sun,
-    arm, distance, XYZ) of what the arms differ by; `polarised` (sun, view elevation, azimuth, Q U) over the luminance
-    without the peak; `sky_log` (sun, XYZ) of the level ground under the sky alone; `spectra_log` (sun, direction,
-    wavelength) of the radiance, up to a factor. On `light_deg`: `apparent_deg` (light,), and `beam_log` (lit, XYZ) of a
+    `smooth_log` (sun, view elevation, azimuth, XYZ) without the peak, `peak_log` (sun, distance, XYZ), `sides_log`
+    (sun, arm, distance, XYZ) of what the arms differ by; `polarised` (sun, view elevation, azimuth, Q U) over the
+    luminance without the peak; `sky_log` (sun, XYZ) of the level ground under the sky alone; `spectra_log` (sun,
+    direction, wavelength) of the radiance. On `light_deg`: `apparent_deg` (light,), and `beam_log` (lit, XYZ) of a
     plane that faces the sun, for the last suns, those that are seen.
     """
 
@@ -91,6 +96,31 @@ def reader_sky(sky: Sky, found: Survey) -> ReaderSky:
         apparent_deg=np.asarray(sky.apparent_elevation_deg(np.array(LIGHT_SUNS_DEG)), float),
         beam_log=_log(beam[beam[:, 1] > 0]),
     )
+
+
+def reader_constants(observer: str) -> dict[str, Any]:
+    """What the page makes colours with, the same that the tables are made with: matrices, Planckian locus, functions.
+
+    `spectrum_to_XYZ` (wavelength, XYZ) sums spectral radiance [W m⁻² sr⁻¹ nm⁻¹] at `SPECTRUM_NM` to cd m⁻².
+    """
+    mired, locus = planckian_locus(observer)
+    fine_nm, functions = colour_matching_functions(observer)
+    step = float(SPECTRUM_NM[1] - SPECTRUM_NM[0])
+    at_nodes = np.stack([np.interp(SPECTRUM_NM, fine_nm, function, left=0) for function in functions.T], axis=-1)
+    return {
+        "spaces": {
+            space: {"title": SPACE_TITLES[space], "from_xyz": _listed(rgb(np.eye(3), space).T, 12)} for space in SPACES
+        },
+        "gamuts": list(GAMUTS),
+        "locus_uv": _listed(locus, 9),
+        "locus_step_mired": float(mired[1] - mired[0]),
+        "spectrum_to_XYZ": _listed(LUMINOUS_EFFICACY * step * at_nodes, 6),
+    }
+
+
+def _listed(values: np.ndarray, decimals: int) -> list[Any]:
+    listed: list[Any] = np.round(values, decimals).tolist()
+    return listed
 
 
 def _near(sky: Sky, found: Survey, matrix: np.ndarray) -> np.ndarray:

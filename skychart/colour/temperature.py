@@ -40,6 +40,11 @@ def cct_duv(XYZ: ArrayLike, observer: str = "cie-1931-2") -> tuple[np.ndarray, n
     return cct, duv
 
 
+def planckian_locus(observer: str = "cie-1931-2") -> tuple[np.ndarray, np.ndarray]:
+    """Reciprocal temperature [MK⁻¹], evenly spaced, shape (n,), and CIE 1960 uv, (n, 2), that `cct_duv` works with."""
+    return _MIRED, _planckian_locus(observer)
+
+
 def _nearest_on_locus(uv: np.ndarray, locus: np.ndarray) -> np.ndarray:
     """Temperature and Duv, shape (2, n), of chromaticities of shape (n, 2)."""
     result = np.full((2, len(uv)), np.nan)

@@ -1,9 +1,8 @@
 """The reader's numbers as a script that hands them over: a page opened from disk may load scripts, but no data files.
 
-Each array becomes whole multiples of a step; along each axis but the last but one kind of them the differences of
-neighbours are taken, which are small since skies are smooth, and written as variable-length integers: zigzag sign, seven
-bits a byte, the lowest first (as in Protocol Buffers Encoding, "Base 128 Varints"). All arrays follow each other and are
-written as base64 (RFC 4648).
+Each array becomes whole multiples of a step. Along each axis but the last, differences of neighbours are taken, which
+are small since skies are smooth, and written as integers of variable length: zigzag sign, seven bits a byte, the lowest
+first (as in Protocol Buffers Encoding, "Base 128 Varints"). The arrays follow each other, in base64 (RFC 4648).
 """
 
 import base64

@@ -9,11 +9,13 @@ from skychart.charts.checks import methods
 from skychart.charts.comparison import comparison
 from skychart.charts.direction import direction_sheet
 from skychart.charts.overview import overview
+from skychart.charts.reader import READER_SUNS_DEG, ReaderSky, reader_sky
 from skychart.charts.sheet import elevation_sheet
-from skychart.charts.survey import DIRECTIONS, Survey, survey
+from skychart.charts.survey import DIRECTIONS, Survey, at_suns, survey
 from skychart.checks import run_checks
 from skychart.config import NAMED_AIRS, AirSettings, Settings
 from skychart.pages.environment import static_files
+from skychart.pages.reader_page import reader_data_files, reader_files
 from skychart.pages.render import comparison_files, direction_files, methods_files, sheet_files, start_files
 from skychart.pages.site import Atlas, make_atlas
 from skychart.pages.workers import workers
@@ -48,7 +50,7 @@ def build_site(settings: Settings, out: Path, jobs: int, progress: Callable[[str
     files = static_files()
     with workers(jobs) as pool:
         solving = [_submit_air(pool, air, settings, progress) for air in settings.atmospheres]
-        skies, surveys = zip(*(done.result() for done in solving), strict=True)
+        skies, surveys, readers = zip(*(done.result() for done in solving), strict=True)
         checking = pool.submit(run_checks, [sky for sky in skies if sky is not None])
         rendering = [work for found in surveys for work in _submit_pages(pool, atlas, found)]
         rendering += _submit_comparisons(pool, atlas, surveys)
@@ -57,6 +59,9 @@ def build_site(settings: Settings, out: Path, jobs: int, progress: Callable[[str
             progress(f"page {count} of {len(rendering)}")
         progress("comparing with published values")
         checks = checking.result()
+    for chart in readers:
+        files |= reader_data_files(chart)
+    files |= reader_files(atlas)
     files |= methods_files(atlas, methods(checks, _measured_alike(surveys)))
     progress("writing")
     swap_in(files, out)
@@ -77,7 +82,7 @@ def _measured_alike(surveys: Sequence[Survey]) -> Survey:
 
 def _submit_air(
     pool: Executor, air: AirSettings, settings: Settings, progress: Callable[[str], None]
-) -> Future[tuple[SpectralSky | None, Survey]]:
+) -> Future[tuple[SpectralSky | None, Survey, ReaderSky]]:
     """One atmosphere, solved and looked at in every direction, as work for the pool."""
     progress(f"{air.name}: solving")
     return pool.submit(_solved, solve_spectral, air, settings)
@@ -85,11 +90,12 @@ def _submit_air(
 
 def _solved(
     solve: Callable[[AirSettings], SpectralSky], air: AirSettings, settings: Settings
-) -> tuple[SpectralSky | None, Survey]:
-    """The survey, and the sky itself where there is no haze: a hazy one is too large to be handed about."""
+) -> tuple[SpectralSky | None, Survey, ReaderSky]:
+    """The survey, the reader's numbers, and the sky itself without haze: a hazy one is too large to be handed about."""
     sky = solve(air)
-    found = survey(sky, settings.solar_elevations_deg, settings.observer)
-    return (sky if air.haze == "none" else None), found
+    suns = settings.solar_elevations_deg
+    found = survey(sky, tuple(sorted({*suns, *READER_SUNS_DEG})), settings.observer)
+    return (sky if air.haze == "none" else None), at_suns(found, suns), reader_sky(sky, found)
 
 
 def _submit_pages(pool: Executor, atlas: Atlas, found: Survey) -> list[Future[dict[str, bytes]]]:

@@ -12,6 +12,7 @@ from skychart.config import Settings
 
 SITE_TITLE = "Sky-colour reference charts"
 METHODS_PATH = "methods.html"
+READER_PATH = "reader.html"
 COMPARE_FOLDER = "compare"
 OBSERVER_TITLES = {
     "cie-1931-2": "CIE 1931 2° observer",
@@ -84,6 +85,7 @@ class Atlas:
             Link("By sun elevation", f"{atmosphere}/{sheet_stem(middle)}.html", kind == "sun"),
             Link("By direction", f"{atmosphere}/{DIRECTIONS[0].stem}.html", kind == "view"),
             *([Link("Side by side", self.compare_path(middle), kind == "compare")] if self.compares else []),
+            Link("Reader", READER_PATH, kind == "reader"),
             Link("Methods and checks", METHODS_PATH, kind == "methods"),
         )
 

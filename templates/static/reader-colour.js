@@ -44,6 +44,10 @@ const readerColour = (() => {
     return `#${channels.map((channel) => Math.round(255 * channel).toString(16).padStart(2, "0")).join("")}`;
   };
 
+  // The same as bytes, by the root of the linear component, where equal steps are fine enough in the dark too.
+  const CODE_STEPS = 4096;
+  const CODES = Uint8Array.from({ length: CODE_STEPS + 1 }, (_, i) => Math.round(255 * encoded(((i + 0.5) / CODE_STEPS) ** 2)));
+
   // Correlated colour temperature [K] and Duv, or NaN for both where the notion has no meaning: above 100 000 K, below
   // 1000 K, |Duv| above 0.05. Nearest point of the locus in CIE 1960 uv (Ohno 2013, doi:10.1080/15502724.2014.839020),
   // taken as a parabola through three points that are equally far apart in reciprocal temperature.
@@ -104,13 +108,32 @@ const readerColour = (() => {
     return Math.sqrt(light ** 2 + chroma ** 2 + hue ** 2 + rotation * chroma * hue);
   };
 
+  // Screen bytes of many colours at once: `XYZ` (pixel, XYZ), written to the bytes of a picture at two pixels each, a place
+  // and its mirror image. `matrix` takes XYZ to linear components over those of display white.
+  const painted = (XYZ, at, matrix, bytes) => {
+    const [[ra, rb, rc], [ga, gb, gc], [ba, bb, bc]] = matrix;
+    for (let p = 0, k = 0; k < XYZ.length; p += 2, k += 3) {
+      const [x, y, z] = [XYZ[k], XYZ[k + 1], XYZ[k + 2]];
+      const r = Math.max(ra * x + rb * y + rc * z, 0);
+      const g = Math.max(ga * x + gb * y + gc * z, 0);
+      const b = Math.max(ba * x + bb * y + bc * z, 0);
+      const scale = CODE_STEPS / Math.max(r, g, b, 1);
+      const pixel = 4 * at[p];
+      bytes[pixel] = CODES[Math.sqrt(r * scale * CODE_STEPS) | 0];
+      bytes[pixel + 1] = CODES[Math.sqrt(g * scale * CODE_STEPS) | 0];
+      bytes[pixel + 2] = CODES[Math.sqrt(b * scale * CODE_STEPS) | 0];
+      bytes[pixel + 3] = 255;
+      bytes.copyWithin(4 * at[p + 1], pixel, pixel + 4);
+    }
+  };
+
   // Degree of linear polarisation and angle of the electric vector from the horizontal [°] of Q/I and U/I.
   const polarisation = ([q, u]) => {
     const degree = Math.hypot(q, u);
     return [degree, degree > 0 ? (Math.atan2(u, q) * 90) / Math.PI : NaN];
   };
 
-  return { cctDuv, deltaE2000, encoded, ev100, hex, inGamut, lab, onScreen, polarisation, rgb, uvPrime, xy };
+  return { cctDuv, deltaE2000, encoded, ev100, hex, inGamut, lab, onScreen, painted, polarisation, rgb, uvPrime, xy };
 })();
 
 if (typeof module !== "undefined") {
