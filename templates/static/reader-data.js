@@ -152,7 +152,7 @@ const readerData = (() => {
 
   const dot = (weights, nodes) => nodes.reduce((sum, value, i) => sum + value * weights[i], 0);
 
-  return { blended, dot, integers, linear, opened, solved, spline };
+  return { blended, dot, integers, linear, opened, solved, spline, unpacked };
 })();
 
 if (typeof module !== "undefined") {

@@ -87,9 +87,9 @@ const readerState = (() => {
     const place = {};
     for (const part of hash.replace(/^#/, "").split("&").filter(Boolean)) {
       const [key, value = ""] = part.split("=").map(decoded);
-      if (key in RANGES && !Number.isNaN(numberOf(key, value))) {
+      if (Object.hasOwn(RANGES, key) && !Number.isNaN(numberOf(key, value))) {
         state[key] = numberOf(key, value);
-      } else if (key in choices && choices[key].includes(value)) {
+      } else if (Object.hasOwn(choices, key) && choices[key].includes(value)) {
         state[key] = value;
       } else if (key === "date" || key === "time") {
         place[key] = value;

@@ -12,8 +12,8 @@ readerReceive.taken = new Map();
   const { RANGES, hashOf, numberOf, stateOf } = readerState;
 
   const PIXELS = { "all-sky": () => readerPicture.allSkyPixels(480), panorama: () => readerPicture.panoramaPixels(720) };
-  const ADDRESS_DELAY_MS = 300;
-  const SPEECH_DELAY_MS = 500;
+  const ADDRESS_DELAY_MS = 200;
+  const SPEECH_DELAY_MS = 400;
   const CURVE = { left: 10, width: 220, top: 6, height: 60 }; // in the spectrum's own units
   const DEEP_TWILIGHT_DEG = -6;
   const INK_THRESHOLD = 0.179; // relative luminance above which black reads better than white (WCAG 2.2)
