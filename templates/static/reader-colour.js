@@ -118,12 +118,11 @@ const readerColour = (() => {
       const g = Math.max(ga * x + gb * y + gc * z, 0);
       const b = Math.max(ba * x + bb * y + bc * z, 0);
       const scale = CODE_STEPS / Math.max(r, g, b, 1);
-      const pixel = 4 * at[p];
-      bytes[pixel] = CODES[Math.sqrt(r * scale * CODE_STEPS) | 0];
-      bytes[pixel + 1] = CODES[Math.sqrt(g * scale * CODE_STEPS) | 0];
-      bytes[pixel + 2] = CODES[Math.sqrt(b * scale * CODE_STEPS) | 0];
-      bytes[pixel + 3] = 255;
-      bytes.copyWithin(4 * at[p + 1], pixel, pixel + 4);
+      const [pixel, mirror] = [4 * at[p], 4 * at[p + 1]];
+      bytes[pixel] = bytes[mirror] = CODES[Math.sqrt(r * scale * CODE_STEPS) | 0];
+      bytes[pixel + 1] = bytes[mirror + 1] = CODES[Math.sqrt(g * scale * CODE_STEPS) | 0];
+      bytes[pixel + 2] = bytes[mirror + 2] = CODES[Math.sqrt(b * scale * CODE_STEPS) | 0];
+      bytes[pixel + 3] = bytes[mirror + 3] = 255;
     }
   };
 

@@ -53,50 +53,46 @@ const readerPicture = (() => {
     return table;
   };
 
-  // Pixels of a picture: index, elevation and azimuth [°] of every pixel that shows sky on the side of azimuths 0 to 180,
-  // and the index of its mirror image.
-  const allSkyPixels = (size) => {
-    const [places, half] = [[], size / 2];
-    for (let y = 0; y < size; y += 1) {
-      for (let x = half; x < size; x += 1) {
-        const [right, down] = [x + 0.5 - half, y + 0.5 - half];
-        const elevation = 90 * (1 - Math.hypot(right, down) / half);
+  // Pixels that show sky on the side of azimuths 0 to 180, with all about them that does not depend on the sun: `at` index
+  // and that of the mirror image, `cell` and `part` in the table, `toward` unit vector: to the sun's azimuth, right, up.
+  // `directionAt` gives elevation and azimuth [°] of a place, in pixels right of the middle and down from the top.
+  const prepared = (width, height, directionAt) => {
+    const most = (width * height) / 2;
+    const [at, cell, part] = [new Int32Array(2 * most), new Int32Array(most), new Float32Array(2 * most)];
+    const toward = new Float32Array(3 * most);
+    let count = 0;
+    for (let y = 0; y < height; y += 1) {
+      for (let x = width / 2; x < width; x += 1) {
+        const { elevation, azimuth } = directionAt(x + 0.5 - width / 2, y + 0.5);
         if (elevation >= 0) {
-          places.push([y * size + x, y * size + size - 1 - x, elevation, Math.atan2(right, down) / DEGREE]);
+          const [i, j] = [Math.min(Math.trunc(2 * elevation), TABLE_ROWS - 2), Math.min(Math.trunc(azimuth), TABLE_COLUMNS - 2)];
+          const [view, turn] = [elevation * DEGREE, azimuth * DEGREE];
+          at[2 * count] = y * width + x;
+          at[2 * count + 1] = y * width + width - 1 - x;
+          cell[count] = (i * TABLE_COLUMNS + j) * 3;
+          part[2 * count] = 2 * elevation - i;
+          part[2 * count + 1] = azimuth - j;
+          toward[3 * count] = Math.cos(view) * Math.cos(turn);
+          toward[3 * count + 1] = Math.cos(view) * Math.sin(turn);
+          toward[3 * count + 2] = Math.sin(view);
+          count += 1;
         }
       }
     }
-    return prepared(places, size, size);
+    const kept = [at.subarray(0, 2 * count), cell.subarray(0, count), part.subarray(0, 2 * count), toward.subarray(0, 3 * count)];
+    return { width, height, count, at: kept[0], cell: kept[1], part: kept[2], toward: kept[3] };
   };
 
-  const panoramaPixels = (width) => {
-    const [places, height] = [[], width / 4];
-    for (let y = 0; y < height; y += 1) {
-      for (let x = width / 2; x < width; x += 1) {
-        const azimuth = ((x + 0.5) / width - 0.5) * 360;
-        places.push([y * width + x, y * width + width - 1 - x, 90 * (1 - (y + 0.5) / height), azimuth]);
-      }
-    }
-    return prepared(places, width, height);
-  };
-
-  // Everything about a pixel that does not depend on the sun.
-  const prepared = (places, width, height) => {
-    const count = places.length;
-    const pixels = { width, height, count, at: new Int32Array(2 * count), cell: new Int32Array(count) };
-    pixels.part = new Float32Array(2 * count);
-    pixels.toward = new Float32Array(3 * count); // unit vector: toward the sun's azimuth, to the right, up
-    places.forEach(([index, mirror, elevation, azimuth], p) => {
-      pixels.at.set([index, mirror], 2 * p);
-      const [row, column] = [2 * elevation, azimuth];
-      const [i, j] = [Math.min(Math.trunc(row), TABLE_ROWS - 2), Math.min(Math.trunc(column), TABLE_COLUMNS - 2)];
-      pixels.cell[p] = (i * TABLE_COLUMNS + j) * 3;
-      pixels.part.set([row - i, column - j], 2 * p);
-      const [view, turn] = [elevation * DEGREE, azimuth * DEGREE];
-      pixels.toward.set([Math.cos(view) * Math.cos(turn), Math.cos(view) * Math.sin(turn), Math.sin(view)], 3 * p);
+  // Zenith in the middle, horizon at the rim, equal steps of elevation; the sun's azimuth down.
+  const allSkyPixels = (size) =>
+    prepared(size, size, (right, top) => {
+      const down = top - size / 2;
+      return { elevation: 90 * (1 - Math.hypot(right, down) / (size / 2)), azimuth: Math.atan2(right, down) / DEGREE };
     });
-    return pixels;
-  };
+
+  // Equal steps of azimuth and elevation; the sun's azimuth in the middle.
+  const panoramaPixels = (width) =>
+    prepared(width, width / 4, (right, top) => ({ elevation: 90 * (1 - (4 * top) / width), azimuth: (360 * right) / width }));
 
   // What peak and sides add to the logarithms of the pixels within their reach: (pixel, XYZ), the rest zero.
   const aroundPixels = (sky, { toward, count }) => {

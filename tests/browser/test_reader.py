@@ -89,7 +89,7 @@ def test_pins_are_compared_copied_and_linked(watch, site):
         ["molecular", "20", "5", "90"],
         ["thin", "20", "5", "90"],
     ]
-    assert [row[6:8] for row in rows][0] == ["0.00", "0.0"]
+    assert rows[0][6:8] == ["0.00", "0.0"]
     stops = np.log2(value(rows[1][5].replace("\u2009", "")) / value(rows[0][5].replace("\u2009", "")))
     assert float(rows[1][6].replace("\u2212", "-")) == pytest.approx(stops, abs=0.02)
     page.click("#copy-list")

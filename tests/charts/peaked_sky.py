@@ -35,7 +35,7 @@ class PeakedSky(FakeSky):
         return np.where(sun >= -0.5, np.exp(-self.depth / sine), 0.0)
 
     def ground_irradiance(self, solar_elevation_deg):
-        """Diffuse as if the sky were as bright everywhere as 45° beside the sun; direct by the apparent sun's height."""
+        """Diffuse as if all the sky were as 45° beside the sun; direct by the apparent sun's height."""
         diffuse = np.pi * self.stokes(solar_elevation_deg, 45.0, 90.0)[..., 0, :]
         height = np.sin(np.radians(self.apparent_elevation_deg(solar_elevation_deg)))[..., None]
         return diffuse, np.maximum(height, 0) * self.beam(solar_elevation_deg)

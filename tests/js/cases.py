@@ -1,4 +1,4 @@
-"""What the reader's scripts are tested with: questions, and the answers of the Python side, of publications or of both."""
+"""Questions to the reader's scripts, with the answers of the Python side and of publications."""
 
 import numpy as np
 
@@ -8,12 +8,12 @@ from skychart.charts.reader import READER_SUNS_DEG, reader_constants, reader_sky
 from skychart.charts.reading import polarisation
 from skychart.charts.splines import spline
 from skychart.charts.survey import survey
+from skychart.colour.chromaticity import xyz_of_xy
 from skychart.colour.describe import describe
 from skychart.colour.differences import delta_e_2000
 from skychart.colour.integrate import tristimulus_matrix
 from skychart.colour.observers import D65_XY
 from skychart.config import AirSettings
-from skychart.colour.chromaticity import xyz_of_xy
 from skychart.export.reader_data import pack, reader_script, varints
 from tests.charts.peaked_sky import PeakedSky
 

@@ -61,7 +61,7 @@ def test_the_scripts_pass_their_tests(node, suns, tmp_path):
     cases.write_text(json.dumps(all_cases(), allow_nan=False), encoding="utf-8")
     places.write_text(json.dumps(suns), encoding="utf-8")
     done = subprocess.run(
-        [node, "--test", str(HERE / "reader.test.js")],
+        [node, "--test", "--test-reporter=tap", str(HERE / "reader.test.js")],
         env=os.environ | {"SKYCHART_CASES": str(cases), "SKYCHART_SUNS": str(places)},
         capture_output=True,
         text=True,
