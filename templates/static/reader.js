@@ -135,7 +135,7 @@ readerReceive.taken = new Map();
     return [
       ["Luminance", "cd/m²", three(found.luminance_cd_m2)],
       ["EV100", "", fixed(found.ev100, 2)],
-      ["Card", "stops above", fixed(Math.log2(found.luminance_cd_m2 / found.card_XYZ[1]), 2)],
+      ["Above the white card", "stops", fixed(Math.log2(found.luminance_cd_m2 / found.card_XYZ[1]), 2)],
       ["X Y Z", "cd/m²", ...found.XYZ.map(three)],
       ["x y", "", ...found.xy.map(four)],
       ["u′ v′", "", ...found.uv_prime.map(four)],
@@ -183,6 +183,8 @@ readerReceive.taken = new Map();
   }, SPEECH_DELAY_MS);
 
   const drawLight = () => {
+    const { air } = constants.atmospheres.find(({ name }) => name === state.air);
+    byId("now").textContent = `Sun at ${spaced(short(sky.sun, 2))}°, geometric. ${state.air}: ${air}.`;
     byId("twilight").hidden = sky.sun > DEEP_TWILIGHT_DEG;
     byId("light").replaceChildren(...factsOf(sky.light));
   };
