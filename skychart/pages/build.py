@@ -11,7 +11,7 @@ from skychart.charts.direction import direction_sheet
 from skychart.charts.overview import overview
 from skychart.charts.sheet import elevation_sheet
 from skychart.charts.survey import DIRECTIONS, Survey, survey
-from skychart.checks import run_checks
+from skychart.checks import COMPARED_AIRS, PIECES, Check, by_topic, sky_checks
 from skychart.config import NAMED_AIRS, AirSettings, Settings
 from skychart.pages.environment import static_files
 from skychart.pages.render import comparison_files, direction_files, methods_files, sheet_files, start_files
@@ -48,15 +48,15 @@ def build_site(settings: Settings, out: Path, jobs: int, progress: Callable[[str
     files = static_files()
     with workers(jobs) as pool:
         solving = [_submit_air(pool, air, settings, progress) for air in settings.atmospheres]
-        skies, surveys = zip(*(done.result() for done in solving), strict=True)
-        checking = pool.submit(run_checks, [sky for sky in skies if sky is not None])
+        checking = _submit_checks(pool, settings)
+        surveys = [done.result()[0] for done in solving]
         rendering = [work for found in surveys for work in _submit_pages(pool, atlas, found)]
         rendering += _submit_comparisons(pool, atlas, surveys)
         for count, done in enumerate(as_completed(rendering), start=1):
             files |= done.result()
             progress(f"page {count} of {len(rendering)}")
         progress("comparing with published values")
-        checks = checking.result()
+        checks = by_topic([*(done.result()[1] for done in solving), *(done.result() for done in checking)])
     files |= methods_files(atlas, methods(checks, _measured_alike(surveys)))
     progress("writing")
     swap_in(files, out)
@@ -77,19 +77,38 @@ def _measured_alike(surveys: Sequence[Survey]) -> Survey:
 
 def _submit_air(
     pool: Executor, air: AirSettings, settings: Settings, progress: Callable[[str], None]
-) -> Future[tuple[SpectralSky | None, Survey]]:
+) -> Future[tuple[Survey, tuple[Check, ...]]]:
     """One atmosphere, solved and looked at in every direction, as work for the pool."""
     progress(f"{air.name}: solving")
-    return pool.submit(_solved, solve_spectral, air, settings)
+    return pool.submit(_solved, solve_spectral, sky_checks, air, settings)
 
 
 def _solved(
-    solve: Callable[[AirSettings], SpectralSky], air: AirSettings, settings: Settings
-) -> tuple[SpectralSky | None, Survey]:
-    """The survey, and the sky itself where there is no haze: a hazy one is too large to be handed about."""
+    solve: Callable[[AirSettings], SpectralSky],
+    compare: Callable[[SpectralSky], tuple[Check, ...]],
+    air: AirSettings,
+    settings: Settings,
+) -> tuple[Survey, tuple[Check, ...]]:
+    """The survey, and what is compared with this sky: the sky itself is too large to be handed about."""
     sky = solve(air)
-    found = survey(sky, settings.solar_elevations_deg, settings.observer)
-    return (sky if air.haze == "none" else None), found
+    return survey(sky, settings.solar_elevations_deg, settings.observer), compare(sky)
+
+
+def _submit_checks(pool: Executor, settings: Settings) -> list[Future[tuple[Check, ...]]]:
+    """All other comparisons as work for the pool, those with skies that these settings do not ask for among them."""
+    missing = [air for air in COMPARED_AIRS if air not in settings.atmospheres]
+    return [
+        *(pool.submit(_compared, solve_spectral, sky_checks, air) for air in missing),
+        *(pool.submit(piece) for piece in PIECES),
+    ]
+
+
+def _compared(
+    solve: Callable[[AirSettings], SpectralSky],
+    compare: Callable[[SpectralSky], tuple[Check, ...]],
+    air: AirSettings,
+) -> tuple[Check, ...]:
+    return compare(solve(air))
 
 
 def _submit_pages(pool: Executor, atlas: Atlas, found: Survey) -> list[Future[dict[str, bytes]]]:

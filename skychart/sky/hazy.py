@@ -93,14 +93,15 @@ class ScatteredAlong:
         ``cos_chi``, ``cos_azimuth`` (line, crossing): of the sun's zenith angle and of the azimuth from it.
         """
         node, low, high = self.shape.weights(self.level, cos_chi)
-        crossings, suns, modes, _ = self.sent.shape
-        waves = np.cos(np.arccos(cos_azimuth)[..., None] * np.arange(modes))
-        flat = self.sent.reshape(crossings * suns, modes, -1)
+        crossings, suns, *rest = self.sent.shape
+        waves = np.cos(np.arccos(cos_azimuth)[..., None] * np.arange(rest[0]))
+        flat = self.sent.reshape(crossings * suns, *rest)
         row = np.arange(crossings) * suns + node
-        return sum(
-            ((part[..., None] * waves).astype(np.float32)[..., None, :] @ flat[row + step])[..., 0, :]
-            for step, part in enumerate((low, high))
+        below, above = (
+            ((part[..., None] * waves).astype(np.float32)[..., None, :] @ flat[place])[..., 0, :]
+            for part, place in ((low, row), (high, row + 1))
         )
+        return below + above
 
 
 @dataclass(frozen=True, eq=False)
@@ -158,8 +159,8 @@ class HazyLight:
             part = sun_part * view_part
             some = np.flatnonzero(part)
             where = sun[some], view[some], lines.relative_azimuth[some]
-            full, closed = (seen.stokes(*where)[:, 0] for seen in light)
-            result[some] += part[some, None] * full / closed
+            true, approximate = (seen.stokes(*where)[:, 0] for seen in light)
+            result[some] += part[some, None] * true / approximate
         return result
 
 

@@ -210,22 +210,23 @@ class _SentByHaze:
 
     def __init__(self, source: HazeSource) -> None:
         self._source = source
-        self._ray = -1
+        self._ray: tuple[int, Array, RaySource] | None = None
 
     def at(
-        self, fan: Crossings, ray: int, sight: dipole.Vector, view_cosine: float, cos_chi: Array, level: Array
-    ) -> Array:
+        self, fan: Crossings, ray: int, sight: dipole.Vector, view_cosine: float, cos_chi: Array,
+        level: NDArray[np.intp],
+    ) -> Array:  # fmt: skip
         """Source at the crossings of the lower levels, (line, crossing, wavelength); they come first along a ray."""
         low = level < self._source.levels
-        if ray != self._ray:
+        if self._ray is None or self._ray[0] != ray:
             reached = fan.reached[ray]
             cos_turn, sin_turn = fan.cos_turn[ray][reached][low], fan.sin_turn[ray][reached][low]
-            self._cosine = np.clip(view_cosine * cos_turn + np.sqrt(1 - view_cosine**2) * sin_turn, -1, 1)
-            self._along = self._source.along(self._cosine, level[low])
-            self._ray = ray
-        across = np.sqrt(np.maximum((1 - self._cosine**2) * (1 - cos_chi[:, low] ** 2), 1e-12))
-        azimuth = (sight.s[:, None] - self._cosine * cos_chi[:, low]) / across
-        return self._along.at(cos_chi[:, low], np.clip(azimuth, -1, 1))
+            cosine = np.clip(view_cosine * cos_turn + np.sqrt(1 - view_cosine**2) * sin_turn, -1, 1)
+            self._ray = ray, cosine, self._source.along(cosine, level[low])
+        _, cosine, sent = self._ray
+        across = np.sqrt(np.maximum((1 - cosine**2) * (1 - cos_chi[:, low] ** 2), 1e-12))
+        azimuth = (sight.s[:, None] - cosine * cos_chi[:, low]) / across
+        return sent.at(cos_chi[:, low], np.clip(azimuth, -1, 1))
 
 
 def _cosine_to_sun(lines: Lines, chosen: NDArray[np.intp], solar_zenith: Array) -> Array:
