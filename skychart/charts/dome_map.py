@@ -52,7 +52,7 @@ def dome_map(survey: Survey, sun: int, width: int, sun_azimuth_deg: float = 0.0,
     view = survey.sky_view(sun)
     pixels = _means(view, width, sun_azimuth_deg)
     if disc and survey.sun_seen(sun):
-        shares = _disc_shares(view.sun_elevation_deg, sun_azimuth_deg, width)
+        shares = disc_shares(view.sun_elevation_deg, sun_azimuth_deg, width)
         pixels += shares[..., None] * (survey.beam_XYZ[sun] / pixel_solid_angle_sr(width)[:, None, None])
     return DomeMap(
         air=survey.air,
@@ -81,6 +81,30 @@ def level_XYZ(dome: DomeMap) -> np.ndarray:
     width = dome.XYZ.shape[1]
     weight = np.maximum(pixel_mean_sine(width), 0) * pixel_solid_angle_sr(width)
     return np.einsum("r,rcx->x", weight, dome.XYZ)
+
+
+def disc_shares(sun_elevation_deg: float, sun_azimuth_deg: float, width: int) -> np.ndarray:
+    """Shares of the disc's light by pixel of a map, (row, column), which add up to 1.
+
+    No row lies lower than the lowest one of the sky: a disc that reaches below its middle is squeezed upon it.
+    """
+    radius = np.sqrt((np.arange(_RINGS) + 0.5) / _RINGS) * np.radians(SOLAR_DISC_DIAMETER_DEG / 2)
+    turn = 2 * np.pi * (np.arange(_SPOKES) + 0.5) / _SPOKES
+    sun, away = np.radians(sun_elevation_deg), radius[:, None]
+    sine = np.sin(sun) * np.cos(away) + np.cos(sun) * np.sin(away) * np.cos(turn)
+    ahead = np.cos(sun) * np.cos(away) - np.sin(sun) * np.sin(away) * np.cos(turn)
+    azimuth = np.degrees(np.arctan2(np.sin(away) * np.sin(turn), ahead)) + sun_azimuth_deg
+    rows = pixel_mean_sine(width)[: width // 4]
+    height = np.maximum(sine - rows[-1], 0)
+    squeeze = max(float((sine - rows[-1]).mean()), 0) / max(float(height.mean()), 1e-12)
+    down = np.interp(-rows[-1] - height * min(squeeze, 1), -rows, np.arange(width // 4, dtype=float))
+    across = width * (azimuth / 360 + 0.5) - 0.5
+    row, column = np.floor(down).astype(int), np.floor(across).astype(int)
+    shares = np.zeros((width // 2, width))
+    for below, lower in ((0, 1 - (down - row)), (1, down - row)):
+        for right, side in ((0, 1 - (across - column)), (1, across - column)):
+            np.add.at(shares, (row + below, (column + right) % width), lower * side / sine.size)
+    return shares
 
 
 def _edge_sines(width: int) -> np.ndarray:
@@ -121,27 +145,3 @@ def _pixel_means(
 def _azimuth_deg(across: np.ndarray, width: int, sun_azimuth_deg: float) -> np.ndarray:
     """Azimuth from the sun [deg] of a place `across` the map, counted in pixels from its left edge."""
     return 360 * across / width - 180 - sun_azimuth_deg
-
-
-def _disc_shares(sun_elevation_deg: float, sun_azimuth_deg: float, width: int) -> np.ndarray:
-    """Shares of the disc's light by pixel, (row, column), which add up to 1.
-
-    No row lies lower than the lowest one of the sky: a disc that reaches below its middle is squeezed upon it.
-    """
-    radius = np.sqrt((np.arange(_RINGS) + 0.5) / _RINGS) * np.radians(SOLAR_DISC_DIAMETER_DEG / 2)
-    turn = 2 * np.pi * (np.arange(_SPOKES) + 0.5) / _SPOKES
-    sun, away = np.radians(sun_elevation_deg), radius[:, None]
-    sine = np.sin(sun) * np.cos(away) + np.cos(sun) * np.sin(away) * np.cos(turn)
-    ahead = np.cos(sun) * np.cos(away) - np.sin(sun) * np.sin(away) * np.cos(turn)
-    azimuth = np.degrees(np.arctan2(np.sin(away) * np.sin(turn), ahead)) + sun_azimuth_deg
-    rows = pixel_mean_sine(width)[: width // 4]
-    height = np.maximum(sine - rows[-1], 0)
-    squeeze = max(float((sine - rows[-1]).mean()), 0) / max(float(height.mean()), 1e-12)
-    down = np.interp(-rows[-1] - height * min(squeeze, 1), -rows, np.arange(width // 4, dtype=float))
-    across = width * (azimuth / 360 + 0.5) - 0.5
-    row, column = np.floor(down).astype(int), np.floor(across).astype(int)
-    shares = np.zeros((width // 2, width))
-    for below, lower in ((0, 1 - (down - row)), (1, down - row)):
-        for right, side in ((0, 1 - (across - column)), (1, across - column)):
-            np.add.at(shares, (row + below, (column + right) % width), lower * side / sine.size)
-    return shares

