@@ -53,7 +53,8 @@ def dome_map(survey: Survey, sun: int, width: int, sun_azimuth_deg: float = 0.0,
     pixels = _means(view, width, sun_azimuth_deg)
     if disc and survey.sun_seen(sun):
         shares = disc_shares(view.sun_elevation_deg, sun_azimuth_deg, width)
-        pixels += shares[..., None] * (survey.beam_XYZ[sun] / pixel_solid_angle_sr(width)[:, None, None])
+        row, column = np.nonzero(shares)
+        pixels[row, column] += np.outer(shares[row, column] / pixel_solid_angle_sr(width)[row], survey.beam_XYZ[sun])
     return DomeMap(
         air=survey.air,
         observer=survey.observer,

@@ -21,6 +21,7 @@ def dome_exr(dome: DomeMap, space: str, half: bool, software: str) -> bytes:
     """The map as a file, linear in `space`; `software` is the name of the writer. Raises OutputError."""
     pixels = rgb(dome.XYZ, space)
     white = _white_luminance(pixels) if half else 1.0
+    pixels /= white
     attributes = {
         "envmap": openexr().ENVMAP_LATLONG,
         "software": software,
@@ -31,7 +32,7 @@ def dome_exr(dome: DomeMap, space: str, half: bool, software: str) -> bytes:
         "sunAzimuth": f"{dome.sun_azimuth_deg:g} deg clockwise from the middle of the picture",
         "sunDisc": "drawn" if dome.disc else "left out",
     }
-    return exr_bytes(pixels / white, space, white, attributes, half)
+    return exr_bytes(pixels, space, white, attributes, half)
 
 
 def dome_line(dome: DomeMap, space: str, half: bool) -> str:
@@ -48,7 +49,7 @@ def dome_line(dome: DomeMap, space: str, half: bool) -> str:
 
 def _white_luminance(pixels: np.ndarray) -> float:
     """Luminance [cd m⁻²] that 1, 1, 1 stands for in 16 bits: 1, or the first power of ten that keeps all in range."""
-    largest = float(np.abs(pixels).max())
+    largest = max(float(pixels.max()), -float(pixels.min()))
     return 1.0 if largest <= HALF_MAX else float(10 ** np.ceil(np.log10(largest / HALF_MAX)))
 
 

@@ -54,7 +54,7 @@ def exr_bytes(
     OutputError without the library, InputError for a number that 16 bits cannot hold.
     """
     library = openexr()
-    largest = float(np.abs(pixels).max())
+    largest = max(float(pixels.max()), -float(pixels.min()))
     if half and largest > HALF_MAX:
         raise InputError(f"largest component is {largest:g}, accepted in 16 bits is up to {HALF_MAX:g}")
     header = {
