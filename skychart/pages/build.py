@@ -13,8 +13,10 @@ from skychart.charts.sheet import elevation_sheet
 from skychart.charts.survey import DIRECTIONS, Survey, survey
 from skychart.checks import COMPARED_AIRS, PIECES, Check, by_topic, sky_checks
 from skychart.config import NAMED_AIRS, AirSettings, Settings
+from skychart.export.openexr import has_openexr
 from skychart.pages.environment import static_files
 from skychart.pages.render import comparison_files, direction_files, methods_files, sheet_files, start_files
+from skychart.pages.sheet_archive import OPENEXR_LEFT_OUT
 from skychart.pages.site import Atlas, make_atlas
 from skychart.pages.workers import workers
 from skychart.pages.write import swap_in
@@ -46,6 +48,8 @@ def build_site(settings: Settings, out: Path, jobs: int, progress: Callable[[str
     settings = replace(settings, solar_elevations_deg=tuple(sorted(settings.solar_elevations_deg)))
     atlas = make_atlas(settings)
     files = static_files()
+    if not has_openexr():
+        progress(OPENEXR_LEFT_OUT)
     with workers(jobs) as pool:
         solving = [_submit_air(pool, air, settings, progress) for air in settings.atmospheres]
         checking = _submit_checks(pool, settings)

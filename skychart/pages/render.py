@@ -18,6 +18,7 @@ from skychart.export.png import srgb_png
 from skychart.export.tables import readings_json, table_csv
 from skychart.pages.environment import environment, render
 from skychart.pages.figures import direction_figures, methods_figures, sheet_figures
+from skychart.pages.sheet_archive import sheet_archive
 from skychart.pages.site import COMPARE_FOLDER, METHODS_PATH, SITE_TITLE, Atlas, Link, neighbours, sun_in_words
 from skychart.plots.picture import DOME_PIXELS, OVERLAP_PIXELS, RIM_PIXELS, day_band, half_dome, half_sky
 
@@ -66,6 +67,7 @@ def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
         "apparent_elevation_deg": round(chart.apparent_elevation_deg, 3),
     }
     exports, downloads = table_files(stem, title, about, chart.table, (chart.readings, chart.ground, chart.spectra))
+    archive = sheet_archive(atlas, chart)
     context = {
         "page": page,
         "chart": chart,
@@ -75,9 +77,10 @@ def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
         "ruler": ruler,
         "dome": _dome(pictures, chart.apparent_elevation_deg),
         "figures": figures,
-        "downloads": downloads,
+        "downloads": (*downloads, Link("ZIP for other programs", archive.path)),
+        "archive": archive,
     }
-    return {page.path: render(templates(), "sheet.html", context), **files, **exports}
+    return {page.path: render(templates(), "sheet.html", context), **files, **exports, archive.path: archive.data}
 
 
 def direction_files(atlas: Atlas, chart: DirectionSheet) -> dict[str, bytes]:
