@@ -70,9 +70,11 @@ def run_read(options: argparse.Namespace) -> int:
     """Print the numbers of one direction of one sky."""
     air, sun, view, azimuth = read_request(options)
     from skychart.charts.reading import reading
+    from skychart.library import colour_science
     from skychart.sky.spectral import solve_spectral
     from skychart.terminal import reading_json, reading_text
 
+    threading.Thread(target=colour_science, daemon=True).start()  # takes a second or two to import, as solving does
     result = reading(solve_spectral(air), sun, view, azimuth)
     _hand_out(reading_json(result) if options.json else reading_text(result))
     return EXIT_DONE
