@@ -61,7 +61,7 @@ _CHROMATICITY = _Plan(
     chromaticity_svg,
     CHROMATICITY_IN,
     "Chromaticity",
-    "CIE 1976 u′v′ with gamut triangles and the daylight locus from 4000 K to 25\u2009000\u00a0K; "
+    "CIE 1976 u′v′ with gamut triangles and the daylight locus from 4000 K to 25\u202f000\u00a0K; "
     "dots are the blocks, in their "
     "own colours. The frame in the small diagram shows the part enlarged.",
     "u prime v prime diagram with the blocks of this page, gamut triangles and the daylight locus",
@@ -97,7 +97,7 @@ _TRACK = _Plan(
     chromaticity_svg,
     CHROMATICITY_IN,
     "Chromaticity",
-    "CIE 1976 u′v′ with gamut triangles and the daylight locus from 4000 K to 25\u2009000\u00a0K; "
+    "CIE 1976 u′v′ with gamut triangles and the daylight locus from 4000 K to 25\u202f000\u00a0K; "
     "a dot for each sun, joined in "
     "their order.",
     "u prime v prime diagram with the track of this direction through the day",
