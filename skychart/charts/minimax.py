@@ -51,41 +51,40 @@ class Pieces:
         self._raise(path[:-1], path[1:], _FULL)
         return float(self.worst[path[:-1], path[1:]].max())
 
-    def best(self, count: int, limit: float = np.inf) -> np.ndarray | None:
-        """Nodes of the `count` stops whose largest error is least, both ends among them; None if it passes `limit`."""
-        pieces = count - 1
+    def best(self, count: int) -> np.ndarray:
+        """Nodes of the `count` stops whose largest error is least, both ends among them."""
         while True:
-            ahead, behind = self._reach(pieces), self._reach(pieces, backward=True)
-            if not ahead[pieces][-1] <= limit:
-                return None
-            path = self._path(ahead)
-            if (self.level[path[:-1], path[1:]] == _FULL).all():
+            path = self._path(self._reach(count - 1))
+            if self._measured(path):
                 return path
-            bound = min(limit, self.error(path))
-            through = np.min([np.maximum(ahead[k][:, None], behind[pieces - 1 - k]) for k in range(pieces)], axis=0)
-            through = np.maximum(through, self.worst)
-            start, end = np.nonzero((through < bound) & (self.level < _FULL - 1))
-            chosen = np.argsort(through[start, end], kind="stable")[:_BATCH]
-            self._raise(start[chosen], end[chosen], _FULL - 1)
+            self._look_closer(path, self.error(path))
 
     def fewest(self, limit: float, most: int) -> np.ndarray | None:
         """Nodes of the fewest stops whose largest error is at most `limit`; None if that takes more than `most`."""
         while True:
-            reached = self._reach(most - 1)
-            enough = np.flatnonzero(reached[:, -1] <= limit)
+            ahead = self._reach(most - 1)
+            enough = np.flatnonzero(ahead[:, -1] <= limit)
             if not len(enough):
                 return None
-            pieces = int(enough[0])
-            path = self._path(reached[: pieces + 1])
-            if (self.level[path[:-1], path[1:]] == _FULL).all():
+            path = self._path(ahead[: enough[0] + 1])
+            if self._measured(path):
                 return path
-            ahead, behind = reached[:pieces], self._reach(pieces - 1, backward=True)
-            through = np.min([np.maximum(ahead[k][:, None], behind[pieces - 1 - k]) for k in range(pieces)], axis=0)
-            start, end = np.nonzero((np.maximum(through, self.worst) <= limit) & (self.level < _FULL - 1))
-            if len(start):
-                self._raise(start[:_BATCH], end[:_BATCH], _FULL - 1)
-            else:
-                self._raise(path[:-1], path[1:], _FULL)
+            if not self._look_closer(path, limit):
+                self.error(path)
+
+    def _look_closer(self, path: np.ndarray, limit: float) -> int:
+        """Bound better the pieces over which a path of as many stops may keep to `limit`; how many there were."""
+        pieces = len(path) - 1
+        ahead, behind = self._reach(pieces - 1), self._reach(pieces - 1, backward=True)
+        through = np.min([np.maximum(ahead[k][:, None], behind[pieces - 1 - k]) for k in range(pieces)], axis=0)
+        through = np.maximum(through, self.worst)
+        start, end = np.nonzero((through <= limit) & (self.level < _FULL - 1))
+        chosen = np.argsort(through[start, end], kind="stable")[:_BATCH]
+        self._raise(start[chosen], end[chosen], _FULL - 1)
+        return len(chosen)
+
+    def _measured(self, path: np.ndarray) -> bool:
+        return bool((self.level[path[:-1], path[1:]] == _FULL).all())
 
     def _raise(self, start: np.ndarray, end: np.ndarray, level: int) -> None:
         """Find the errors of pieces between nodes at the points of a level, or at all points of the curve."""
