@@ -52,7 +52,8 @@ class Coding:
         if self.key == "pq":
             return np.asarray(models.eotf_inverse_ST2084(light))
         dark = ~(light.max(axis=-1, keepdims=True) > 0)
-        return np.where(dark, 0, models.eotf_inverse_BT2100_HLG(np.where(dark, 1, light), L_W=self.peak_cd_m2))
+        with np.errstate(invalid="ignore"):  # of the half of the curve that is not taken
+            return np.where(dark, 0, models.eotf_inverse_BT2100_HLG(np.where(dark, 1, light), L_W=self.peak_cd_m2))
 
     def light(self, signal: ArrayLike) -> np.ndarray:
         """Linear components [cd/m²] in `space` that a screen shows for a signal of 0 to 1, shape (..., 3)."""
