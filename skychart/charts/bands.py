@@ -22,9 +22,10 @@ _MOST_OF_A_CHANNEL = 200
 
 @dataclass(frozen=True)
 class Steps:
-    """Where code values change, (n,) in the unit of the positions; the triplets between, (n + 1, 3); widths of bands.
+    """Where code values change: the triplets between the changes, `codes` (n + 1, 3), and what lies between.
 
-    `channel` (n,) is one that changes there. `band` (n + 1,) are the widths between the changes and the ends.
+    `channel` (n,) is one that changes there. `band` (n + 1,) are the widths between the changes and the ends, in the
+    unit of the positions, without the stretches where a signal passes 1 and is cut off: those are flat anyway.
     """
 
     codes: np.ndarray
@@ -63,8 +64,8 @@ def code_steps(position: np.ndarray, signal: np.ndarray, coding: Coding, bits: i
     turns[np.arange(len(at)), channel] = sign
     last = np.flatnonzero(np.diff(at, append=np.inf) > _TOGETHER * (position[-1] - position[0]))
     codes = np.concatenate([code[:1], code[0] + np.cumsum(turns, axis=0)[last]])
-    band = np.diff(np.concatenate([position[:1], at[last], position[-1:]]))
-    return Steps(codes, channel[last], band)
+    edge = np.concatenate([position[:1], at[last], position[-1:]])
+    return Steps(codes, channel[last], np.diff(np.interp(edge, position, _held(position, signal))))
 
 
 def largest_step(steps: Steps, coding: Coding, bits: int) -> float:
@@ -80,13 +81,10 @@ def largest_step(steps: Steps, coding: Coding, bits: int) -> float:
     return float(delta_e_of_itp(before, after).max())
 
 
-def widest_band(steps: Steps, coding: Coding, bits: int) -> float:
-    """Width of the widest band, in the unit of the positions; nan if all is brighter than the coding can hold.
-
-    What is at the top of the coding in any channel is left out: it is flat whatever the number of bits.
-    """
-    held = steps.codes.max(axis=1) < coding.codes(1.0, bits)
-    return float(steps.band[held].max()) if held.any() else float("nan")
+def widest_band(steps: Steps) -> float:
+    """Width of the widest band, in the unit of the positions; nan if all is brighter than the coding can hold."""
+    widest = float(steps.band.max())
+    return widest if widest > 0 else float("nan")
 
 
 def banding(position: np.ndarray, signal: np.ndarray, coding: Coding) -> Banding:
@@ -104,9 +102,16 @@ def banding(position: np.ndarray, signal: np.ndarray, coding: Coding) -> Banding
         least -= 1
     return Banding(
         largest=tuple(largest[bits] for bits in DEPTHS),
-        widest=tuple(widest_band(found[bits], coding, bits) for bits in DEPTHS),
+        widest=tuple(widest_band(found[bits]) for bits in DEPTHS),
         least_bits=least,
     )
+
+
+def _held(position: np.ndarray, signal: np.ndarray) -> np.ndarray:
+    """Length of the gradient up to each position, counting only what lies between samples that are not cut off."""
+    over = signal.max(axis=1) > 1
+    length = np.where(over[1:] | over[:-1], 0, np.diff(position))
+    return np.concatenate([[0], np.cumsum(length)])
 
 
 def _evenly(members: np.ndarray) -> np.ndarray:

@@ -17,14 +17,14 @@ from skychart.charts.columns import GAMUTS, SPACE_TITLES, Column, NumberTable, R
 from skychart.charts.dome import light_at
 from skychart.charts.exposure import exposures
 from skychart.charts.lines import LINES, Line
-from skychart.charts.numbers import degrees, fixed, significant
+from skychart.charts.numbers import degrees, fixed, significant, spaced
 from skychart.charts.reach import PEAKS_CD_M2, Place, Range, Reach, reach
 from skychart.charts.survey import Survey
 from skychart.colour.coding import BT1886, CODINGS, SRGB, Coding
 from skychart.colour.spaces import rgb
 
 FIELD_DEG = 60.0
-PICTURE_PX = (1080, 2160)
+PICTURE_PX = 1080
 
 _SAMPLE_DEG = 0.1
 _SUN = Column("solar_elevation_deg", "Sun elevation", "°", "")
@@ -53,6 +53,7 @@ class DisplaySheet:
     gamut_table: NumberTable
     luminance_table: NumberTable
     step_tables: tuple[tuple[Line, NumberTable], ...]
+    band_tables: tuple[tuple[Line, NumberTable], ...]
     table: NumberTable
 
     def least_bits(self, coding: Coding) -> np.ndarray:
@@ -73,18 +74,20 @@ def display_sheet(survey: Survey) -> DisplaySheet:
     reaches = tuple(reach(survey, sun, GAMUTS) for sun in suns)
     coded = tuple(_coded(survey, line) for line in LINES)
     gamut, luminance = _gamut_columns(reaches), _luminance_columns([found.luminance for found in reaches])
-    steps = [_step_columns(line) for line in coded]
-    tables = [_table(survey, columns) for columns in (gamut, luminance, *steps)]
+    steps = [[column for one in line for column in _step_columns(one)] for line in coded]
+    bands = [[column for one in line for column in _band_columns(one)] for line in coded]
+    joined = [column for columns in (gamut, luminance, *steps, *bands) for column in columns]
     return DisplaySheet(
         atmosphere=survey.air.name,
         solar_elevation_deg=survey.solar_elevation_deg,
         reaches=reaches,
         coded=tuple(one for line in coded for one in line),
         findings=_findings(survey, reaches),
-        gamut_table=tables[0],
-        luminance_table=tables[1],
-        step_tables=tuple(zip(LINES, tables[2:], strict=True)),
-        table=_table(survey, [*gamut, *luminance, *(column for columns in steps for column in columns)]),
+        gamut_table=_table(survey, gamut),
+        luminance_table=_table(survey, luminance),
+        step_tables=tuple((line, _table(survey, own)) for line, own in zip(LINES, steps, strict=True)),
+        band_tables=tuple((line, _table(survey, own)) for line, own in zip(LINES, bands, strict=True)),
+        table=_table(survey, joined),
     )
 
 
@@ -152,36 +155,35 @@ def _luminance_columns(ranges: list[Range]) -> list[_Cells]:
     ]
     for i, peak in enumerate(PEAKS_CD_M2):
         shares = [fixed(100 * found.share_above[i], 1) for found in ranges]
-        columns.append((Column(f"share_above_{peak:g}_percent", f"{peak:g}", "%", above), shares))
+        columns.append((Column(f"share_above_{peak:g}_percent", spaced(f"{peak:g}"), "%", above), shares))
     for values, key, group in ((brightest, "brightest", "Brightest over peak"), (card, "white_card", "Card over peak")):
         for peak in PEAKS_CD_M2:
-            head = Column(f"{key}_over_{peak:g}_stops", f"{peak:g}", "stops", group)
+            head = Column(f"{key}_over_{peak:g}_stops", spaced(f"{peak:g}"), "stops", group)
             columns.append((head, [_stops(value, peak) for value in values]))
     return columns
 
 
-def _step_columns(line: tuple[CodedLine, ...]) -> list[_Cells]:
-    return [column for coded in line for column in _coding_columns(coded)]
-
-
-def _coding_columns(coded: CodedLine) -> Iterator[_Cells]:
+def _step_columns(coded: CodedLine) -> Iterator[_Cells]:
     prefix, group = f"{coded.line.key}_{coded.coding.key}", coded.coding.title
-    per_deg = PICTURE_PX[0] / FIELD_DEG
     for i, bits in enumerate(DEPTHS):
         steps = [fixed(found.largest[i], 2) for found in coded.bandings]
         yield Column(f"{prefix}_{bits}_bits_largest_delta_e_itp", f"{bits} bits", "ΔE_ITP", group), steps
-    for i, bits in enumerate(DEPTHS):
-        widths = [fixed(found.widest[i] * per_deg, 0) for found in coded.bandings]
-        yield Column(f"{prefix}_{bits}_bits_widest_px_of_1080", f"{bits} bits", "px", group), widths
     least = ["" if found.least_bits is None else str(found.least_bits) for found in coded.bandings]
     yield Column(f"{prefix}_least_bits", "least", "bits", group), least
     over = [fixed(100 * share, 1) for share in coded.over_range]
     yield Column(f"{prefix}_cut_off_percent", "cut off", "%", group), over
 
 
+def _band_columns(coded: CodedLine) -> Iterator[_Cells]:
+    prefix, group = f"{coded.line.key}_{coded.coding.key}", coded.coding.title
+    for i, bits in enumerate(DEPTHS):
+        widths = [fixed(found.widest[i] * PICTURE_PX / FIELD_DEG, 0) for found in coded.bandings]
+        yield Column(f"{prefix}_{bits}_bits_widest_px_of_{PICTURE_PX}", f"{bits} bits", "px", group), widths
+
+
 def _place_columns(key: str, group: str, places: list[Place]) -> list[_Cells]:
     """Where something is; the zenith has no azimuth."""
-    up = [fixed(place.view_elevation_deg, 1) for place in places]
+    up = [f"{round(place.view_elevation_deg, 1):g}" for place in places]
     around = ["" if place.view_elevation_deg == 90 else fixed(place.relative_azimuth_deg, 0) for place in places]
     return [
         (Column(f"{key}_at_view_elevation_deg", "elevation", "°", group), up),
@@ -198,11 +200,13 @@ def _findings(survey: Survey, reaches: tuple[Reach, ...]) -> tuple[str, ...]:
         far = max(range(len(own)), key=lambda sun: own[sun].beyond_uv)
         size = fixed(abs(own[far].beyond_uv), 4)
         if own[far].beyond_uv > 0:
-            share = fixed(100 * own[most].share, 1) if own[most].share >= 0.0005 else "less than 0.1"
-            said = f"at most {share} % of a sky lies outside, with the sun at {labels[most]}; "
+            some = f"at most {fixed(100 * own[most].share, 1)}" if own[most].share >= 0.0005 else "less than 0.1"
+            said = f"{some} % of a sky lies outside, with the sun at {labels[most]}; "
             said += f"the farthest by {size} in u′v′, with the sun at {labels[far]}"
         else:
-            said = f"every sky lies inside; the nearest comes to {size} of the edge in u′v′, with the sun at {labels[far]}"
+            said = (
+                f"every sky lies inside; the nearest comes to {size} of the edge in u′v′, with the sun at {labels[far]}"
+            )
         texts.append(f"{SPACE_TITLES[own[0].space]}: {said}.")
     return tuple(texts)
 

@@ -3,7 +3,8 @@
 Between two stops the linear components of any RGB space run straight (all are linear in tristimulus values), in equal
 steps of the angle along the line. What is least is the largest CIEDE2000 on a screen whose white is that of the
 sheet's own rendering, "metered for the sky", D65 and unadapted: colours brighter than this white, as near the sun, are
-scaled down whole first, as on the blocks of the sheet. ΔE_ITP is told as well, absolute and nothing scaled down.
+scaled down whole first, as on the blocks of the sheet. The search judges every half degree or closer; the differences
+that are told are the largest of every twentieth. ΔE_ITP is told as well, absolute and nothing scaled down.
 """
 
 from dataclasses import dataclass
@@ -15,10 +16,10 @@ from skychart.charts.dome import light_at
 from skychart.charts.exposure import Exposure, Swatch, exposures, swatches
 from skychart.charts.lines import LINES, Line
 from skychart.charts.minimax import Pieces
-from skychart.charts.numbers import fixed, significant
+from skychart.charts.numbers import fixed, significant, spaced
 from skychart.charts.survey import SkyView, Survey
 from skychart.colour.chromaticity import xyz_of_xy
-from skychart.colour.differences import delta_e_itp
+from skychart.colour.differences import delta_e_2000, delta_e_itp
 from skychart.colour.observers import D65_XY
 from skychart.colour.spaces import rgb
 
@@ -27,13 +28,14 @@ CLOSE_DELTA_E = 1.0
 MOST_STOPS = 24
 
 _LOW_DEG = 5.0
+_FINE_DEG = 0.05
 _SPACES = ("srgb", "acescg")
 _LABELS = (
     Column("line", "Line", "", ""),
     Column("stops", "Stops", "", ""),
     Column("position_deg", "Position", "°", ""),
     Column("view_elevation_deg", "View elevation", "°", ""),
-    Column("relative_azimuth_deg", "Azimuth", "°", ""),
+    Column("azimuth_deg", "Azimuth", "°", ""),
 )
 
 
@@ -69,10 +71,10 @@ class Gradient:
 
 @dataclass(frozen=True)
 class SheetStops:
-    """What a sheet shows of gradient stops, and its table for a file."""
+    """What a sheet shows of gradient stops: the display white they are judged for, and their table for a file."""
 
     gradients: tuple[Gradient, ...]
-    white_cd_m2: float
+    white: str
     table: NumberTable
 
 
@@ -83,7 +85,8 @@ def sheet_stops(survey: Survey, sun: int) -> SheetStops:
     view = survey.sky_view(sun)
     seen = survey.sun_seen(sun)
     gradients = tuple(_gradient(view, line, own, card, seen) for line in LINES)
-    return SheetStops(gradients, own.display_white_cd_m2, _table(gradients, card))
+    white = f"{spaced(significant(own.display_white_cd_m2, 3))} cd/m²"
+    return SheetStops(gradients, white, _table(gradients, card))
 
 
 def scaled_down(XYZ: np.ndarray, white_cd_m2: float) -> np.ndarray:
@@ -92,7 +95,7 @@ def scaled_down(XYZ: np.ndarray, white_cd_m2: float) -> np.ndarray:
 
 
 def positions(line: Line, sun_elevation_deg: float | None) -> tuple[np.ndarray, np.ndarray]:
-    """Positions [deg] where differences are taken, and indices of those where a stop may stand.
+    """Positions [deg] where the search takes differences, and indices of those where a stop may stand.
 
     Stops on whole degrees, near the horizon on half ones, and at the sun where there is one; twice as many are judged.
     """
@@ -111,16 +114,21 @@ def _gradient(view: SkyView, line: Line, own: Exposure, card_cd_m2: float, seen:
     white = own.display_white_cd_m2
     position, node = positions(line, max(view.sun_elevation_deg, 0.0) if seen else None)
     XYZ = light_at(view, *line.directions(position))
-    pieces = Pieces(position, XYZ, node, white * xyz_of_xy(D65_XY), lambda light: scaled_down(light, white))
+    white_XYZ = white * xyz_of_xy(D65_XY)
+    pieces = Pieces(position, XYZ, node, white_XYZ, lambda light: scaled_down(light, white))
     close = pieces.fewest(CLOSE_DELTA_E, MOST_STOPS)
+    fine = np.union1d(position, np.linspace(0, line.end_deg, round(line.end_deg / _FINE_DEG) + 1))
+    sky = light_at(view, *line.directions(fine))
+    shown = scaled_down(sky, white)
     sets = []
     for count in COUNTS:
-        path = pieces.best(count)
-        at = node[path]
-        straight = np.stack([np.interp(position, position[at], axis) for axis in XYZ[at].T], axis=-1)
-        itp = float(delta_e_itp(straight, XYZ).max())
-        stops = _stops(line, position[at], XYZ[at], own, card_cd_m2)
-        sets.append(StopSet(count, position[at], XYZ[at], pieces.error(path), itp, stops))
+        at = node[pieces.best(count)]
+        straight = np.stack([np.interp(fine, position[at], axis) for axis in XYZ[at].T], axis=-1)
+        error = float(delta_e_2000(scaled_down(straight, white), shown, white_XYZ).max())
+        itp = float(delta_e_itp(straight, sky).max())
+        sets.append(
+            StopSet(count, position[at], XYZ[at], error, itp, _stops(line, position[at], XYZ[at], own, card_cd_m2))
+        )
     return Gradient(line, tuple(sets), None if close is None else len(close))
 
 
@@ -137,15 +145,15 @@ def _table(gradients: tuple[Gradient, ...], card_cd_m2: float) -> NumberTable:
     columns = [Column(f"{space}_{part}", part.upper(), "", space) for space in _SPACES for part in "rgb"]
     columns += [
         Column("shown_hex", "as shown", "", ""),
-        Column("max_delta_e_2000", "ΔE2000", "", ""),
-        Column("max_delta_e_itp", "ΔE_ITP", "", ""),
+        Column("delta_e_2000", "ΔE2000", "", ""),
+        Column("delta_e_itp", "ΔE_ITP", "", ""),
     ]
     rows = []
     for gradient in gradients:
         for found in gradient.sets:
             elevation, azimuth = gradient.line.directions(found.position_deg)
             linear = np.concatenate([rgb(found.XYZ, space) / card_cd_m2 for space in _SPACES], axis=-1)
-            errors = fixed(found.delta_e_2000, 2), significant(found.delta_e_itp, 3)
+            errors = fixed(found.delta_e_2000, 1), fixed(found.delta_e_itp, 0)
             for at, up, around, parts, stop in zip(
                 found.position_deg, elevation, azimuth, linear, found.stops, strict=True
             ):

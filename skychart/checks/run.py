@@ -4,6 +4,7 @@ from collections.abc import Iterable
 
 from skychart.checks import (
     chromaticity,
+    coding,
     colorimetry,
     depolarisation,
     fluxes,
@@ -56,4 +57,5 @@ def run_checks(solved: Iterable[SpectralSky] = ()) -> tuple[Check, ...]:
         *chromaticity.checks(clear),
         *shape.checks(clear),
         *colorimetry.checks(),
+        *coding.checks(),
     )

@@ -15,7 +15,7 @@ from skychart.colour.spaces import rgb
 from skychart.errors import InputError
 from skychart.library import colour_science
 
-FEWEST_BITS, MOST_BITS = 4, 16
+FEWEST_BITS, MOST_BITS = 8, 16  # below 8, narrow range is not a whole number of steps
 SDR_WHITE_CD_M2 = 100.0
 """White of a reference display for BT.709 and BT.1886 (ITU-R BT.2035, 2013), taken for sRGB as well."""
 

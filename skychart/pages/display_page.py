@@ -10,7 +10,7 @@ from skychart.pages.environment import render
 from skychart.pages.figures import Figure
 from skychart.pages.render import file_head, templates
 from skychart.pages.site import SITE_TITLE, Atlas, Link
-from skychart.plots.display import GAMUT_IN, LUMINANCE_IN, STEPS_IN, gamut_svg, luminance_svg, steps_svg
+from skychart.plots.display import SIZE_IN, bits_svg, gamut_svg, luminance_svg, steps_svg
 
 _PIXELS_PER_INCH = 96
 _REMARKS = (
@@ -18,11 +18,10 @@ _REMARKS = (
     "sRGB and BT.1886: white 100 cd/m2, metered for the sky; PQ and HLG: a level white card at 203 cd/m2 (BT.2408)",
     "largest step as dE_ITP (BT.2124); widest band in pixels of 60 degrees over 1080, twice as many over 2160",
 )
-_FIGURES: tuple[tuple[str, Callable[[DisplaySheet], bytes], tuple[float, float], str, str, str], ...] = (
+_FIGURES: tuple[tuple[str, Callable[[DisplaySheet], bytes], str, str, str], ...] = (
     (
         "gamut",
         gamut_svg,
-        GAMUT_IN,
         "Gamut",
         "Above, how far the farthest chromaticity of the sky lies beyond the triangle of each space; below 0 it is "
         "inside, by so much. Below, the share of the sky’s solid angle that lies outside.",
@@ -31,19 +30,25 @@ _FIGURES: tuple[tuple[str, Callable[[DisplaySheet], bytes], tuple[float, float],
     (
         "luminance",
         luminance_svg,
-        LUMINANCE_IN,
         "Luminance",
         "The brightest sky, without the sun’s disc, the darkest, and a level white card. Lines at 100, 203, 1000, "
         "4000 and 10\u2009000\u00a0cd/m².",
         "Luminance of the brightest and darkest sky and of a white card by sun elevation, with peaks of screens",
     ),
     (
+        "bits",
+        bits_svg,
+        "Bits",
+        "The fewest bits with which no step of either gradient passes ΔE_ITP 1. Whole numbers; the lines are set apart "
+        "a little.",
+        "Fewest bits without a visible step in four codings, by sun elevation",
+    ),
+    (
         "steps",
         steps_svg,
-        STEPS_IN,
         "Code steps",
-        "The fewest bits with which no step of either gradient passes ΔE_ITP 1, and the largest step with 10 bits.",
-        "Fewest bits without a visible step and largest step with 10 bits in four codings, by sun elevation",
+        "The largest step of either gradient with 10 bits; the line at 1 is what the most critical observer just sees.",
+        "Largest step of code values with 10 bits in four codings, by sun elevation",
     ),
 )
 
@@ -62,10 +67,10 @@ def display_files(atlas: Atlas, chart: DisplaySheet) -> dict[str, bytes]:
         f"{stem}.json": columns_json(about | {"remarks": list(_REMARKS)}, chart.table),
     }
     figures = []
-    for key, draw, size_in, heading, caption, alt in _FIGURES:
+    for key, draw, heading, caption, alt in _FIGURES:
         path = f"{stem}-{key}.svg"
         files[path] = draw(chart)
-        width, height = (round(inches * _PIXELS_PER_INCH) for inches in size_in)
+        width, height = (round(inches * _PIXELS_PER_INCH) for inches in SIZE_IN)
         figures.append(Figure(path, heading, caption, alt, width, height))
     context = {
         "page": page,

@@ -1,5 +1,7 @@
 """Figures of a display sheet over the elevation of the sun: gamut, luminance, code steps."""
 
+from collections.abc import Sequence
+
 import numpy as np
 from matplotlib.figure import Figure
 
@@ -11,11 +13,13 @@ from skychart.colour.coding import CODINGS
 from skychart.plots.course import sun_scale
 from skychart.plots.frame import MUTED, Box, Panel, Scale, figure_svg, log_scale
 
-GAMUT_IN = (5.8, 5.2)
-LUMINANCE_IN = (5.8, 4.7)
-STEPS_IN = (5.8, 5.6)
+SIZE_IN = (5.8, 4.7)
 
 _LEFT_IN, _WIDTH_IN = 0.76, 4.4
+_BOX = Box(_LEFT_IN, 0.82, _WIDTH_IN, 3.5)
+_UPPER = Box(_LEFT_IN, 2.72, _WIDTH_IN, 1.6)
+_LOWER = Box(_LEFT_IN, 0.82, _WIDTH_IN, 1.3)
+_APART_BITS = 0.08
 _STEP_BITS = 10
 _NICE = (0.01, 0.02, 0.05, 0.1, 0.2, 0.5, 1, 2, 5, 10, 20, 50, 100)
 
@@ -29,18 +33,16 @@ def gamut_svg(chart: DisplaySheet) -> bytes:
         beyond = np.array([[found.beyond_uv for found in own] for own in spaces])
         share = np.array([[100 * found.share for found in own] for own in spaces])
         title = "Farthest beyond the triangle, Δu′v′; below 0 inside"
-        upper = Panel(figure, Box(_LEFT_IN, 3.05, _WIDTH_IN, 1.75), sun_scale(suns, False), _signed(beyond, title))
-        lower = Panel(
-            figure, Box(_LEFT_IN, 0.82, _WIDTH_IN, 1.55), sun_scale(suns), _from_zero(share, "Share outside, % of the sky")
-        )
+        upper = Panel(figure, _UPPER, sun_scale(suns, False), _signed(beyond, title))
+        lower = Panel(figure, _LOWER, sun_scale(suns), _from_zero(np.append(share, 1), "Share outside, % of the sky"))
         upper.line(np.array([suns.min(), suns.max()]), np.zeros(2), color=MUTED, linewidth=0.9)
         for number in range(len(spaces)):
             upper.curve(suns, beyond[number], number)
             lower.curve(suns, share[number], number)
         titles = [SPACE_TITLES[own[0].space] for own in spaces]
-        lower.key(titles, (0, 1.4, 2.9), -0.62, 1)
+        _key(lower, titles)
 
-    return figure_svg(GAMUT_IN, draw)
+    return figure_svg(SIZE_IN, draw)
 
 
 def luminance_svg(chart: DisplaySheet) -> bytes:
@@ -51,7 +53,7 @@ def luminance_svg(chart: DisplaySheet) -> bytes:
         ranges = [found.luminance for found in chart.reaches]
         curves = np.array([[r.brightest_cd_m2, r.card_cd_m2, r.darkest_cd_m2] for r in ranges]).T
         scale = log_scale(np.append(curves, PEAKS_CD_M2), "Luminance, cd/m²", most=9)
-        panel = Panel(figure, Box(_LEFT_IN, 0.82, _WIDTH_IN, 3.5), sun_scale(suns), scale)
+        panel = Panel(figure, _BOX, sun_scale(suns), scale)
         ends = np.array([panel.x.low, panel.x.high])
         for peak in PEAKS_CD_M2:
             panel.line(ends, np.full(2, peak), color=MUTED, linewidth=0.8)
@@ -59,30 +61,47 @@ def luminance_svg(chart: DisplaySheet) -> bytes:
             panel.text(panel.x.high, peak, text, (0.06, 0), va="center", color=MUTED)
         for number, values in enumerate(curves):
             panel.curve(suns, values, number)
-        panel.key(("brightest sky", "white card", "darkest sky"), (0, 1.65, 3.1), -0.62, 1)
+        _key(panel, ("brightest sky", "white card", "darkest sky"))
 
-    return figure_svg(LUMINANCE_IN, draw)
+    return figure_svg(SIZE_IN, draw)
 
 
-def steps_svg(chart: DisplaySheet) -> bytes:
-    """Fewest bits without a visible step, and the largest step of 10 bits, in each coding."""
+def bits_svg(chart: DisplaySheet) -> bytes:
+    """Fewest bits without a visible step in each coding; the lines stand a little apart."""
 
     def draw(figure: Figure) -> None:
         suns = chart.solar_elevation_deg
         bits = np.array([chart.least_bits(coding) for coding in CODINGS])
-        step = np.array([chart.largest_step(coding, _STEP_BITS) for coding in CODINGS])
-        upper = Panel(figure, Box(_LEFT_IN, 3.3, _WIDTH_IN, 1.9), sun_scale(suns, False), _bits_scale(bits))
-        title = f"Largest step with {_STEP_BITS} bits, ΔE_ITP"
-        high = np.append(step[np.isfinite(step)], 1.05 * INVISIBLE_DELTA_E)
-        lower = Panel(figure, Box(_LEFT_IN, 0.92, _WIDTH_IN, 1.75), sun_scale(suns), _from_zero(high, title))
-        lower.line(np.array([lower.x.low, lower.x.high]), np.full(2, INVISIBLE_DELTA_E), color=MUTED, linewidth=0.9)
-        lower.text(lower.x.high, INVISIBLE_DELTA_E, "visible", (0.06, 0.02), va="bottom", color=MUTED)
-        for number in range(len(CODINGS)):
-            upper.curve(suns, bits[number], number)
-            lower.curve(suns, step[number], number)
-        lower.key([coding.title for coding in CODINGS], (0, 1.1, 2.4, 3.3), -0.7, 1)
+        panel = Panel(figure, _BOX, sun_scale(suns), _bits_scale(bits))
+        between = (suns[1:] + suns[:-1]) / 2
+        edges = np.repeat(np.concatenate([suns[:1], between, suns[-1:]]), 2)[1:-1]
+        for number, values in enumerate(bits):
+            panel.curve(edges, np.repeat(values, 2) + _APART_BITS * (number - (len(CODINGS) - 1) / 2), number)
+        _key(panel, [coding.title for coding in CODINGS])
 
-    return figure_svg(STEPS_IN, draw)
+    return figure_svg(SIZE_IN, draw)
+
+
+def steps_svg(chart: DisplaySheet) -> bytes:
+    """The largest step of 10 bits in each coding."""
+
+    def draw(figure: Figure) -> None:
+        suns = chart.solar_elevation_deg
+        step = np.array([chart.largest_step(coding, _STEP_BITS) for coding in CODINGS])
+        high = np.append(step[np.isfinite(step)], INVISIBLE_DELTA_E)
+        panel = Panel(figure, _BOX, sun_scale(suns), _from_zero(high, f"Largest step with {_STEP_BITS} bits, ΔE_ITP"))
+        panel.line(np.array([panel.x.low, panel.x.high]), np.full(2, INVISIBLE_DELTA_E), color=MUTED, linewidth=0.9)
+        panel.text(panel.x.high, INVISIBLE_DELTA_E, "visible", (0.06, 0.02), va="bottom", color=MUTED)
+        for number, values in enumerate(step):
+            panel.curve(suns, values, number)
+        _key(panel, [coding.title for coding in CODINGS])
+
+    return figure_svg(SIZE_IN, draw)
+
+
+def _key(panel: Panel, names: Sequence[str]) -> None:
+    """Names of the curves in one line below the panel."""
+    panel.key(names, [_WIDTH_IN * number / len(names) for number in range(len(names))], -0.62, 1)
 
 
 def _bits_scale(bits: np.ndarray) -> Scale:
