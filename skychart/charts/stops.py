@@ -59,6 +59,11 @@ class StopSet:
     delta_e_itp: float
     stops: tuple[Stop, ...]
 
+    @property
+    def errors(self) -> tuple[str, str]:
+        """Both differences as they are printed."""
+        return fixed(self.delta_e_2000, 1), fixed(self.delta_e_itp, 0 if self.delta_e_itp >= 10 else 1)
+
 
 @dataclass(frozen=True)
 class Gradient:
@@ -153,11 +158,10 @@ def _table(gradients: tuple[Gradient, ...], card_cd_m2: float) -> NumberTable:
         for found in gradient.sets:
             elevation, azimuth = gradient.line.directions(found.position_deg)
             linear = np.concatenate([rgb(found.XYZ, space) / card_cd_m2 for space in _SPACES], axis=-1)
-            errors = fixed(found.delta_e_2000, 1), fixed(found.delta_e_itp, 0)
             for at, up, around, parts, stop in zip(
                 found.position_deg, elevation, azimuth, linear, found.stops, strict=True
             ):
                 labels = gradient.line.key, str(found.count), f"{at:g}", f"{up:g}", f"{around:g}"
-                cells = *(significant(float(part), 4) for part in parts), stop.swatch.hex, *errors
+                cells = *(significant(float(part), 4) for part in parts), stop.swatch.hex, *found.errors
                 rows.append(Row("", labels, cells))
     return NumberTable(_LABELS, tuple(columns), tuple(rows))
