@@ -4,6 +4,7 @@ from collections.abc import Callable, Iterable
 
 from skychart.checks import (
     chromaticity,
+    coding,
     colorimetry,
     depolarisation,
     fluxes,
@@ -35,7 +36,7 @@ _TOPICS = tuple(
     module.TOPIC
     for module in (
         *(rayleigh, depolarisation, ozone, haze, refraction, sun, natraj, fluxes, polarisation, sphere, haze_sphere),
-        *(g173, illuminance, twilight, chromaticity, shape, colorimetry),
+        *(g173, illuminance, twilight, chromaticity, shape, colorimetry, coding),
     )
 )
 
@@ -83,6 +84,7 @@ def _optics() -> tuple[Check, ...]:
         *sun.checks(),
         *chromaticity.checks(),
         *colorimetry.checks(),
+        *coding.checks(),
     )
 
 

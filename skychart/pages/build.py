@@ -8,12 +8,14 @@ from pathlib import Path
 from skychart.charts.checks import methods
 from skychart.charts.comparison import comparison
 from skychart.charts.direction import direction_sheet
+from skychart.charts.display import display_sheet
 from skychart.charts.overview import overview
 from skychart.charts.sheet import elevation_sheet
 from skychart.charts.survey import DIRECTIONS, Survey, survey
 from skychart.checks import COMPARED_AIRS, PIECES, Check, by_topic, sky_checks
 from skychart.config import NAMED_AIRS, AirSettings, Settings
 from skychart.export.openexr import has_openexr
+from skychart.pages.display_page import display_files
 from skychart.pages.environment import static_files
 from skychart.pages.render import comparison_files, direction_files, methods_files, sheet_files, start_files
 from skychart.pages.sheet_archive import OPENEXR_LEFT_OUT
@@ -120,9 +122,20 @@ def _submit_pages(pool: Executor, atlas: Atlas, found: Survey) -> list[Future[di
     suns = range(len(found.solar_elevation_deg))
     return [
         pool.submit(start_files, atlas, overview(found)),
-        *(pool.submit(sheet_files, atlas, elevation_sheet(found, sun)) for sun in suns),
+        *(pool.submit(_sheet, atlas, found, sun) for sun in suns),
         *(pool.submit(direction_files, atlas, direction_sheet(found, view)) for view in DIRECTIONS),
+        pool.submit(_display, atlas, found),
     ]
+
+
+def _sheet(atlas: Atlas, found: Survey, sun: int) -> dict[str, bytes]:
+    """In a worker, for its stops take a while."""
+    return sheet_files(atlas, elevation_sheet(found, sun))
+
+
+def _display(atlas: Atlas, found: Survey) -> dict[str, bytes]:
+    """In a worker too."""
+    return display_files(atlas, display_sheet(found))
 
 
 def _submit_comparisons(pool: Executor, atlas: Atlas, surveys: Sequence[Survey]) -> list[Future[dict[str, bytes]]]:

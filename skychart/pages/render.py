@@ -25,6 +25,7 @@ from skychart.plots.picture import DOME_PIXELS, OVERLAP_PIXELS, RIM_PIXELS, day_
 _DAY_COLUMN_PIXELS = 32
 _DAY_HEIGHT_PIXELS = 160
 _DOME_RADIUS = 100
+_STOPS_REMARK = "linear RGB over the luminance of the white card; largest differences of the line"
 
 
 @dataclass(frozen=True)
@@ -68,6 +69,8 @@ def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
     }
     exports, downloads = table_files(stem, title, about, chart.table, (chart.readings, chart.ground, chart.spectra))
     archive = sheet_archive(atlas, chart)
+    exports[f"{stem}-stops.csv"] = table_csv(chart.stops.table, (f"{SITE_TITLE}: {title}", _STOPS_REMARK))
+    downloads = (*downloads, Link("gradient stops as CSV", f"{stem}-stops.csv"))
     context = {
         "page": page,
         "chart": chart,
