@@ -8,12 +8,14 @@ from pathlib import Path
 from skychart.charts.checks import methods
 from skychart.charts.comparison import comparison
 from skychart.charts.direction import direction_sheet
+from skychart.charts.light import light_sheet
 from skychart.charts.overview import overview
 from skychart.charts.sheet import elevation_sheet
 from skychart.charts.survey import DIRECTIONS, Survey, survey
 from skychart.checks import run_checks
 from skychart.config import NAMED_AIRS, AirSettings, Settings
 from skychart.pages.environment import static_files
+from skychart.pages.light_page import light_files
 from skychart.pages.render import comparison_files, direction_files, methods_files, sheet_files, start_files
 from skychart.pages.site import Atlas, make_atlas
 from skychart.pages.workers import workers
@@ -95,9 +97,11 @@ def _solved(
 def _submit_pages(pool: Executor, atlas: Atlas, found: Survey) -> list[Future[dict[str, bytes]]]:
     """Every page of one atmosphere as work for the pool."""
     suns = range(len(found.solar_elevation_deg))
+    light = light_sheet(found)
     return [
         pool.submit(start_files, atlas, overview(found)),
-        *(pool.submit(sheet_files, atlas, elevation_sheet(found, sun)) for sun in suns),
+        pool.submit(light_files, atlas, light),
+        *(pool.submit(sheet_files, atlas, elevation_sheet(found, sun), light.suns[sun]) for sun in suns),
         *(pool.submit(direction_files, atlas, direction_sheet(found, view)) for view in DIRECTIONS),
     ]
 

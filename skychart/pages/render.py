@@ -12,8 +12,11 @@ from skychart.charts.checks import Methods
 from skychart.charts.comparison import Comparison
 from skychart.charts.direction import DirectionSheet
 from skychart.charts.ground import air_summary
+from skychart.charts.light import SunLight
+from skychart.charts.light_box import light_box
 from skychart.charts.overview import DayBand, Overview
 from skychart.charts.sheet import Sheet
+from skychart.export.light import conventions, light_content
 from skychart.export.png import srgb_png
 from skychart.export.tables import readings_json, table_csv
 from skychart.pages.environment import environment, render
@@ -47,8 +50,8 @@ class BandImage:
     height: int
 
 
-def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
-    """An elevation sheet."""
+def sheet_files(atlas: Atlas, chart: Sheet, light: SunLight) -> dict[str, bytes]:
+    """An elevation sheet, with the light of its sun."""
     stem = f"{chart.atmosphere}/{chart.stem}"
     ruler = atlas.ruler(chart.atmosphere, chart.solar_elevation_deg)
     before, after = neighbours(ruler)
@@ -65,7 +68,8 @@ def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
         "solar_elevation_deg": chart.solar_elevation_deg,
         "apparent_elevation_deg": round(chart.apparent_elevation_deg, 3),
     }
-    exports, downloads = table_files(stem, title, about, chart.table, (chart.readings, chart.ground, chart.spectra))
+    numbers = (chart.readings, chart.ground, chart.spectra, conventions() | light_content(light))
+    exports, downloads = table_files(stem, title, about, chart.table, numbers)
     context = {
         "page": page,
         "chart": chart,
@@ -74,6 +78,7 @@ def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
         "switch": atlas.sun_switch(chart.atmosphere, chart.solar_elevation_deg),
         "ruler": ruler,
         "dome": _dome(pictures, chart.apparent_elevation_deg),
+        "box": light_box(light),
         "figures": figures,
         "downloads": downloads,
     }
