@@ -8,7 +8,7 @@ from skychart.charts.exposure import Exposure, Swatch, swatches
 from skychart.charts.ground import Fact
 from skychart.charts.harmonics import HARMONICS
 from skychart.charts.light import BOTH, PARTS, SHADOW, SUN, LightSheet, SunLight
-from skychart.charts.light_tables import CHOSEN, SYMMETRIC, harmonic_title, signed
+from skychart.charts.light_tables import CHOSEN, SYMMETRIC, harmonic_title, scientific, signed
 from skychart.charts.numbers import fixed, kelvin, significant, spaced
 from skychart.charts.planes import PLANES
 
@@ -85,22 +85,22 @@ def chosen_lights(sheet: LightSheet) -> tuple[LightRow, ...]:
 
 def _facts(light: SunLight) -> tuple[Fact, ...]:
     beam = light.beam
-    colour = " ".join(fixed(float(value), 3) for value in beam.colour["srgb"])
-    sun = (
-        Fact("beam", "Sun, facing it", spaced(significant(beam.illuminance_lx, 3)), "lx"),
-        Fact("colour", "times linear sRGB", colour, ""),
-        Fact("disc", "Disc", spaced(significant(beam.disc_luminance_cd_m2, 3)), "cd/m²"),
+    exposure = _pair(light.card_ev100, light.grey_ev100, 1)
+    card = Fact("card", "EV100, level white card and 18 % grey", exposure, "")
+    if not np.isfinite(beam.illuminance_lx):
+        return (card,)
+    colour = "  ".join(spaced(fixed(float(value), 3)) for value in beam.colour["srgb"])
+    return (
+        Fact("beam", "Sun, on a plane facing it", spaced(significant(beam.illuminance_lx, 3)), "lx"),
+        Fact("colour", "times its linear sRGB", colour, ""),
+        Fact("disc", "Its disc, mean", spaced(scientific(beam.disc_luminance_cd_m2, 3)), "cd/m²"),
+        Fact("ratio", "Lit : shadow, facing it and level", _pair(light.facing_stops, light.level_stops, 2), "stops"),
+        card,
     )
-    rest = (
-        Fact("facing", "Lit : shadow, facing the sun", fixed(light.facing_stops, 2), "stops"),
-        Fact("level", "level", fixed(light.level_stops, 2), "stops"),
-        Fact("card", "White card, 18 % grey, EV100", _both_ev(light), ""),
-    )
-    return (*sun, *rest) if np.isfinite(beam.illuminance_lx) else rest[2:]
 
 
-def _both_ev(light: SunLight) -> str:
-    return f"{spaced(fixed(light.card_ev100, 1))}, {spaced(fixed(light.grey_ev100, 1))}"
+def _pair(first: float, second: float, decimals: int) -> str:
+    return ", ".join(spaced(fixed(value, decimals)) for value in (first, second))
 
 
 def _row(light: SunLight, part: int) -> LightRow:

@@ -1,10 +1,13 @@
 """Tables of the light sheet: the chosen ones of the page, and the full one of its CSV file."""
 
+import math
 from collections.abc import Callable, Iterable, Sequence
 
-from skychart.charts.columns import SPACE_TITLES, Column, NumberTable, Row
+import numpy as np
+
+from skychart.charts.columns import Column, NumberTable, Row
 from skychart.charts.harmonics import HARMONICS, Harmonic
-from skychart.charts.light import AWAY, BOTH, PARTS, SHADOW, UNDERSIDE, LightSheet, SunLight
+from skychart.charts.light import AWAY, BOTH, PARTS, SHADOW, SUN, UNDERSIDE, LightSheet, SunLight
 from skychart.charts.numbers import fixed, kelvin, significant, spaced
 from skychart.charts.planes import LEVEL, PLANES
 from skychart.colour.spaces import SPACES
@@ -25,13 +28,20 @@ _Cell = tuple[Column, Callable[[SunLight], str]]
 
 
 def illuminance_table(sheet: LightSheet) -> NumberTable:
-    """Illuminances of all planes: with the sun, and in its shadow."""
-    return _table(sheet, [_lux(plane, part) for plane in range(len(PLANES)) for part in (BOTH, SHADOW)])
+    """Illuminances of all planes: with the sun where it ever shines on them, and in its shadow."""
+    lit = np.any([light.illuminance_lx[:, SUN] > 0 for light in sheet.suns], axis=0)
+    parts = [(plane, part) for plane in range(len(PLANES)) for part in ((BOTH, SHADOW) if lit[plane] else (SHADOW,))]
+    return _table(sheet, [_lux(plane, part) for plane, part in parts])
 
 
 def lamp_table(sheet: LightSheet) -> NumberTable:
     """The sun as colour and strength, lit to shadow, and exposure."""
-    sun, colour, ratio, exposure = "Sun on a plane facing it", "sRGB linear × lx", "Lit : shadow, stops", "Level, EV100"
+    sun, colour, ratio, exposure = (
+        "Sun on a plane facing it",
+        "linear sRGB of luminance 1",
+        "Lit : shadow, stops",
+        "Level, EV100",
+    )
     return _table(
         sheet,
         [
@@ -41,7 +51,7 @@ def lamp_table(sheet: LightSheet) -> NumberTable:
             (Column("cct_k", "CCT", "K", sun), lambda light: kelvin(light.beam.cct_k)),
             (Column("duv", "Duv", "", sun), lambda light: fixed(light.beam.duv, 4)),
             *((Column(c, c, "", colour), _beam_channel(i)) for i, c in enumerate("RGB")),
-            (Column("disc", "Luminance", "cd/m²", "Disc"), lambda li: significant(li.beam.disc_luminance_cd_m2, 3)),
+            (Column("disc", "Luminance", "cd/m²", "Disc"), lambda li: scientific(li.beam.disc_luminance_cd_m2, 3)),
             (Column("facing", "facing the sun", "", ratio), lambda light: fixed(light.facing_stops, 2)),
             (Column("level", "level", "", ratio), lambda light: fixed(light.level_stops, 2)),
             (Column("card", "white card", "", exposure), lambda light: fixed(light.card_ev100, 1)),
@@ -101,9 +111,15 @@ def harmonic_title(term: Harmonic) -> str:
     return f"{term.degree}, {spaced(str(term.order))}: {term.polynomial}"
 
 
-def space_titles() -> tuple[str, ...]:
-    """Spaces as they are called on pages, in the order of the files."""
-    return tuple(SPACE_TITLES[space] for space in SPACES)
+def signed(percent: float) -> str:
+    """A difference with its sign and one decimal."""
+    text = fixed(percent, 1)
+    return text if float(text) <= 0 else f"+{text}"
+
+
+def scientific(value: float, digits: int) -> str:
+    """`value` as a number below ten and a power of ten; empty where it is nan."""
+    return "" if math.isnan(value) else f"{value:.{digits - 1}e}"
 
 
 def _table(sheet: LightSheet, cells: Sequence[_Cell]) -> NumberTable:
@@ -148,9 +164,3 @@ def _ground_share(plane: int) -> Callable[[SunLight], str]:
 
 def _error(plane: int) -> Callable[[SunLight], str]:
     return lambda light: signed(100 * float(light.coefficient_error[plane]))
-
-
-def signed(percent: float) -> str:
-    """A difference with its sign and one decimal."""
-    text = fixed(percent, 1)
-    return text if float(text) <= 0 else f"+{text}"

@@ -130,7 +130,8 @@ _ILLUMINANCE = _Plan(
     illuminance_svg,
     ILLUMINANCE_IN,
     "Illuminance",
-    "Of the six planes over the geometric elevation of the sun, with the sun and in its shadow, on equal scales.",
+    "Of the six planes over the geometric elevation of the sun: above, sun and sky on a scale of powers; below, what "
+    "is left in the sun’s shadow, in thousands of lux.",
     "Illuminance of six planes over the elevation of the sun, with the sun and in its shadow",
 )
 _LIGHT_COLOUR = _Plan(

@@ -10,8 +10,11 @@ from skychart.plots.course import sun_scale
 from skychart.plots.frame import Box, Panel, Scale, figure_svg, log_scale
 
 ILLUMINANCE_IN = (5.8, 8.0)
-COLOUR_IN = (5.8, 8.0)
+COLOUR_IN = (5.8, 7.8)
 RATIO_IN = (5.8, 5.6)
+_CURVES = 3
+"""Of the chosen lights; undersides, the last, mostly have the colour of level planes."""
+
 _LEFT_IN, _WIDTH_IN = 0.76, 4.85
 _KELVINS = (1500, 2000, 3000, 5000, 10_000, 20_000, 50_000, 100_000)
 _CCT = Scale(
@@ -30,16 +33,19 @@ def illuminance_svg(sheet: LightSheet) -> bytes:
     """Figure of two panels, with the sun and without it, a curve for each plane."""
 
     def draw(figure: Figure) -> None:
+        suns = sheet.solar_elevation_deg
         lux = np.stack([light.illuminance_lx for light in sheet.suns])
-        scale = log_scale(lux[..., SHADOW:], "", most=9)
-        parts = ((BOTH, 5.05, "Sun and sky, lx"), (SHADOW, 1.4, "Sky and ground without the sun, lx"))
-        for part, bottom, title in parts:
-            last = part == SHADOW
-            y = Scale(scale.low, scale.high, scale.ticks, scale.labels, title, log=True)
-            panel = Panel(figure, _box(bottom, 2.65), sun_scale(sheet.solar_elevation_deg, last), y)
-            for number in range(len(PLANES)):
-                panel.curve(sheet.solar_elevation_deg, lux[:, number, part], number)
-        panel.key([plane.title for plane in PLANES], (0.0, 2.5), -0.72, 3)
+        top = Panel(
+            figure,
+            _box(4.45, 3.2),
+            sun_scale(suns, labelled=False),
+            log_scale(lux[..., BOTH], "Sun and sky, lx", most=9),
+        )
+        bottom = Panel(figure, _box(1.4, 2.5), sun_scale(suns), _klx_scale(lux[..., SHADOW]))
+        for number in range(len(PLANES)):
+            top.curve(suns, lux[:, number, BOTH], number)
+            bottom.curve(suns, lux[:, number, SHADOW] / 1000, number)
+        bottom.key([plane.title for plane in PLANES], (0.0, 2.5), -0.72, 3)
 
     return figure_svg(ILLUMINANCE_IN, draw)
 
@@ -48,19 +54,20 @@ def colour_svg(sheet: LightSheet) -> bytes:
     """Figure of colour temperature, u' and v' of the sun and of the chosen lights."""
 
     def draw(figure: Figure) -> None:
-        lights = ((FACING, SUN), *((plane, part) for _, _, plane, part in CHOSEN))
+        chosen = CHOSEN[:_CURVES]
+        lights = ((FACING, SUN), *((plane, part) for _, _, plane, part in chosen))
         uv = np.stack([[light.uv_prime[at] for at in lights] for light in sheet.suns])
         kelvins = np.stack([[light.cct_k[at] for at in lights] for light in sheet.suns])
         panels = (
-            (_box(5.3, 2.4), _CCT, kelvins),
-            (_box(3.4, 1.35), _fitted(uv[..., 1], "v′"), uv[..., 1]),
-            (_box(1.4, 1.45), _fitted(uv[..., 0], "u′"), uv[..., 0]),
+            (_box(5.1, 2.4), _CCT, kelvins),
+            (_box(3.2, 1.4), _fitted(uv[..., 1], "v′"), uv[..., 1]),
+            (_box(1.2, 1.5), _fitted(uv[..., 0], "u′"), uv[..., 0]),
         )
         for number, (box, y, values) in enumerate(panels):
             panel = Panel(figure, box, sun_scale(sheet.solar_elevation_deg, number == 2), y)
             for curve in range(len(lights)):
                 panel.curve(sheet.solar_elevation_deg, values[:, curve], curve)
-        panel.key(("Sun", *(title for _, title, _, _ in CHOSEN)), (0.0, 2.5), -0.72, 3)
+        panel.key(("Sun", *(title for _, title, _, _ in chosen)), (0.0, 2.5), -0.72, 2)
 
     return figure_svg(COLOUR_IN, draw)
 
@@ -85,6 +92,13 @@ def ratio_svg(sheet: LightSheet) -> bytes:
 
 def _box(bottom_in: float, height_in: float) -> Box:
     return Box(_LEFT_IN, bottom_in, _WIDTH_IN, height_in)
+
+
+def _klx_scale(lux: np.ndarray) -> Scale:
+    """From nothing to the next ten thousand."""
+    high = max(10, 10 * int(np.ceil(lux.max() / 10_000)))
+    ticks = range(0, high + 1, 5 if high <= 30 else 10)
+    return Scale(0, high, ticks, [f"{tick}" for tick in ticks], "Sky and ground without the sun, klx")
 
 
 def _fitted(values: np.ndarray, title: str) -> Scale:
