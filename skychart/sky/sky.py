@@ -153,12 +153,18 @@ def over_hemisphere(stokes: Callable[..., Array], solar_elevation_deg: ArrayLike
 
     ``stokes`` takes solar elevation, view elevation, azimuth [degrees] and ``place``; result (..., wavelength).
     """
+    cosine, cos_phi, weight = hemisphere()
+    sun = np.asarray(solar_elevation_deg, dtype=float)[..., None, None]
+    radiance = stokes(sun, np.degrees(np.arcsin(cosine))[:, None], np.degrees(np.arccos(cos_phi)), *place)[..., 0, :]
+    return np.einsum("...zpl,z->...l", radiance, cosine * weight)
+
+
+def hemisphere() -> tuple[Array, Array, Array]:
+    """Directions of ``over_hemisphere``: cosines of zenith angle, of azimuth, and solid angle at each zenith angle."""
     quadrature = Grid(zenith=16, azimuth=8)
     cosine, weight = (part[: quadrature.zenith] for part in quadrature.cosines(0.0))
     cos_phi, _, phi_weight = quadrature.azimuths()
-    sun = np.asarray(solar_elevation_deg, dtype=float)[..., None, None]
-    radiance = stokes(sun, np.degrees(np.arcsin(cosine))[:, None], np.degrees(np.arccos(cos_phi)), *place)[..., 0, :]
-    return np.einsum("...zpl,z->...l", radiance, cosine * weight * phi_weight)
+    return cosine, cos_phi, weight * phi_weight
 
 
 def within(name: str, value: ArrayLike, low: float, high: float, unit: str = "°") -> Array:

@@ -12,7 +12,7 @@ from functools import cache
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from skychart.config import AirSettings
+from skychart.config import NO_HAZE, AirSettings
 from skychart.sky import gases
 from skychart.sky.air import standard_air
 from skychart.sky.atmosphere import Atmosphere
@@ -20,6 +20,7 @@ from skychart.sky.interpolation import spline_matrix
 from skychart.sky.line_paths import LinePaths
 from skychart.sky.lines import band_shares
 from skychart.sky.observer import Station
+from skychart.sky.peak import missed_peak
 from skychart.sky.sky import Sky, lines_of_sight, over_hemisphere, solve
 
 Array = NDArray[np.float64]
@@ -75,7 +76,10 @@ class SpectralSky:
     def ground_irradiance(self, solar_elevation_deg: ArrayLike) -> tuple[Array, Array]:
         """Diffuse and direct irradiance of a horizontal plane per unit solar irradiance, each (..., 48)."""
         diffuse = over_hemisphere(self.stokes, solar_elevation_deg)
-        height = np.sin(np.radians(self.apparent_elevation_deg(solar_elevation_deg)))
+        apparent = self.apparent_elevation_deg(solar_elevation_deg)
+        if self.settings.haze != NO_HAZE:
+            diffuse = diffuse + missed_peak(self.stokes, np.asarray(solar_elevation_deg, float), apparent)
+        height = np.sin(np.radians(apparent))
         return diffuse, np.maximum(height, 0)[..., None] * self.beam(solar_elevation_deg)
 
     def apparent_elevation_deg(self, solar_elevation_deg: ArrayLike) -> Array:
