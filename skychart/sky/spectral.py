@@ -16,12 +16,12 @@ from skychart.config import NO_HAZE, AirSettings
 from skychart.sky import gases
 from skychart.sky.air import standard_air
 from skychart.sky.atmosphere import Atmosphere
+from skychart.sky.hemisphere import missed_peak, over_hemisphere
 from skychart.sky.interpolation import spline_matrix
 from skychart.sky.line_paths import LinePaths
 from skychart.sky.lines import band_shares
 from skychart.sky.observer import Station
-from skychart.sky.peak import missed_peak
-from skychart.sky.sky import Sky, lines_of_sight, over_hemisphere, solve
+from skychart.sky.sky import Sky, lines_of_sight, solve
 
 Array = NDArray[np.float64]
 
@@ -78,7 +78,7 @@ class SpectralSky:
         diffuse = over_hemisphere(self.stokes, solar_elevation_deg)
         apparent = self.apparent_elevation_deg(solar_elevation_deg)
         if self.settings.haze != NO_HAZE:
-            diffuse = diffuse + missed_peak(self.stokes, np.asarray(solar_elevation_deg, float), apparent)
+            diffuse = diffuse + missed_peak(self.stokes, solar_elevation_deg, apparent)
         height = np.sin(np.radians(apparent))
         return diffuse, np.maximum(height, 0)[..., None] * self.beam(solar_elevation_deg)
 

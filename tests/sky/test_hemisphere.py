@@ -3,8 +3,7 @@
 import numpy as np
 import pytest
 
-from skychart.sky.peak import missed_peak
-from skychart.sky.sky import over_hemisphere
+from skychart.sky.hemisphere import missed_peak, over_hemisphere
 
 SUNS_DEG = np.array([0.0, 3, 12, 25, 40, 58, 65, 90])
 WIDTHS_DEG = np.array([2.0, 4.0])
@@ -58,6 +57,7 @@ def test_suns_keep_their_places():
     found = missed_peak(hazy, suns, suns)
     assert found.shape == (2, 2, 2)
     assert np.all(found[0, 0] == 0)
+    assert np.all(missed_peak(hazy, suns - 80, suns - 80) == 0)
     np.testing.assert_allclose(found[1, 0], missed_peak(hazy, np.array(40.0), np.array(40.0)), rtol=1e-12)
 
 
