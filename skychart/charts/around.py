@@ -1,9 +1,9 @@
 """Directions all around an observer with their solid angles, dense where the light of a sky changes quickly.
 
-Rows of equal elevation, cut into pieces of azimuth, are integrated by Gauss and Legendre's rule, in the sine of the
-elevation. Rows end at the horizon, lie close above it and about the sun; pieces are narrow beside the sun, and end
-where a plane that faces the sun, or one of the walls, stops seeing, so that no half-space cuts through a piece.
-Against nodes three times as dense in every dimension, illuminances of all planes differ by at most 0.06 %.
+Rows of equal elevation, cut into pieces of azimuth, are integrated by Gauss and Legendre's rule. Rows end at the
+horizon, lie close above it and about the sun; pieces are narrow beside the sun, and end where a plane that faces the
+sun, or one of the walls, stops seeing, so that no half-space cuts through a piece.
+Against nodes three times as dense in every dimension, illuminances of all planes differ by at most 0.07 %.
 """
 
 from dataclasses import dataclass
@@ -45,9 +45,9 @@ def unit_vectors(elevation_deg: np.ndarray | float, azimuth_deg: np.ndarray | fl
 
 def directions_around(sun_elevation_deg: float) -> Directions:
     """Directions for a sun that is seen at an elevation [deg, −90 to 90]."""
-    ends = np.sin(np.radians(_row_ends(sun_elevation_deg)))
-    sine, height = (part.ravel() for part in _pieces(ends[:-1], ends[1:], _NODES_UP))
-    elevation = np.degrees(np.arcsin(sine))
+    ends = _row_ends(sun_elevation_deg)
+    elevation, height = (part.ravel() for part in _pieces(ends[:-1], ends[1:], _NODES_UP))
+    area = np.radians(height) * np.cos(np.radians(elevation))
     edges, beside = _azimuth_ends(sun_elevation_deg, elevation)
     parts = [
         _pieces(edges[:, i], edges[:, i + 1], _NODES_BESIDE_SUN if i < beside else _NODES_ELSEWHERE)
@@ -55,7 +55,7 @@ def directions_around(sun_elevation_deg: float) -> Directions:
     ]
     azimuth, width = (np.concatenate(part, axis=1) for part in zip(*parts, strict=True))
     rows = np.broadcast_to(elevation[:, None], azimuth.shape)
-    return Directions(rows.ravel(), azimuth.ravel(), (height[:, None] * np.radians(width)).ravel())
+    return Directions(rows.ravel(), azimuth.ravel(), (area[:, None] * np.radians(width)).ravel())
 
 
 def _row_ends(sun: float) -> np.ndarray:

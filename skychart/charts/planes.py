@@ -56,8 +56,8 @@ class PlaneLight:
 def plane_light(survey: Survey) -> PlaneLight:
     """Light on all planes under every sun of a survey.
 
-    The sky on the level plane is the solver's own flux, the number that every page gives; the sum over directions
-    agrees with it.
+    On the level plane both are the survey's own, the solver's flux and the sun that every page gives; the sums here
+    agree with them.
     """
     suns = range(len(survey.solar_elevation_deg))
     normals = np.stack([plane_normals(survey, sun) for sun in suns])
@@ -67,6 +67,7 @@ def plane_light(survey: Survey) -> PlaneLight:
     beams = unit_vectors(survey.apparent_elevation_deg, 0.0)
     cosines = np.einsum("spv,sv->sp", normals, beams)
     sun_XYZ = np.where(cosines > _GRAZING, cosines, 0)[..., None] * survey.beam_XYZ[:, None]
+    sun_XYZ[:, LEVEL] = survey.sun_XYZ
     return PlaneLight(sun_XYZ, sky, ground, coefficients, normals)
 
 

@@ -16,6 +16,11 @@ CONVENTION = (
     + "; a plane receives the sum of A times coefficient times Y(normal), A = pi, 2 pi/3, pi/4 for degree 0, 1, 2 "
     "(Ramamoorthi and Hanrahan 2001, doi:10.1145/383259.383317)"
 )
+SHORT_CONVENTION = (
+    ", ".join(term.name for term in HARMONICS)
+    + "; x toward the sun's azimuth, y at azimuth 90, z up; real, orthonormal; "
+    "doi:10.1145/383259.383317; written out in light.json"
+)
 REMARKS = (
     "part: sun = the beam alone, shadow = sky and ground without the sun, both = all; each on the named plane, lx; "
     "without a seen sun the plane facing it is the wall toward it",
@@ -28,19 +33,14 @@ def light_json(about: dict[str, Any], sheet: LightSheet) -> bytes:
     """All suns of a light sheet; RGB on the planes is left to the CSV file and to the sheets of the suns."""
     suns = [{key: value for key, value in light_content(light).items() if key != "rgb"} for light in sheet.suns]
     light = "; ".join(REMARKS) + "; rgb on planes: in the CSV file and in the JSON file of each sun"
-    content = {"about": about | conventions() | {"light": light}, "suns": suns}
+    content = {"about": about | _axes() | {"light": light, "coefficient_convention": CONVENTION}, "suns": suns}
     text = json.dumps(content, ensure_ascii=False, allow_nan=False, separators=(",", ":"))
     return (text + "\n").encode("utf-8")
 
 
-def conventions() -> dict[str, Any]:
-    """What the arrays of `light_content` are over, and in which units."""
-    return {
-        "planes": [plane.key for plane in PLANES],
-        "parts": [key for key, _ in PARTS],
-        "axes": "arrays are plane, part, channel; coefficients are harmonic, channel",
-        "coefficients": CONVENTION,
-    }
+def sheet_light(light: SunLight) -> dict[str, Any]:
+    """The light of one sun as the JSON file of its elevation sheet has it."""
+    return _axes() | {"coefficient_convention": SHORT_CONVENTION} | light_content(light)
 
 
 def light_content(light: SunLight) -> dict[str, Any]:
@@ -71,3 +71,12 @@ def light_content(light: SunLight) -> dict[str, Any]:
         }
     )
     return found
+
+
+def _axes() -> dict[str, Any]:
+    """What the arrays of `light_content` are over."""
+    return {
+        "planes": [plane.key for plane in PLANES],
+        "parts": [key for key, _ in PARTS],
+        "axes": "arrays are plane, part, channel; coefficients are harmonic, channel",
+    }

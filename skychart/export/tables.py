@@ -57,7 +57,7 @@ def readings_json(
 
 
 def plain(value: Any) -> Any:
-    """Arrays as lists, numbers to four significant digits, nan as None."""
+    """Arrays as lists, numbers to four significant digits and whole ones without a point, nan as None."""
     if isinstance(value, dict):
         return {key: plain(entry) for key, entry in value.items()}
     if isinstance(value, np.ndarray):
@@ -65,5 +65,6 @@ def plain(value: Any) -> Any:
     if isinstance(value, list):
         return [plain(entry) for entry in value]
     if isinstance(value, (float, np.floating)):
-        return rounded(float(value), _DIGITS)
+        number = rounded(float(value), _DIGITS)
+        return int(number) if number is not None and number.is_integer() else number
     return value

@@ -16,7 +16,7 @@ from skychart.charts.light import SunLight
 from skychart.charts.light_box import light_box
 from skychart.charts.overview import DayBand, Overview
 from skychart.charts.sheet import Sheet
-from skychart.export.light import conventions, light_content
+from skychart.export.light import sheet_light
 from skychart.export.png import srgb_png
 from skychart.export.tables import readings_json, table_csv
 from skychart.pages.environment import environment, render
@@ -68,7 +68,7 @@ def sheet_files(atlas: Atlas, chart: Sheet, light: SunLight) -> dict[str, bytes]
         "solar_elevation_deg": chart.solar_elevation_deg,
         "apparent_elevation_deg": round(chart.apparent_elevation_deg, 3),
     }
-    numbers = (chart.readings, chart.ground, chart.spectra, conventions() | light_content(light))
+    numbers = (chart.readings, chart.ground, chart.spectra, sheet_light(light))
     exports, downloads = table_files(stem, title, about, chart.table, numbers)
     context = {
         "page": page,
