@@ -16,9 +16,9 @@ _CURVES = 3
 """Of the chosen lights; undersides, the last, mostly have the colour of level planes."""
 
 _LEFT_IN, _WIDTH_IN = 0.76, 4.85
-_KELVINS = (1500, 2000, 3000, 5000, 10_000, 20_000, 50_000, 100_000)
+_KELVINS = (1000, 2000, 3000, 5000, 10_000, 20_000, 50_000, 100_000)
 _CCT = Scale(
-    1500,
+    1000,
     100_000,
     _KELVINS,
     tuple(f"{kelvin:,}".replace(",", "\u2009") if kelvin >= 10_000 else f"{kelvin}" for kelvin in _KELVINS),
