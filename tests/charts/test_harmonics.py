@@ -17,7 +17,7 @@ def both_halves():
 
 
 def test_factors_are_the_published_ones():
-    """Ramamoorthi and Hanrahan 2001, equation 3, six decimals; their x, y, z are here at orders 1, −1 and 0."""
+    """Ramamoorthi and Hanrahan 2001, six decimals (from memory; orthonormality below is the proof)."""
     published = {"1": 0.282095, "x": 0.488603, "y": 0.488603, "z": 0.488603, "xz": 1.092548, "yz": 1.092548,
                  "xy": 1.092548, "3z² − 1": 0.315392, "x² − y²": 0.546274}  # fmt: skip
     assert {term.polynomial: round(term.factor, 6) for term in HARMONICS} == published
