@@ -1,7 +1,6 @@
 """Gradients of the sky as test pictures: 16-bit PNG, coded for sRGB and for PQ with the primaries of BT.2020.
 
-Sources: IEC 61966-2-1 (sRGB); SMPTE ST 2084 and ITU-R BT.2100 (PQ), through colour-science; ITU-R BT.2408: diffuse
-white at 203 cd m⁻².
+Source: ITU-R BT.2408 (diffuse white at 203 cd m⁻²); the codes as `skychart.colour.coding` has them.
 """
 
 from collections.abc import Sequence
@@ -10,12 +9,10 @@ import numpy as np
 
 from skychart.charts.exposure import Exposure
 from skychart.charts.ramps import Ramp
+from skychart.colour.coding import HDR_WHITE_CD_M2, PQ
 from skychart.colour.spaces import rgb
 from skychart.export.png import BT2100_PQ_CHUNK, SRGB_CHUNK, ramp_png
-from skychart.library import colour_science
 
-PQ_WHITE_CD_M2 = 203.0
-_PQ_PEAK_CD_M2 = 10_000.0
 _HEIGHT = 360
 _SRGB_RULE = "sRGB code; code white is a level white card in this light; brighter colours are scaled down, hue kept."
 _PQ_RULE = "PQ code, BT.2020 primaries; a level white card in this light is at 203 cd/m2 (ITU-R BT.2408)."
@@ -45,6 +42,5 @@ def pq_signal(XYZ: np.ndarray, card_luminance_cd_m2: float) -> np.ndarray:
 
     Negative components become 0; what passes 10 000 cd m⁻² is scaled down whole.
     """
-    shown = np.maximum(rgb(XYZ, "bt2020") * (PQ_WHITE_CD_M2 / card_luminance_cd_m2), 0)
-    shown = shown * np.minimum(1, _PQ_PEAK_CD_M2 / np.maximum(shown.max(axis=-1, keepdims=True), 1))
-    return np.asarray(colour_science().models.eotf_inverse_ST2084(shown))
+    shown = np.maximum(rgb(XYZ, PQ.space) * (HDR_WHITE_CD_M2 / card_luminance_cd_m2), 0)
+    return PQ.signal(shown * np.minimum(1, PQ.peak_cd_m2 / np.maximum(shown.max(axis=-1, keepdims=True), 1)))

@@ -9,6 +9,7 @@ from skychart.charts.checks import methods
 from skychart.charts.comparison import comparison
 from skychart.charts.direction import direction_sheet
 from skychart.charts.display import display_sheet
+from skychart.charts.light import SunLight, light_sheet
 from skychart.charts.overview import overview
 from skychart.charts.sheet import elevation_sheet
 from skychart.charts.survey import DIRECTIONS, Survey, survey
@@ -17,6 +18,7 @@ from skychart.config import NAMED_AIRS, AirSettings, Settings
 from skychart.export.openexr import has_openexr
 from skychart.pages.display_page import display_files
 from skychart.pages.environment import static_files
+from skychart.pages.light_page import light_files
 from skychart.pages.render import comparison_files, direction_files, methods_files, sheet_files, start_files
 from skychart.pages.sheet_archive import OPENEXR_LEFT_OUT
 from skychart.pages.site import Atlas, make_atlas
@@ -120,17 +122,19 @@ def _compared(
 def _submit_pages(pool: Executor, atlas: Atlas, found: Survey) -> list[Future[dict[str, bytes]]]:
     """Every page of one atmosphere as work for the pool."""
     suns = range(len(found.solar_elevation_deg))
+    light = light_sheet(found)
     return [
         pool.submit(start_files, atlas, overview(found)),
-        *(pool.submit(_sheet, atlas, found, sun) for sun in suns),
+        pool.submit(light_files, atlas, light),
+        *(pool.submit(_sheet, atlas, found, sun, light.suns[sun]) for sun in suns),
         *(pool.submit(direction_files, atlas, direction_sheet(found, view)) for view in DIRECTIONS),
         pool.submit(_display, atlas, found),
     ]
 
 
-def _sheet(atlas: Atlas, found: Survey, sun: int) -> dict[str, bytes]:
+def _sheet(atlas: Atlas, found: Survey, sun: int, light: SunLight) -> dict[str, bytes]:
     """In a worker, for its stops take a while."""
-    return sheet_files(atlas, elevation_sheet(found, sun))
+    return sheet_files(atlas, elevation_sheet(found, sun), light)
 
 
 def _display(atlas: Atlas, found: Survey) -> dict[str, bytes]:

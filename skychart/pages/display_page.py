@@ -3,6 +3,7 @@
 from collections.abc import Callable
 
 from skychart.charts.display import DisplaySheet
+from skychart.charts.numbers import degrees
 from skychart.charts.sheet import sheet_stem
 from skychart.export.columns import columns_json
 from skychart.export.tables import table_csv
@@ -57,6 +58,8 @@ def display_files(atlas: Atlas, chart: DisplaySheet) -> dict[str, bytes]:
     """The page with its figures and files."""
     name = chart.atmosphere
     stem = f"{name}/display"
+    suns = chart.solar_elevation_deg.tolist()
+    sheets = [sheet_stem(sun) for sun in suns]
     title = f"Display, {name}"
     description = f"What screens lose of the {name} sky: gamut, luminance and steps of code values by sun elevation."
     page = atlas.page("display", name, f"{stem}.html", title, description)
@@ -78,7 +81,8 @@ def display_files(atlas: Atlas, chart: DisplaySheet) -> dict[str, bytes]:
         "air": atlas.air(name),
         "switch": atlas.switch(name, "display"),
         "figures": figures,
-        "sheets": [f"{name}/{sheet_stem(float(sun))}.html" for sun in chart.solar_elevation_deg],
+        "sheets": [f"{name}/{sheet}.html" for sheet in sheets],
+        "ramps": [Link(degrees(sun), f"{name}/{sheet}-files.zip") for sun, sheet in zip(suns, sheets, strict=True)],
         "downloads": (Link("CSV", f"{stem}.csv"), Link("JSON", f"{stem}.json")),
     }
     return {page.path: render(templates(), "display.html", context), **files}

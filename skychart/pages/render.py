@@ -12,8 +12,11 @@ from skychart.charts.checks import Methods
 from skychart.charts.comparison import Comparison
 from skychart.charts.direction import DirectionSheet
 from skychart.charts.ground import air_summary
+from skychart.charts.light import SunLight
+from skychart.charts.light_box import light_box
 from skychart.charts.overview import DayBand, Overview
 from skychart.charts.sheet import Sheet
+from skychart.export.light import sheet_light
 from skychart.export.png import srgb_png
 from skychart.export.tables import readings_json, table_csv
 from skychart.pages.environment import environment, render
@@ -25,7 +28,6 @@ from skychart.plots.picture import DOME_PIXELS, OVERLAP_PIXELS, RIM_PIXELS, day_
 _DAY_COLUMN_PIXELS = 32
 _DAY_HEIGHT_PIXELS = 160
 _DOME_RADIUS = 100
-_STOPS_REMARK = "linear RGB over the luminance of the white card; largest differences of the line"
 
 
 @dataclass(frozen=True)
@@ -49,8 +51,8 @@ class BandImage:
     height: int
 
 
-def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
-    """An elevation sheet."""
+def sheet_files(atlas: Atlas, chart: Sheet, light: SunLight) -> dict[str, bytes]:
+    """An elevation sheet, with the light of its sun."""
     stem = f"{chart.atmosphere}/{chart.stem}"
     ruler = atlas.ruler(chart.atmosphere, chart.solar_elevation_deg)
     before, after = neighbours(ruler)
@@ -67,10 +69,9 @@ def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
         "solar_elevation_deg": chart.solar_elevation_deg,
         "apparent_elevation_deg": round(chart.apparent_elevation_deg, 3),
     }
-    exports, downloads = table_files(stem, title, about, chart.table, (chart.readings, chart.ground, chart.spectra))
+    numbers = (chart.readings, chart.ground, chart.spectra, sheet_light(light))
+    exports, downloads = table_files(stem, title, about, chart.table, numbers)
     archive = sheet_archive(atlas, chart)
-    exports[f"{stem}-stops.csv"] = table_csv(chart.stops.table, (f"{SITE_TITLE}: {title}", _STOPS_REMARK))
-    downloads = (*downloads, Link("gradient stops as CSV", f"{stem}-stops.csv"))
     context = {
         "page": page,
         "chart": chart,
@@ -79,6 +80,7 @@ def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
         "switch": atlas.sun_switch(chart.atmosphere, chart.solar_elevation_deg),
         "ruler": ruler,
         "dome": _dome(pictures, chart.apparent_elevation_deg),
+        "box": light_box(light),
         "figures": figures,
         "downloads": (*downloads, Link("ZIP for other programs", archive.path)),
         "archive": archive,

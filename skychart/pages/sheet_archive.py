@@ -11,10 +11,12 @@ from skychart.export.openexr import HOW_TO_GET_IT, has_openexr
 from skychart.export.patches import patches_exr
 from skychart.export.ramps import ramp_pngs
 from skychart.export.spectral import spectra_tm27
+from skychart.export.tables import table_csv
 from skychart.pages.site import Atlas
 
 OPENEXR_LEFT_OUT = f"OpenEXR is not installed, so patch pictures are left out; get it with: {HOW_TO_GET_IT}"
 _CONTENTS = "contents.txt"
+_STOPS_REMARK = "linear RGB over the luminance of the white card; largest differences of the line"
 
 
 @dataclass(frozen=True)
@@ -32,6 +34,7 @@ def sheet_archive(atlas: Atlas, chart: Sheet) -> Archive:
     software = f"skychart {atlas.version}"
     source = f"{chart.atmosphere}, sun {chart.solar_elevation_deg:g} deg"
     files = {
+        "stops.csv": table_csv(chart.stops.table, (f"Gradient stops, {source}. {software}", _STOPS_REMARK)),
         "colours.cgats.txt": table_cgats(chart, software, f"Sky colours, {source}"),
         **{f"spectrum-{key}.spdx": data for key, data in spectra_tm27(chart.spectra, software, source).items()},
         **ramp_pngs(ramps(chart.sky), chart.ground.card_luminance_cd_m2, software, source),
@@ -60,6 +63,7 @@ def _contents(software: str, source: str, air: str, has_exr: bool) -> bytes:
         "colours.cgats.txt   CGATS.17: absolute XYZ and xyY of every direction of the sheet, Y in cd/m2",
         "spectrum-*.spdx     IES TM-27 XML: spectral radiance of five directions; irradiance by the sun while it is up",
         *(["patches.exr         OpenEXR: the blocks of the sheet, linear BT.709, 1.0 is 1 cd/m2"] if has_exr else []),
+        "stops.csv           gradient stops of the sheet, linear RGB over the luminance of the white card",
         "ramp-beside-*.png   16 bits: horizon to zenith, 90 degrees from the sun",
         "ramp-plane-*.png    16 bits: horizon below the sun, zenith, horizon opposite",
         "  *-srgb.png        code white is a level white card in this light",

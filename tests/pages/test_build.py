@@ -23,6 +23,7 @@ def test_every_page_is_there(site):
     expected = {
         f"{air}/{stem}.{kind}" for air in ("molecular", "thin") for stem in stems for kind in ("html", "csv", "json")
     }
+    expected |= {f"{air}/light.{kind}" for air in ("molecular", "thin") for kind in ("html", "csv", "json")}
     expected |= {f"compare/{stem}.html" for stem in ("sun-08", "sun+20")}
     assert expected | {"index.html", "thin/index.html", "methods.html", "static/skychart.css"} <= names
 
