@@ -16,7 +16,7 @@ from pathlib import Path
 from types import FrameType
 from typing import NoReturn
 
-from skychart.arguments import job_count, out_folder, parse, read_request
+from skychart.arguments import job_count, map_request, out_folder, parse, read_request
 from skychart.config import DEFAULT_SETTINGS, default_toml, load_settings
 from skychart.errors import OutputError, SkychartError
 
@@ -70,11 +70,29 @@ def run_read(options: argparse.Namespace) -> int:
     """Print the numbers of one direction of one sky."""
     air, sun, view, azimuth = read_request(options)
     from skychart.charts.reading import reading
+    from skychart.library import colour_science
     from skychart.sky.spectral import solve_spectral
     from skychart.terminal import reading_json, reading_text
 
+    threading.Thread(target=colour_science, daemon=True).start()  # takes a second or two to import, as solving does
     result = reading(solve_spectral(air), sun, view, azimuth)
     _hand_out(reading_json(result) if options.json else reading_text(result))
+    return EXIT_DONE
+
+
+def run_map(options: argparse.Namespace) -> int:
+    """Write the map of one sky and say what it holds."""
+    out, air, sun, width, space, azimuth, disc, half = map_request(options)
+    from skychart.export.files import check_writable, write_whole
+    from skychart.export.openexr import openexr
+
+    openexr()
+    check_writable(out)
+    from skychart.pages.map_file import map_file
+
+    line, data = map_file(air, sun, width, azimuth, disc, space, half, _progress)
+    write_whole(out, data)
+    _hand_out(f"{out}: {line}\n")
     return EXIT_DONE
 
 
@@ -97,6 +115,7 @@ def run_config(options: argparse.Namespace) -> int:
 _COMMANDS: Mapping[str, Callable[[argparse.Namespace], int]] = {
     "build": run_build,
     "read": run_read,
+    "map": run_map,
     "verify": run_verify,
     "config": run_config,
 }

@@ -22,7 +22,7 @@ import skychart.checks
 import skychart.pages
 import skychart.sky.spectral
 from skychart import cli
-from skychart.arguments import COMMANDS, READ_ANGLES, folded_azimuth
+from skychart.arguments import COMMANDS, MAP_ANGLES, READ_ANGLES, folded_azimuth
 from skychart.charts.reading import reading
 from skychart.checks.check import Check
 from skychart.config import DEFAULT_SETTINGS, AirSettings, Settings, default_toml
@@ -178,10 +178,13 @@ def test_read_takes_the_ends_of_the_range(skychart_command, sun: str) -> None:
 
 
 SUN, VIEW, AZIMUTH = (f"accepted is {quantity}" for quantity in READ_ANGLES.values())
+OUT = "accepted is the name of a file that ends in .exr"
+WIDTH = "accepted is a whole number divisible by 4, 64 to 4096 pixels"
+SUN_AZIMUTH = f"accepted is {MAP_ANGLES['--sun-azimuth']}"
 FAULTY_LINES = [
-    ("", ["no command given; known: build, read, verify, config"]),
-    ("chart", ["unknown command 'chart'; known: build, read, verify, config"]),
-    ("--version", ["unknown command '--version'; known: build, read, verify, config"]),
+    ("", ["no command given; known: build, read, map, verify, config"]),
+    ("chart", ["unknown command 'chart'; known: build, read, map, verify, config"]),
+    ("--version", ["unknown command '--version'; known: build, read, map, verify, config"]),
     ("read --sun 95 --elevation 45 --azimuth 90", [f"--sun is 95, {SUN}"]),
     ("read --sun nan --elevation 45 --azimuth 90", [f"--sun is nan, {SUN}"]),
     ("read --sun -inf --elevation 45 --azimuth 90", [f"--sun is -inf, {SUN}"]),
@@ -202,6 +205,16 @@ FAULTY_LINES = [
     ),
     ("read --json=yes", ["--json takes no value"]),
     ("read --elev 3", ["unknown argument '--elev'; 'skychart read --help' lists the known ones"]),
+    ("map", [f"--sun is missing, {SUN}", f"OUT.exr is missing, {OUT}"]),
+    ("map --sun 12 --sun-azimuth 400 a.exr", [f"--sun-azimuth is 400, {SUN_AZIMUTH}"]),
+    ("map --sun 12 --sun-azimuth -9e2 a.exr", [f"--sun-azimuth is -900, {SUN_AZIMUTH}"]),
+    ("map --sun 12 a.png", [f"OUT.exr is 'a.png', {OUT}"]),
+    ("map --sun 12 a.exr --width 1022", [f"--width is '1022', {WIDTH}"]),
+    ("map --sun 12 a.exr --width 60", [f"--width is '60', {WIDTH}"]),
+    ("map --sun 12 a.exr --width -64", [f"--width is '-64', {WIDTH}"]),
+    ("map --sun 12 a.exr --space rec709", ["--space is 'rec709', accepted is one of srgb, display-p3, bt2020, acescg"]),
+    ("map --sun 12 absent/a.exr", [f"cannot write absent/a.exr: there is no folder {Path.cwd()}/absent"]),
+    ("map --sun 12 a.exr b.exr", ["unknown argument 'b.exr'; 'skychart map --help' lists the known ones"]),
     ("verify now", ["unknown argument 'now'; 'skychart verify --help' lists the known ones"]),
     ("build --jobs 0", ["--jobs is '0', accepted is a whole number, 1 to 64"]),
     ("build --jobs 65", ["--jobs is '65', accepted is a whole number, 1 to 64"]),

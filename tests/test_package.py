@@ -85,7 +85,7 @@ with contextlib.suppress(SystemExit), contextlib.redirect_stdout(io.StringIO()):
 
 @pytest.mark.parametrize("statement", ["import skychart", HELP], ids=["import", "help"])
 def test_start_up_imports_nothing_heavy(statement: str) -> None:
-    assert loaded_by(statement) & {"numpy", "colour", "matplotlib", "jinja2", "PIL", "scipy"} == set()
+    assert loaded_by(statement) & {"numpy", "colour", "matplotlib", "jinja2", "PIL", "scipy", "OpenEXR"} == set()
 
 
 def test_the_physics_imports_neither_colour_nor_pictures() -> None:
@@ -95,11 +95,13 @@ def test_the_physics_imports_neither_colour_nor_pictures() -> None:
 
 
 def test_only_declared_dependencies_are_imported() -> None:
+    """Those of the package and the extra `exr`, and each of them is used."""
     project = tomllib.loads((REPOSITORY / "pyproject.toml").read_text(encoding="utf-8"))["project"]
     declared = {re.split(r"[^\w-]", requirement)[0] for requirement in project["dependencies"]}
     roots = {name.partition(".")[0] for path in MODULES for name in imported_modules(path)}
     foreign = roots - set(sys.stdlib_module_names) - {"skychart"}
-    assert {"colour-science" if name == "colour" else name for name in foreign} == declared
+    extras = {re.split(r"[^\w-]", requirement)[0] for requirement in project["optional-dependencies"]["exr"]}
+    assert {"colour-science" if name == "colour" else name for name in foreign} == declared | extras
 
 
 def test_the_top_level_holds_only_the_agreed_names() -> None:

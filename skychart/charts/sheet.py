@@ -19,6 +19,7 @@ from skychart.charts.exposure import Exposure, Swatch, exposures, swatches
 from skychart.charts.ground import Ground, ground
 from skychart.charts.numbers import degrees, fixed, signed_stem, significant, spaced
 from skychart.charts.reading import Reading, read_colours
+from skychart.charts.stops import SheetStops, sheet_stops
 from skychart.charts.survey import SkyView, Survey, azimuth_index, elevation_index
 from skychart.colour.differences import uv_prime
 
@@ -85,6 +86,7 @@ class Sheet:
     chromaticities: Chromaticities
     principal_plane: PrincipalPlane
     polarisation: Polarisation
+    stops: SheetStops
     deep_twilight: bool
 
 
@@ -134,6 +136,7 @@ def elevation_sheet(survey: Survey, sun: int) -> Sheet:
         chromaticities=Chromaticities(readings.uv_prime, tuple(hexes), sun_uv(survey, sun)),
         principal_plane=principal_plane(survey, sun),
         polarisation=polarisation_map(survey, sun),
+        stops=sheet_stops(survey, sun),
         deep_twilight=elevation <= DEEP_TWILIGHT_DEG,
     )
 

@@ -12,7 +12,8 @@ from skychart.charts.aureole import arms
 from skychart.charts.reading import Sky
 from skychart.colour.integrate import tristimulus_matrix
 from skychart.config import AirSettings
-from skychart.sky.sun import solar_irradiance
+from skychart.sky.sky import LOWEST_SUN_DEG
+from skychart.sky.sun import SOLAR_DISC_DIAMETER_DEG, SOLAR_DISC_SOLID_ANGLE_SR, solar_irradiance
 
 VIEW_ELEVATION_DEG = np.array(
     [0, 0.5, 1, 2, 3, 4, 5, 6, 8, 10, 12, 15, 20, 25, 30, 35, 40, 45, 50, 55, 60, 65, 70, 75, 80, 85, 90], float
@@ -20,9 +21,10 @@ VIEW_ELEVATION_DEG = np.array(
 RELATIVE_AZIMUTH_DEG = np.arange(0.0, 181.0, 7.5)
 _BY_SUN = (
     *("solar_elevation_deg", "apparent_elevation_deg", "stokes_XYZ", "aureole_XYZ", "below_XYZ"),
-    *("sky_XYZ", "sun_XYZ", "beam_XYZ", "radiance", "beam_irradiance"),
+    *("sky_XYZ", "sun_XYZ", "beam_XYZ", "radiance", "beam_irradiance", "disc_sr"),
 )
 BELOW_ELEVATION_DEG = np.array([-90, -60, -40, -25, -15, -10, -7, -5, -4, -3, -2, -1, -0.5])
+_ZENITH_COSINE = 1e-6
 
 
 @dataclass(frozen=True)
@@ -70,7 +72,8 @@ class Survey:
     along the arms around the sun (sun, arm, distance, Stokes I Q U, XYZ), nan below the horizon; `below_XYZ` [cd m⁻²]
     (sun, elevation below the horizon, azimuth, XYZ): the lit ground and the air before it; `radiance`
     [W m⁻² sr⁻¹ nm⁻¹] of `DIRECTIONS` (sun, direction, wavelength); `beam_irradiance` [W m⁻² nm⁻¹] of a plane
-    facing the sun (sun, wavelength), both on the sky's wavelengths with the solar spectrum averaged about each.
+    facing the sun (sun, wavelength), both on the sky's wavelengths with the solar spectrum averaged about each;
+    `disc_sr` [sr] (sun,) the solid angle of the sun's disc as refraction leaves it, nan where it is not seen.
     """
 
     air: AirSettings
@@ -86,6 +89,7 @@ class Survey:
     beam_XYZ: np.ndarray
     radiance: np.ndarray
     beam_irradiance: np.ndarray
+    disc_sr: np.ndarray
 
     @property
     def card_XYZ(self) -> np.ndarray:
@@ -127,6 +131,7 @@ def survey(sky: Sky, solar_elevation_deg: tuple[float, ...], observer: str) -> S
         beam_XYZ=beam @ matrix,
         radiance=stokes[:, rows, columns, 0] * solar,
         beam_irradiance=beam * solar,
+        disc_sr=np.where((beam @ matrix)[:, 1] > 0, _disc(sky, suns, apparent), np.nan),
     )
 
 
@@ -154,6 +159,16 @@ def _aureole(sky: Sky, suns: np.ndarray, apparent_deg: np.ndarray, matrix: np.nd
     found = np.full((*view.shape, 3, 3), np.nan)
     found[seen] = sky.stokes(np.broadcast_to(suns[:, None, None], view.shape)[seen], view[seen], azimuth[seen]) @ matrix
     return found
+
+
+def _disc(sky: Sky, suns: np.ndarray, apparent_deg: np.ndarray) -> np.ndarray:
+    """Solid angle of the disc [sr]: refraction lifts its lower limb more than the upper one, and draws it together."""
+    limbs = np.clip(suns + SOLAR_DISC_DIAMETER_DEG / 2 * np.array([[-1], [1]]), LOWEST_SUN_DEG, 90)
+    lower, upper = (np.asarray(sky.apparent_elevation_deg(limb), float) for limb in limbs)
+    height = np.divide(upper - lower, limbs[1] - limbs[0], out=np.ones_like(suns), where=limbs[1] > limbs[0])
+    true, seen = np.cos(np.radians(suns)), np.cos(np.radians(apparent_deg))
+    width = np.divide(seen, true, out=np.ones_like(suns), where=true > _ZENITH_COSINE)
+    return SOLAR_DISC_SOLID_ANGLE_SR * height * width
 
 
 def _below(sky: Sky, suns: np.ndarray, irradiance: np.ndarray, matrix: np.ndarray) -> np.ndarray:

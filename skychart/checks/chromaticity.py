@@ -40,9 +40,48 @@ _WHITES = (  # key, chromaticity, published temperature, relative tolerance, its
 )  # fmt: skip
 
 
-def checks(clear: StandardSky) -> tuple[Check, ...]:
-    """Limits of scattered light, daylight on the horizontal, and colour temperatures."""
-    return (*_scattered_limits(), *_daylight(clear), *_temperatures())
+def checks() -> tuple[Check, ...]:
+    """Limits of scattered light, and colour temperatures."""
+    return (*_scattered_limits(), *_temperatures())
+
+
+def clear_checks(clear: StandardSky) -> tuple[Check, ...]:
+    """Daylight on the horizontal under air called clear."""
+    XYZ = clear.horizontal_XYZ(np.array(_SUNS_DEG, dtype=float))
+    cct = dict(zip(_SUNS_DEG, cct_duv(XYZ)[0], strict=True))
+    locus = [
+        Check(
+            key=f"daylight-locus-{sun}",
+            topic=TOPIC,
+            quantity="Distance in u′v′ of daylight on the horizontal from the daylight locus",
+            conditions=f"sun {sun}° up, sun and sky in air called clear",
+            source="Judd, MacAdam & Wyszecki 1964, J. Opt. Soc. Am. 54, 1031, daylight locus (abstract read)",
+            published=0.0,
+            computed=float(distance),
+            tolerance=_LOCUS_TOLERANCE,
+            tolerance_reason="the source states no spread; 0.006 was set before it was measured",
+            unit="1",
+            relative=False,
+        )
+        for sun, distance in zip(_SUNS_DEG, locus_distance(XYZ), strict=True)
+    ]
+    temperature = [
+        Check(
+            key=f"daylight-temperature-{sun}",
+            topic=TOPIC,
+            quantity="Correlated colour temperature of daylight on the horizontal",
+            conditions=f"sun {sun}° up, sun and sky in air called clear",
+            source="common knowledge: 5500 to 6500 K by day (from memory, no source)",
+            published=6000.0,
+            computed=float(cct[sun]),
+            tolerance=500.0,
+            tolerance_reason="the stated range",
+            unit="K",
+            relative=False,
+        )
+        for sun in _TEMPERATURE_SUNS_DEG
+    ]
+    return (*locus, *temperature)
 
 
 def daylight_locus_y(x: ArrayLike) -> NDArray[np.float64]:
@@ -94,44 +133,6 @@ def locus_distance(XYZ: ArrayLike) -> NDArray[np.float64]:
     locus = uv_prime(xyz_of_xy(np.stack([_LOCUS_X, daylight_locus_y(_LOCUS_X)], axis=-1)))
     apart = uv_prime(np.asarray(XYZ, dtype=float))[..., None, :] - locus
     return np.asarray(np.hypot(apart[..., 0], apart[..., 1]).min(axis=-1))
-
-
-def _daylight(clear: StandardSky) -> list[Check]:
-    XYZ = clear.horizontal_XYZ(np.array(_SUNS_DEG, dtype=float))
-    cct = dict(zip(_SUNS_DEG, cct_duv(XYZ)[0], strict=True))
-    locus = [
-        Check(
-            key=f"daylight-locus-{sun}",
-            topic=TOPIC,
-            quantity="Distance in u′v′ of daylight on the horizontal from the daylight locus",
-            conditions=f"sun {sun}° up, sun and sky in air called clear",
-            source="Judd, MacAdam & Wyszecki 1964, J. Opt. Soc. Am. 54, 1031, daylight locus (abstract read)",
-            published=0.0,
-            computed=float(distance),
-            tolerance=_LOCUS_TOLERANCE,
-            tolerance_reason="the source states no spread; 0.006 was set before it was measured",
-            unit="1",
-            relative=False,
-        )
-        for sun, distance in zip(_SUNS_DEG, locus_distance(XYZ), strict=True)
-    ]
-    temperature = [
-        Check(
-            key=f"daylight-temperature-{sun}",
-            topic=TOPIC,
-            quantity="Correlated colour temperature of daylight on the horizontal",
-            conditions=f"sun {sun}° up, sun and sky in air called clear",
-            source="common knowledge: 5500 to 6500 K by day (from memory, no source)",
-            published=6000.0,
-            computed=float(cct[sun]),
-            tolerance=500.0,
-            tolerance_reason="the stated range",
-            unit="K",
-            relative=False,
-        )
-        for sun in _TEMPERATURE_SUNS_DEG
-    ]
-    return [*locus, *temperature]
 
 
 def _temperatures() -> list[Check]:

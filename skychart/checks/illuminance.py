@@ -3,7 +3,7 @@
 Sources: Janiczek & DeYoung 1987, U.S. Naval Observatory Circular No. 171, a fit to measurements under clear skies, and
 the clear-sky formula of the IES 1984. The skies that were measured carry haze: the air called clear is compared, and
 average air where two formulas bound it. Air without haze is brighter at low sun and in twilight, for haze takes from
-the beam and returns part of it to space; its illuminance is told beside.
+the beam and returns part of it to space; it is compared beside.
 """
 
 import functools
@@ -55,16 +55,27 @@ def ies1984_illuminance(solar_elevation_deg: ArrayLike) -> Array:
     return 1000 * (direct * np.exp(-extinction / height) * height + sky + slope * height**exponent)
 
 
-def checks(clear: StandardSky, molecular: StandardSky, haze: HazeCases) -> tuple[Check, ...]:
-    """Decimal logarithms of the illuminance: under clear and average air, and in twilight."""
+def clear_checks(clear: StandardSky) -> tuple[Check, ...]:
+    """Decimal logarithms of the illuminance under air called clear: between two formulas by day, and in twilight."""
+    suns = np.array(_TWO_FORMULAS_DEG, dtype=float)
+    return (
+        *_between_formulas("clear", "air called clear", clear.horizontal_XYZ(suns)[:, 1]),
+        *_circular("clear", "in air called clear", clear),
+    )
+
+
+def molecular_checks(molecular: StandardSky) -> tuple[Check, ...]:
+    """The same without haze, which bounds the measured air on the other side."""
+    return tuple(_circular("molecular", "in air without haze", molecular))
+
+
+def average_checks(haze: HazeCases) -> tuple[Check, ...]:
+    """The same under average air, between the two formulas."""
     suns = np.array(_TWO_FORMULAS_DEG, dtype=float)
     light = carried(haze.average_ground_irradiance(suns), AVERAGE_NM, _NODES_NM)
     average = (light @ tristimulus_matrix(_NODES_NM))[:, 1]
-    return (
-        *_between_formulas("clear", "air called clear", clear.horizontal_XYZ(suns)[:, 1]),
-        *_between_formulas("average", "air called average, from three wavelengths, no lines or refraction", average),
-        *_circular(clear, molecular),
-    )
+    air = "air called average, from three wavelengths, no lines or refraction"
+    return tuple(_between_formulas("average", air, average))
 
 
 def _between_formulas(name: str, air: str, computed: Array) -> list[Check]:
@@ -94,26 +105,17 @@ def _between_formulas(name: str, air: str, computed: Array) -> list[Check]:
     return found
 
 
-def _circular(clear: StandardSky, molecular: StandardSky) -> list[Check]:
+def _circular(name: str, air: str, sky: StandardSky) -> list[Check]:
     suns = np.array(_CIRCULAR_DEG, dtype=float)
     entry = functools.partial(
         Check, topic=TOPIC, quantity="Illuminance by sun and sky, log₁₀ of lux", source=_USNO, unit="log₁₀ lx",
         relative=False,
     )  # fmt: skip
-    rows = zip(
-        _CIRCULAR_DEG,
-        usno1987_illuminance(suns),
-        clear.horizontal_XYZ(suns)[:, 1],
-        molecular.horizontal_XYZ(suns)[:, 1],
-        strict=True,
-    )
+    rows = zip(_CIRCULAR_DEG, usno1987_illuminance(suns), sky.horizontal_XYZ(suns)[:, 1], strict=True)
     return [
         entry(
-            key=f"illuminance-usno1987-sun{sun:+d}",
-            conditions=(
-                f"sun at {sun}°; published {published:.3g} lx, computed {ours:.3g} lx in air called clear "
-                f"({without:.3g} lx without haze)"
-            ),
+            key=f"illuminance-usno1987-{name}-sun{sun:+d}",
+            conditions=f"sun at {sun}°; published {published:.3g} lx, computed {ours:.3g} lx {air}",
             published=math.log10(published),
             computed=math.log10(ours),
             tolerance=math.log10(1.3 if sun >= _HIGH_SUN_DEG else 1.5),
@@ -123,5 +125,5 @@ def _circular(clear: StandardSky, molecular: StandardSky) -> list[Check]:
                 else "a factor 1.5: haze of the skies that were measured is not known, and dims a low sun most"
             ),
         )
-        for sun, published, ours, without in rows
+        for sun, published, ours in rows
     ]

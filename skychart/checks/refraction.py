@@ -70,9 +70,37 @@ def bennett1982_refraction_arcmin(apparent_elevation_deg: ArrayLike) -> Array:
     return 1 / np.tan(np.radians(elevation + 7.31 / (elevation + 4.4)))
 
 
-def checks(sky: StandardSky) -> tuple[Check, ...]:
-    """Air mass, refraction, and where the sun's light ends."""
-    return (*_air_mass(), *_refraction(), _quadrature(), *_sunset(sky))
+def checks() -> tuple[Check, ...]:
+    """Air mass and refraction."""
+    return (*_air_mass(), *_refraction(), _quadrature())
+
+
+def molecular_checks(sky: StandardSky) -> tuple[Check, ...]:
+    """Where the sun's light ends."""
+    entry = functools.partial(Check, topic=TOPIC, unit="′", relative=False)
+    last = set_elevation_deg(sky) * 60
+    return (
+        entry(
+            key="sunset-centre",
+            quantity="Geometric elevation of the sun’s centre when it sets",
+            conditions="the last direct light in the solved molecular sky, at sea level",
+            source=f"{_ALMANAC}; refraction brought to 15 °C and 1013.25 hPa",
+            published=-_ALMANAC_REFRACTION_ARCMIN * _TO_STANDARD_AIR,
+            computed=last,
+            tolerance=BENNETT_LIMIT_ARCMIN,
+            tolerance_reason="1′, as for the refraction at the horizon",
+        ),
+        entry(
+            key="sunset-upper-limb",
+            quantity="Geometric elevation of the sun’s centre when its upper limb sets",
+            conditions="the last direct light in the solved molecular sky, less the semidiameter used for the disc",
+            source=f"{_ALMANAC}, −50′ together; refraction brought to 15 °C and 1013.25 hPa",
+            published=-_ALMANAC_REFRACTION_ARCMIN * _TO_STANDARD_AIR - _SEMIDIAMETER_ARCMIN,
+            computed=last - 30 * SOLAR_DISC_DIAMETER_DEG,
+            tolerance=BENNETT_LIMIT_ARCMIN,
+            tolerance_reason="1′, as for the refraction at the horizon",
+        ),
+    )
 
 
 @functools.cache
@@ -209,30 +237,3 @@ def _quadrature() -> Check:
         unit="′",
         relative=True,
     )
-
-
-def _sunset(sky: StandardSky) -> list[Check]:
-    entry = functools.partial(Check, topic=TOPIC, unit="′", relative=False)
-    last = set_elevation_deg(sky) * 60
-    return [
-        entry(
-            key="sunset-centre",
-            quantity="Geometric elevation of the sun’s centre when it sets",
-            conditions="the last direct light in the solved molecular sky, at sea level",
-            source=f"{_ALMANAC}; refraction brought to 15 °C and 1013.25 hPa",
-            published=-_ALMANAC_REFRACTION_ARCMIN * _TO_STANDARD_AIR,
-            computed=last,
-            tolerance=BENNETT_LIMIT_ARCMIN,
-            tolerance_reason="1′, as for the refraction at the horizon",
-        ),
-        entry(
-            key="sunset-upper-limb",
-            quantity="Geometric elevation of the sun’s centre when its upper limb sets",
-            conditions="the last direct light in the solved molecular sky, less the semidiameter used for the disc",
-            source=f"{_ALMANAC}, −50′ together; refraction brought to 15 °C and 1013.25 hPa",
-            published=-_ALMANAC_REFRACTION_ARCMIN * _TO_STANDARD_AIR - _SEMIDIAMETER_ARCMIN,
-            computed=last - 30 * SOLAR_DISC_DIAMETER_DEG,
-            tolerance=BENNETT_LIMIT_ARCMIN,
-            tolerance_reason="1′, as for the refraction at the horizon",
-        ),
-    ]

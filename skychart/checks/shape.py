@@ -30,7 +30,7 @@ def cie_clear_sky(solar_elevation_deg: float, arc_deg: ArrayLike) -> NDArray[np.
     return relative / (_indicatrix(np.pi / 2 - sun) * _gradation(np.array(1.0)))
 
 
-def checks(sky: StandardSky) -> tuple[Check, ...]:
+def clear_checks(sky: StandardSky) -> tuple[Check, ...]:
     """Where the darkest point of the principal plane lies, and how dark it is, at two suns."""
     suns = np.array(_SUNS_DEG, dtype=float)
     view = np.minimum(_ARC_DEG, 180 - _ARC_DEG)

@@ -1,23 +1,20 @@
-"""Light of atmospheres of the default settings, for comparisons with measured skies."""
+"""Light of atmospheres known by name, for comparisons with measured skies."""
 
 import dataclasses
-from collections.abc import Iterable
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from skychart.colour.integrate import tristimulus_matrix
-from skychart.config import NAMED_AIRS, AirSettings
-from skychart.sky.spectral import SpectralSky, solve_spectral
+from skychart.sky.spectral import SpectralSky
 
 
 class StandardSky:
-    """The sky of an atmosphere known by name as CIE 1931 tristimulus values; molecular or clear are those compared."""
+    """A solved sky as CIE 1931 tristimulus values."""
 
-    def __init__(self, solved: Iterable[SpectralSky] = (), wanted: AirSettings = NAMED_AIRS["molecular"]) -> None:
-        """Take the sky of the ``wanted`` settings from those already ``solved``, or solve it."""
-        self._sky = next((sky for sky in solved if sky.settings == wanted), None) or solve_spectral(wanted)
-        self._matrix = tristimulus_matrix(self._sky.wavelength_nm)
+    def __init__(self, sky: SpectralSky) -> None:
+        self._sky = sky
+        self._matrix = tristimulus_matrix(sky.wavelength_nm)
 
     def sun_shines(self, solar_elevation_deg: float) -> bool:
         """Whether light of the sun's centre reaches the ground."""

@@ -37,18 +37,22 @@ def koomen1952_zenith_luminance(site: str) -> tuple[NDArray[np.float64], NDArray
     return columns["solar_elevation_deg"], columns[f"{site}_cd_ft2"] * _CD_M2_PER_CD_FT2
 
 
-def checks(clear: StandardSky, molecular: StandardSky) -> tuple[Check, ...]:
+def clear_checks(clear: StandardSky) -> tuple[Check, ...]:
     """Luminance at two sites, and the rate at which the zenith darkens."""
     sea = _luminances(clear, {*_COMPARED_DEG, *_SEA_RATE_DEG}, 0.0)
     mountain = _luminances(clear, set(_COMPARED_DEG), _KOOMEN_MOUNTAIN_KM)
-    paranal = _luminances(molecular, set(_MOUNTAIN_RATE_DEG), _PARANAL_KM)
-    dimmest = {sun: luminance + _NIGHT_SKY_CD_M2 for sun, luminance in paranal.items()}
     return (
         *_koomen("sacramento_peak", mountain),
         *_koomen("maryland", sea),
         _koomen_rate(_darkening(sea, *_SEA_RATE_DEG)),
-        _patat_rate(_darkening(dimmest, *_MOUNTAIN_RATE_DEG)),
     )
+
+
+def molecular_checks(molecular: StandardSky) -> tuple[Check, ...]:
+    """The rate at which the zenith of a clean mountain darkens."""
+    paranal = _luminances(molecular, set(_MOUNTAIN_RATE_DEG), _PARANAL_KM)
+    dimmest = {sun: luminance + _NIGHT_SKY_CD_M2 for sun, luminance in paranal.items()}
+    return (_patat_rate(_darkening(dimmest, *_MOUNTAIN_RATE_DEG)),)
 
 
 def _luminances(sky: StandardSky, suns_deg: set[float], altitude_km: float) -> dict[float, float]:

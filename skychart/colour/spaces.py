@@ -6,6 +6,7 @@ Adaptation to the ACES white: Lam K. M. 1985, Metamerism and Colour Constancy, U
 """
 
 import functools
+from typing import Any
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -27,6 +28,12 @@ def rgb(XYZ: ArrayLike, space: str) -> np.ndarray:
     component means a colour outside the gamut. Raises InputError for an unknown space.
     """
     return np.asarray(XYZ, dtype=float) @ _matrix_from_xyz(space).T
+
+
+def chromaticities(space: str) -> np.ndarray:
+    """CIE 1931 xy of red, green, blue and white of `space`, shape (4, 2). Raises InputError for an unknown space."""
+    standard = _standard(space)
+    return np.vstack([standard.primaries, standard.whitepoint])
 
 
 def in_gamut(linear: ArrayLike) -> np.ndarray:
@@ -61,15 +68,19 @@ def srgb_hex(XYZ: ArrayLike, display_white_cd_m2: ArrayLike) -> np.ndarray:
 
 @functools.cache
 def _matrix_from_xyz(space: str) -> np.ndarray:
-    if space not in _LIBRARY_NAMES:
-        raise InputError(f"unknown space {space!r}; known: {', '.join(SPACES)}")
-    colour = colour_science()
-    standard = colour.RGB_COLOURSPACES[_LIBRARY_NAMES[space]]
+    colour, standard = colour_science(), _standard(space)
     to_xyz = colour.normalised_primary_matrix(standard.primaries, standard.whitepoint)
     adaptation = colour.adaptation.matrix_chromatic_adaptation_VonKries(
         xyz_of_xy(D65_XY), xyz_of_xy(standard.whitepoint), transform="Bradford"
     )
     return np.linalg.inv(to_xyz) @ adaptation
+
+
+def _standard(space: str) -> Any:
+    """The space as the object that colour-science works with."""
+    if space not in _LIBRARY_NAMES:
+        raise InputError(f"unknown space {space!r}; known: {', '.join(SPACES)}")
+    return colour_science().RGB_COLOURSPACES[_LIBRARY_NAMES[space]]
 
 
 def _hex_of_bytes(values: np.ndarray) -> np.ndarray:

@@ -32,9 +32,13 @@ def table_csv(table: NumberTable, remarks: tuple[str, ...]) -> bytes:
 
 
 def readings_json(
-    about: dict[str, Any], readings: Reading, ground: Ground | None = None, spectra: Spectra | None = None
+    about: dict[str, Any],
+    readings: Reading,
+    ground: Ground | None = None,
+    spectra: Spectra | None = None,
+    light: dict[str, Any] | None = None,
 ) -> bytes:
-    """`about` with the readings, and where given the light on level ground and the spectra."""
+    """`about` with the readings, and where given the light on level ground, the spectra and the light on planes."""
     content: dict[str, Any] = {"about": about, "readings": plain(asdict(readings))}
     if ground is not None:
         content["level_ground"] = plain(asdict(ground))
@@ -46,12 +50,14 @@ def readings_json(
                 for curve in spectra.curves
             ],
         }
+    if light is not None:
+        content["light"] = light
     text = json.dumps(content, ensure_ascii=False, allow_nan=False, separators=(",", ":"), indent=None)
     return (text + "\n").encode("utf-8")
 
 
 def plain(value: Any) -> Any:
-    """Arrays as lists, numbers to four significant digits, nan as None."""
+    """Arrays as lists, numbers to four significant digits and whole ones without a point, nan as None."""
     if isinstance(value, dict):
         return {key: plain(entry) for key, entry in value.items()}
     if isinstance(value, np.ndarray):
@@ -59,5 +65,6 @@ def plain(value: Any) -> Any:
     if isinstance(value, list):
         return [plain(entry) for entry in value]
     if isinstance(value, (float, np.floating)):
-        return rounded(float(value), _DIGITS)
+        number = rounded(float(value), _DIGITS)
+        return int(number) if number is not None and number.is_integer() else number
     return value

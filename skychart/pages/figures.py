@@ -6,6 +6,7 @@ from typing import Any
 
 from skychart.charts.checks import Methods
 from skychart.charts.direction import DirectionSheet
+from skychart.charts.light import LightSheet
 from skychart.charts.sheet import Sheet
 from skychart.plots.chromaticity import SIZE_IN as CHROMATICITY_IN
 from skychart.plots.chromaticity import chromaticity_svg
@@ -13,6 +14,7 @@ from skychart.plots.course import SIZE_IN as COURSE_IN
 from skychart.plots.course import course_svg
 from skychart.plots.light import SIZE_IN as LIGHT_IN
 from skychart.plots.light import light_svg
+from skychart.plots.light_sheet import COLOUR_IN, ILLUMINANCE_IN, RATIO_IN, colour_svg, illuminance_svg, ratio_svg
 from skychart.plots.polarisation import SIZE_IN as POLARISATION_IN
 from skychart.plots.polarisation import polarisation_svg
 from skychart.plots.principal_plane import SIZE_IN as PLANE_IN
@@ -61,7 +63,7 @@ _CHROMATICITY = _Plan(
     chromaticity_svg,
     CHROMATICITY_IN,
     "Chromaticity",
-    "CIE 1976 u′v′ with gamut triangles and the daylight locus from 4000 K to 25\u2009000\u00a0K; "
+    "CIE 1976 u′v′ with gamut triangles and the daylight locus from 4000 K to 25\u202f000\u00a0K; "
     "dots are the blocks, in their "
     "own colours. The frame in the small diagram shows the part enlarged.",
     "u prime v prime diagram with the blocks of this page, gamut triangles and the daylight locus",
@@ -97,7 +99,7 @@ _TRACK = _Plan(
     chromaticity_svg,
     CHROMATICITY_IN,
     "Chromaticity",
-    "CIE 1976 u′v′ with gamut triangles and the daylight locus from 4000 K to 25\u2009000\u00a0K; "
+    "CIE 1976 u′v′ with gamut triangles and the daylight locus from 4000 K to 25\u202f000\u00a0K; "
     "a dot for each sun, joined in "
     "their order.",
     "u prime v prime diagram with the track of this direction through the day",
@@ -123,6 +125,33 @@ _TEMPERATURE = _Plan(
 )
 
 
+_ILLUMINANCE = _Plan(
+    "illuminance",
+    illuminance_svg,
+    ILLUMINANCE_IN,
+    "Illuminance",
+    "Of the six planes over the geometric elevation of the sun: above, sun and sky on a scale of powers; below, what "
+    "is left in the sun’s shadow, in thousands of lux.",
+    "Illuminance of six planes over the elevation of the sun, with the sun and in its shadow",
+)
+_LIGHT_COLOUR = _Plan(
+    "colour",
+    colour_svg,
+    COLOUR_IN,
+    "Colour",
+    "Colour temperature and CIE 1976 u′v′ of the sun and of the light on some planes.",
+    "Correlated colour temperature, u prime and v prime of the sun and of light on planes by the elevation of the sun",
+)
+_RATIO = _Plan(
+    "ratio",
+    ratio_svg,
+    RATIO_IN,
+    "Ratio and exposure",
+    "Above, how much more a lit plane gets than the same plane in the sun’s shadow; below, exposure of level cards.",
+    "Lit to shadow in stops, and exposure values, over the elevation of the sun",
+)
+
+
 def sheet_figures(chart: Sheet) -> tuple[tuple[Figure, ...], dict[str, bytes]]:
     """Figures of an elevation sheet, and their files by path."""
     data = (
@@ -138,6 +167,11 @@ def direction_figures(chart: DirectionSheet) -> tuple[tuple[Figure, ...], dict[s
     """Figures of a direction sheet, and their files by path."""
     data = ((_COURSE, chart.course), (_TRACK, chart.chromaticities))
     return _drawn(f"{chart.atmosphere}/{chart.direction.stem}", data)
+
+
+def light_figures(chart: LightSheet) -> tuple[tuple[Figure, ...], dict[str, bytes]]:
+    """Figures of a light sheet, and their files by path."""
+    return _drawn(f"{chart.atmosphere}/light", ((_ILLUMINANCE, chart), (_LIGHT_COLOUR, chart), (_RATIO, chart)))
 
 
 def methods_figures(chart: Methods) -> tuple[tuple[Figure, ...], dict[str, bytes]]:

@@ -12,12 +12,16 @@ from skychart.charts.checks import Methods
 from skychart.charts.comparison import Comparison
 from skychart.charts.direction import DirectionSheet
 from skychart.charts.ground import air_summary
+from skychart.charts.light import SunLight
+from skychart.charts.light_box import light_box
 from skychart.charts.overview import DayBand, Overview
 from skychart.charts.sheet import Sheet
+from skychart.export.light import sheet_light
 from skychart.export.png import srgb_png
 from skychart.export.tables import readings_json, table_csv
 from skychart.pages.environment import environment, render
 from skychart.pages.figures import direction_figures, methods_figures, sheet_figures
+from skychart.pages.sheet_archive import sheet_archive
 from skychart.pages.site import COMPARE_FOLDER, METHODS_PATH, SITE_TITLE, Atlas, Link, neighbours, sun_in_words
 from skychart.plots.picture import DOME_PIXELS, OVERLAP_PIXELS, RIM_PIXELS, day_band, half_dome, half_sky
 
@@ -47,8 +51,8 @@ class BandImage:
     height: int
 
 
-def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
-    """An elevation sheet."""
+def sheet_files(atlas: Atlas, chart: Sheet, light: SunLight) -> dict[str, bytes]:
+    """An elevation sheet, with the light of its sun."""
     stem = f"{chart.atmosphere}/{chart.stem}"
     ruler = atlas.ruler(chart.atmosphere, chart.solar_elevation_deg)
     before, after = neighbours(ruler)
@@ -65,7 +69,9 @@ def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
         "solar_elevation_deg": chart.solar_elevation_deg,
         "apparent_elevation_deg": round(chart.apparent_elevation_deg, 3),
     }
-    exports, downloads = table_files(stem, title, about, chart.table, (chart.readings, chart.ground, chart.spectra))
+    numbers = (chart.readings, chart.ground, chart.spectra, sheet_light(light))
+    exports, downloads = table_files(stem, title, about, chart.table, numbers)
+    archive = sheet_archive(atlas, chart)
     context = {
         "page": page,
         "chart": chart,
@@ -74,10 +80,12 @@ def sheet_files(atlas: Atlas, chart: Sheet) -> dict[str, bytes]:
         "switch": atlas.sun_switch(chart.atmosphere, chart.solar_elevation_deg),
         "ruler": ruler,
         "dome": _dome(pictures, chart.apparent_elevation_deg),
+        "box": light_box(light),
         "figures": figures,
-        "downloads": downloads,
+        "downloads": (*downloads, Link("ZIP for other programs", archive.path)),
+        "archive": archive,
     }
-    return {page.path: render(templates(), "sheet.html", context), **files, **exports}
+    return {page.path: render(templates(), "sheet.html", context), **files, **exports, archive.path: archive.data}
 
 
 def direction_files(atlas: Atlas, chart: DirectionSheet) -> dict[str, bytes]:

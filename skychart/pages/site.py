@@ -84,7 +84,9 @@ class Atlas:
             Link("The day", self.start_path(atmosphere), kind == "start"),
             Link("By sun elevation", f"{atmosphere}/{sheet_stem(middle)}.html", kind == "sun"),
             Link("By direction", f"{atmosphere}/{DIRECTIONS[0].stem}.html", kind == "view"),
+            Link("Light", f"{atmosphere}/light.html", kind == "light"),
             *([Link("Side by side", self.compare_path(middle), kind == "compare")] if self.compares else []),
+            Link("Display", f"{atmosphere}/display.html", kind == "display"),
             Link("Reader", READER_PATH, kind == "reader"),
             Link("Methods and checks", METHODS_PATH, kind == "methods"),
         )

@@ -48,6 +48,7 @@ _NO_METADATA = {"Date": None, "Creator": None, "Type": None, "Format": None}
 _ON_EDGE = 1e-9
 _KEY_LINE_IN = 0.32
 _KEY_STEP_IN = 0.185
+_MARKS = re.compile(r'<use [^>]* class="(s\d+)"/>\n(?:<use [^>]* class="\1"/>\n){2,}')  # alike, one after the other
 _SUPERSCRIPT = str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹")
 
 
@@ -224,7 +225,12 @@ def _lean(svg: str) -> str:
     svg = re.sub(r' style="fill: (#\w+); ([^"]*)"', r' fill="\1" style="\2"', svg)
     svg = re.sub(r'style="[^"]*"', lambda style: style.group().replace(": ", ":").replace("; ", ";"), svg)
     svg = re.sub(r"\s*\n\s*", "\n", _classed(_renamed(svg)))
-    return "\n".join(_regrouped(svg.replace("xlink:href=", "href=").split("\n")))
+    svg = "\n".join(_regrouped(svg.replace("xlink:href=", "href=").split("\n")))
+    return _MARKS.sub(lambda run: f'<g class="{run[1]}">\n{run[0].replace(_class_of(run[1]), "")}</g>\n', svg)
+
+
+def _class_of(name: str) -> str:
+    return f' class="{name}"'
 
 
 def _regrouped(lines: Sequence[str]) -> Iterator[str]:

@@ -6,7 +6,7 @@ from skychart.charts.dome import sky_at
 from skychart.charts.exposure import Exposure
 from skychart.charts.survey import SkyView
 
-DOME_PIXELS = 160
+DOME_PIXELS = 128
 RIM_PIXELS = 2
 OVERLAP_PIXELS = 1
 _SURROUND_BYTE = 0x77

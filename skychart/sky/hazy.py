@@ -7,8 +7,10 @@ wrong in flat air too, where the full solution F is known at the same place, sun
 Q and U are those of the molecules in G, in the same proportion; haze light counts as unpolarised.
 """
 
+import itertools
 from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass, replace
+from dataclasses import field as field_of
 
 import numpy as np
 from numpy.typing import NDArray
@@ -40,16 +42,16 @@ _FLAT_KM = np.concatenate(
     ]
 )
 _LOWEST_FLAT_SUN_DEG = 97
-_WHOLE = 1e-6  # degrees
-_VIEWS_AT_ONCE = 24  # for the sake of memory
-_LOWEST_VIEW = 0.01  # cosine of zenith angle: flat air has no horizon
+_WHOLE = 1e-6
+_VIEW_ELEVATION = np.arcsin(0.01) + (np.pi / 2 - np.arcsin(0.01)) * np.linspace(0, 1, 37) ** 1.6
+"""Directions at which flat air is looked at [rad]: closest near its horizon, which it does not reach."""
 
 
 @dataclass(frozen=True, eq=False)
 class Scattered:
     """Haze's source from the closure's light: spherical harmonics at the lower levels.
 
-    ``harmonics`` (level, sun every degree, moment, mode, wavelength), the phase function's moments in, over ``shape``.
+    ``harmonics`` (level, mode, moment, sun every degree, wavelength), the phase function's moments in, over ``shape``.
     """
 
     harmonics: NDArray[np.float32]
@@ -66,21 +68,40 @@ class Scattered:
             return self
         return Scattered(insert_between(self.harmonics, upper, part), self.shape.with_level(upper, part))
 
-    def along(self, cosine: Array, level: NDArray[np.intp], cos_chi: Array, cos_azimuth: Array) -> Array:
-        """Source [1/sr], (line, crossing, wavelength), at crossings with zenith cosines ``cosine`` and ``level``.
+    def along(self, cosine: Array, level: NDArray[np.intp]) -> "ScatteredAlong":
+        """What is sent back along a ray that crosses each ``level`` at a zenith cosine, both (crossing,)."""
+        modes, count, suns, wavelengths = self.harmonics.shape[1:]
+        basis = legendre(modes, count, cosine).astype(np.float32).transpose(1, 0, 2)[:, :, None]
+        sent = np.empty((len(level), modes, 1, suns * wavelengths), np.float32)
+        for crossing, here in enumerate(level):
+            np.matmul(basis[crossing], self.harmonics[here].reshape(modes, count, -1), out=sent[crossing])
+        by_sun = sent.reshape(len(level), modes, suns, wavelengths).transpose(0, 2, 1, 3)
+        return ScatteredAlong(np.ascontiguousarray(by_sun), level, self.shape)
+
+
+@dataclass(frozen=True, eq=False)
+class ScatteredAlong:
+    """The same along one ray: ``sent`` (crossing, sun every degree, mode, wavelength)."""
+
+    sent: NDArray[np.float32]
+    level: NDArray[np.intp]
+    shape: Shape
+
+    def at(self, cos_chi: Array, cos_azimuth: Array) -> Array:
+        """Source [1/sr], (line, crossing, wavelength).
 
         ``cos_chi``, ``cos_azimuth`` (line, crossing): of the sun's zenith angle and of the azimuth from it.
         """
-        count, modes = self.harmonics.shape[2:4]
-        basis = legendre(modes, count, cosine).astype(np.float32)
-        sent = np.einsum("mqc,qncmw->qnmw", basis, self.harmonics[level], optimize=True)
-        node, low, high = self.shape.weights(level, cos_chi)
-        crossing = np.arange(len(level))
-        cosines = np.cos(np.arccos(np.clip(cos_azimuth, -1, 1))[..., None] * np.arange(modes))
-        wanted = [(part[..., None] * cosines).astype(np.float32) for part in (low, high)]
-        return np.einsum("bqm,bqmw->bqw", wanted[0], sent[crossing, node]) + np.einsum(
-            "bqm,bqmw->bqw", wanted[1], sent[crossing, node + 1]
+        node, low, high = self.shape.weights(self.level, cos_chi)
+        crossings, suns, *rest = self.sent.shape
+        waves = np.cos(np.arccos(cos_azimuth)[..., None] * np.arange(rest[0]))
+        flat = self.sent.reshape(crossings * suns, *rest)
+        row = np.arange(crossings) * suns + node
+        below, above = (
+            ((part[..., None] * waves).astype(np.float32)[..., None, :] @ flat[place])[..., 0, :]
+            for part, place in ((low, row), (high, row + 1))
         )
+        return below + above
 
 
 @dataclass(frozen=True, eq=False)
@@ -94,6 +115,8 @@ class HazyLight:
     flat_altitude_km: Array
     full: FlatField
     closed: FlatField
+    peak_beyond: Haze
+    looks: dict[tuple[int, int], tuple[FlatLight, FlatLight]] = field_of(default_factory=dict, repr=False)
 
     def multiple(self, station: Station, lines: Lines) -> Array:
         """I, Q, U of light scattered more than once seen from ``station``, (line, 3, wavelength) [1/sr]."""
@@ -103,43 +126,49 @@ class HazyLight:
     def one_scattering(self, station: Station, lines: Lines) -> Array:
         """G on the sphere: I, Q, U (line, 3, wavelength)."""
         molecules = self.scatterers._replace(forward=None)
-        light = station.beyond().single(
-            lines, molecules, through_peak(_haze(self.air), 2, _haze(self.air).peak).phase_at
-        )
+        light = station.beyond().single(lines, molecules, self.peak_beyond.phase_at)
         return light + station.multiple(self.field, lines, molecules, self.air.ground_albedo, self.scattered)
 
     def correction(self, lines: Lines, altitude_km: float = 0.0) -> Array:
-        """F / G of flat air for the same sun and direction at the boundary nearest the altitude, (line, wavelength)."""
+        """F / G of flat air for the same sun and direction at the boundary nearest the altitude, (line, wavelength).
+
+        Linear between whole degrees of the sun, and between the directions of `_VIEW_ELEVATION`.
+        """
         boundary = int(np.argmin(np.abs(self.flat_altitude_km - altitude_km)))
-        down = np.where(lines.view_cosine < 0, -1.0, 1.0)
-        view, which = np.unique(down * np.maximum(np.abs(lines.view_cosine), _LOWEST_VIEW), return_inverse=True)
-        result = np.empty((len(which), len(self.air.wavelength_nm)))
-        for first in range(0, len(view), _VIEWS_AT_ONCE):
-            some = np.flatnonzero((which >= first) & (which < first + _VIEWS_AT_ONCE))
+        result = np.empty((len(lines.view_cosine), len(self.air.wavelength_nm)))
+        down = lines.view_cosine < 0
+        for side, some in ((1, ~down), (-1, down)):
+            if some.any():
+                result[some] = self._ratio(boundary, side, lines.some(some))
+        return result
+
+    def _ratio(self, boundary: int, side: int, lines: Lines) -> Array:
+        """The same of lines that all go up, side 1, or down, -1."""
+        if (boundary, side) not in self.looks:
             full, closed = (
-                one_scattering(light, view[first : first + _VIEWS_AT_ONCE], boundary)
-                for light in (self.full, self.closed)
+                one_scattering(light, side * np.sin(_VIEW_ELEVATION), boundary) for light in (self.full, self.closed)
             )
-            angles = lines.solar_zenith[some], which[some] - first, lines.relative_azimuth[some]
-            result[some] = _ratio(full, closed, *angles)
+            self.looks[boundary, side] = full, closed
+        light = self.looks[boundary, side]
+        elevation = np.arcsin(np.abs(lines.view_cosine))
+        place = np.interp(elevation, _VIEW_ELEVATION, np.arange(len(_VIEW_ELEVATION), dtype=float))
+        suns = _neighbours(np.minimum(np.degrees(lines.solar_zenith), _LOWEST_FLAT_SUN_DEG), _LOWEST_FLAT_SUN_DEG)
+        views = _neighbours(place, len(_VIEW_ELEVATION) - 1)
+        result = np.zeros((len(lines.view_cosine), len(self.air.wavelength_nm)))
+        for (sun, sun_part), (view, view_part) in itertools.product(suns, views):
+            part = sun_part * view_part
+            some = np.flatnonzero(part)
+            where = sun[some], view[some], lines.relative_azimuth[some]
+            true, approximate = (seen.stokes(*where)[:, 0] for seen in light)
+            result[some] += part[some, None] * true / approximate
         return result
 
 
-def _ratio(
-    full: FlatLight, closed: FlatLight, solar_zenith: Array, view: NDArray[np.intp], relative_azimuth: Array
-) -> Array:
-    """Full over closed light, (line, wavelength), linear between whole degrees of the sun."""
-
-    def at(sun: NDArray[np.intp]) -> Array:
-        seen = (light.stokes(sun, view, relative_azimuth)[:, 0] for light in (full, closed))
-        return np.divide(*seen)
-
-    place = np.minimum(np.degrees(solar_zenith), _LOWEST_FLAT_SUN_DEG)
-    sun = np.floor(np.round(place, 9)).astype(np.intp)
-    part = (place - sun)[:, None]
-    if np.abs(part).max(initial=0) < _WHOLE:
-        return at(sun)
-    return (1 - part) * at(sun) + part * at(np.minimum(sun + 1, _LOWEST_FLAT_SUN_DEG))
+def _neighbours(place: Array, last: int) -> tuple[tuple[NDArray[np.intp], Array], tuple[NDArray[np.intp], Array]]:
+    """Whole numbers about ``place`` (line,), at most ``last``, with their parts in it; a part within 1e-6 of 0 is 0."""
+    low = np.floor(place + _WHOLE).astype(np.intp)
+    part = np.where(place - low < _WHOLE, 0.0, place - low)
+    return (low, 1 - part), (np.minimum(low + 1, last), part)
 
 
 def solve_hazy(air: Atmosphere, grid: Grid, station: Station, typical: int) -> HazyLight:
@@ -165,6 +194,7 @@ def solve_hazy(air: Atmosphere, grid: Grid, station: Station, typical: int) -> H
         flat_altitude_km=shells.altitude_km[boundaries],
         full=solve_flat(flat),
         closed=solve_closure(flat),
+        peak_beyond=through_peak(haze, 2, haze.peak),
     )
 
 
@@ -237,18 +267,17 @@ def _scattered(
         light = light.reshape(len(node), len(cosine), len(cos_phi), -1)
         cosines = np.cos(np.arccos(cos_phi)[:, None] * np.arange(_MODES)) * phi_weight
         basis = legendre(_MODES, MOMENTS, cosine) * weight[:, None]
-        return np.einsum("mvc,pm,nvpw->ncmw", basis, cosines, light, optimize=True)
+        return np.einsum("mvc,pm,nvpw->mcnw", basis, cosines, light, optimize=True)
 
     with ThreadPoolExecutor(THREADS) as pool:
         found = np.stack(list(pool.map(harmonics, levels)))
-    share = (2 * np.arange(MOMENTS) + 1)[:, None] * moments / (4 * np.pi)
-    twice = np.where(np.arange(_MODES) > 0, 2.0, 1.0)
-    found *= share[:, None] * twice[:, None]
+    found *= ((2 * np.arange(MOMENTS) + 1)[:, None] * moments / (4 * np.pi))[:, None]
+    found[:, 1:] *= 2
     shape = Shape(field.tensor_shape.node_deg, field.tensor_shape.at_node[levels], field.tensor_shape.fine[levels])
     whole = solar_zenith_nodes_deg().astype(int)
-    found /= shape.at_node[:, whole][:, :, None, None, None]
+    found /= shape.at_node[:, whole][:, None, None, :, None]
     refine = spline_matrix(solar_zenith_nodes_deg(), shape.node_deg)
-    return Scattered(np.einsum("fn,lncmw->lfcmw", refine, found, optimize=True).astype(np.float32), shape)
+    return Scattered((refine @ found).astype(np.float32), shape)
 
 
 def _haze_above(shells: Shells) -> Array:

@@ -27,11 +27,13 @@ _UNLIT = 1e-25  # light per unit solar irradiance [1/sr]
 class LinePaths:
     """Amounts of water [cm] and oxygen [air masses] along paths from a station.
 
-    ``layers`` (layer, 2): vertical amounts of the station's layers.
+    ``boundaries`` of the station's layers stand for the places of scattering; ``layers`` (layer, 2): vertical amounts
+    of the station's layers.
     """
 
     station: Station
     table: LineTable
+    boundaries: NDArray[np.intp]
     layers: Array
     toward_sun: "SunAmounts"
 
@@ -45,25 +47,26 @@ class LinePaths:
         below = np.concatenate([np.zeros((1, 2)), np.cumsum(amounts, axis=0)])
         altitude = station.shells.altitude_km
         layers = np.diff(np.stack([np.interp(altitude, levels, column) for column in below.T], axis=1), axis=0)
-        return cls(station, LineTable.of(wavelength_nm), layers, SunAmounts.of(station, layers))
+        top = len(altitude) - 1
+        boundaries = np.union1d(np.arange(0, top, _EVERY), (station.start, top))
+        return cls(station, LineTable.of(wavelength_nm), boundaries, layers, SunAmounts.of(station, layers, boundaries))
 
     def beam(self, solar_zenith_angle: Array) -> NDArray[np.float32]:
         """What lines leave of the direct sun, (..., wavelength)."""
-        return self._left(self.toward_sun.at(np.array(self.station.start), np.cos(solar_zenith_angle)))
+        here = np.flatnonzero(self.boundaries == self.station.start)[0]
+        return self._left(self.toward_sun.at(here, np.cos(solar_zenith_angle)))
 
     def factor(self, lines: Lines) -> Array:
         """What lines leave of the light along each line of sight, (line, wavelength)."""
         station = self.station
-        count = len(station.shells.altitude_km)
-        boundaries = np.union1d(np.append(np.arange(0, count, _EVERY), count - 1), station.start)
         inward, outward = self._from_observer(np.unique(lines.view_cosine))
         result = np.ones((len(lines.view_cosine), len(self.table.wavelength_nm)))
-        for fan, ray, chosen in station.blocks(lines, boundaries):
+        for fan, ray, chosen in station.blocks(lines, self.boundaries):
             level, cos_there, _, _ = along(fan, ray, lines, chosen)
-            place = boundaries[level]
+            place = self.boundaries[level]
             branch = np.nonzero(fan.reached[ray])[0]
             near = np.where(branch[:, None] == OUTWARD, outward[ray, place], inward[ray, place])
-            left = self._left(near + self.toward_sun.at(place, cos_there))
+            left = self._left(near + self.toward_sun.at(level, cos_there))
             weight = fan.weight.sum(axis=0)[ray][fan.reached[ray]].astype(np.float32)
             light = station.table.at(place, cos_there) * weight
             total = light.sum(axis=1)
@@ -88,27 +91,27 @@ class LinePaths:
 
 @dataclass(frozen=True, eq=False)
 class SunAmounts:
-    """Amounts from each boundary to the sun, on its zenith angle every quarter degree: (boundary, angle, 2)."""
+    """Amounts from some boundaries to the sun, on its zenith angle every quarter degree: (boundary, angle, 2)."""
 
     values: Array
 
     @classmethod
-    def of(cls, station: Station, layers: Array) -> "SunAmounts":
-        """Of the station's shells with the given vertical amounts, (layer, 2)."""
+    def of(cls, station: Station, layers: Array, boundaries: NDArray[np.intp]) -> "SunAmounts":
+        """Of the station's shells with the given vertical amounts, (layer, 2), from ``boundaries`` of them."""
         rays = BentRays.of(replace(station.shells, extinction_depth=layers))
         angles = np.radians(np.arange(0, 180 + _STEP_DEG, _STEP_DEG))
-        values = np.empty((len(layers) + 1, len(angles), 2))
-        for start in range(len(values)):
+        values = np.empty((len(boundaries), len(angles), 2))
+        for row, start in enumerate(map(int, boundaries)):
             seen = np.minimum(angles, rays.lowest(start))
             seen = seen[: np.searchsorted(seen, rays.lowest(start)) + 1]
             geometric = seen + rays.refraction(start, np.cos(seen))
             depth = rays.depth(start, np.cos(seen))
             for amount in range(2):
-                values[start, :, amount] = np.interp(angles, geometric, depth[:, amount])
+                values[row, :, amount] = np.interp(angles, geometric, depth[:, amount])
         return cls(values)
 
     def at(self, boundary: NDArray[np.intp], cos_zenith: Array) -> Array:
-        """Amounts (..., 2) from ``boundary`` toward the sun; the two broadcast to (...)."""
+        """Amounts (..., 2) from ``boundary``, its number among those, toward the sun; the two broadcast to (...)."""
         place = np.degrees(np.arccos(np.clip(cos_zenith, -1, 1))) / _STEP_DEG
         low = np.minimum(place.astype(np.intp), self.values.shape[1] - 2)
         part = (place - low)[..., None]

@@ -33,11 +33,18 @@ class HazeSource(Protocol):
     def with_level(self, upper: int, part: float) -> "HazeSource":
         """The same with a level inserted before ``upper``, that ``part`` of the way to it."""
 
-    def along(self, cosine: Array, level: NDArray[np.intp], cos_chi: Array, cos_azimuth: Array) -> Array:
-        """Source [1/sr], (line, crossing, wavelength); ``cosine``, ``level`` (crossing,), the rest (line, crossing)."""
+    def along(self, cosine: Array, level: NDArray[np.intp]) -> "RaySource":
+        """What it sends back along a ray that crosses each ``level`` at a zenith cosine, both (crossing,)."""
 
 
-_LINES_AT_ONCE = 256
+class RaySource(Protocol):
+    """What haze sends back along one ray."""
+
+    def at(self, cos_chi: Array, cos_azimuth: Array) -> Array:
+        """Source [1/sr], (line, crossing, wavelength); of the sun's zenith angle and azimuth, (line, crossing)."""
+
+
+_LINES_AT_ONCE = 64
 
 
 @dataclass(frozen=True, eq=False)
@@ -47,6 +54,10 @@ class Lines:
     solar_zenith: Array
     view_cosine: Array
     relative_azimuth: Array
+
+    def some(self, chosen: NDArray[np.bool_]) -> "Lines":
+        """Those that are ``chosen``, (line,)."""
+        return Lines(self.solar_zenith[chosen], self.view_cosine[chosen], self.relative_azimuth[chosen])
 
 
 @dataclass(frozen=True, eq=False)
@@ -69,15 +80,14 @@ class Station:
         if air.haze is None:
             return cls(shells, SunTable.of(shells), start)
         depths = shells.extinction_depth, Shells.of(air, altitude_km, air.haze.peak).extinction_depth
-        both = SunTable.of(replace(shells, extinction_depth=np.concatenate(depths, axis=1)))
-        table, scaled = (replace(both, values=values) for values in np.split(both.values, 2, axis=2))
+        table, scaled = SunTable.of(replace(shells, extinction_depth=np.concatenate(depths, axis=1))).split()
         return cls(shells, table, start, scaled)
 
     def beyond(self) -> "Station":
         """The same place under the light that, beside the beam, counts as unscattered. Hazy air only."""
         if self.scaled is None:
             raise TypeError("a station in air without haze")
-        return replace(self, table=replace(self.table, values=self.scaled.values - self.table.values))
+        return replace(self, table=replace(self.scaled, less=self.table.spectra))
 
     def single(self, lines: Lines, scatterers: dipole.Scatterers, phase: Phase | None) -> NDArray[np.float64]:
         """I, Q, U of light scattered once, shape (line, 3, wavelength) [1/sr].
@@ -123,6 +133,7 @@ class Station:
             haze_source = haze_source and haze_source.with_level(*place)
         levels = np.searchsorted(self.shells.altitude_km, field.level_altitude_km)
         result = np.zeros((len(lines.view_cosine), 3, len(a)))
+        sent_by_haze = _SentByHaze(haze_source) if haze_source is not None else None
         for fan, ray, chosen in self.blocks(lines, levels):
             level, cos_there, cosine, sine = along(fan, ray, lines, chosen)
             entries = _interpolated(field.tensor_shape, field.tensor, level, cos_there)
@@ -141,8 +152,8 @@ class Station:
                 trace = _summed([plain], tensor * weights[1])[:, 0]
                 flux = _summed([toward], entries[..., dipole.ENTRIES :, :] * weights[1])[:, 0]
                 result[chosen, 0] += 2 * dipole.ISOTROPIC * (trace + forward * flux)
-            if haze_source is not None:
-                light = _sent_by_haze(haze_source, fan, ray, sight, lines.view_cosine[chosen[0]], cos_there, level)
+            if sent_by_haze is not None:
+                light = sent_by_haze.at(fan, ray, sight, float(lines.view_cosine[chosen[0]]), cos_there, level)
                 result[chosen, 0] += np.einsum("bqw,qw->bw", light, weights[1][: light.shape[1], 0])
             if fan.ground[ray].any():
                 lit = self._ground_light(field, fan, ray, lines, chosen)
@@ -194,23 +205,28 @@ def along(
     return np.nonzero(reached)[1], cos_there, cosine, sine
 
 
-def _sent_by_haze(
-    source: HazeSource,
-    fan: Crossings,
-    ray: int,
-    sight: dipole.Vector,
-    view_cosine: float,
-    cos_chi: Array,
-    level: NDArray[np.intp],
-) -> Array:
-    """Haze's source at the crossings of the lower levels, (line, crossing, wavelength); they come first along a ray."""
-    low = level < source.levels
-    reached = fan.reached[ray]
-    cos_turn, sin_turn = fan.cos_turn[ray][reached][low], fan.sin_turn[ray][reached][low]
-    cosine = np.clip(view_cosine * cos_turn + np.sqrt(1 - view_cosine**2) * sin_turn, -1, 1)
-    across = np.sqrt(np.maximum((1 - cosine**2) * (1 - cos_chi[:, low] ** 2), 1e-12))
-    azimuth = (sight.s[:, None] - cosine * cos_chi[:, low]) / across
-    return source.along(cosine, level[low], cos_chi[:, low], np.clip(azimuth, -1, 1))
+class _SentByHaze:
+    """Haze's source along ray after ray; what all blocks of lines along one ray need is made once."""
+
+    def __init__(self, source: HazeSource) -> None:
+        self._source = source
+        self._ray: tuple[int, Array, RaySource] | None = None
+
+    def at(
+        self, fan: Crossings, ray: int, sight: dipole.Vector, view_cosine: float, cos_chi: Array,
+        level: NDArray[np.intp],
+    ) -> Array:  # fmt: skip
+        """Source at the crossings of the lower levels, (line, crossing, wavelength); they come first along a ray."""
+        low = level < self._source.levels
+        if self._ray is None or self._ray[0] != ray:
+            reached = fan.reached[ray]
+            cos_turn, sin_turn = fan.cos_turn[ray][reached][low], fan.sin_turn[ray][reached][low]
+            cosine = np.clip(view_cosine * cos_turn + np.sqrt(1 - view_cosine**2) * sin_turn, -1, 1)
+            self._ray = ray, cosine, self._source.along(cosine, level[low])
+        _, cosine, sent = self._ray
+        across = np.sqrt(np.maximum((1 - cosine**2) * (1 - cos_chi[:, low] ** 2), 1e-12))
+        azimuth = (sight.s[:, None] - cosine * cos_chi[:, low]) / across
+        return sent.at(cos_chi[:, low], np.clip(azimuth, -1, 1))
 
 
 def _cosine_to_sun(lines: Lines, chosen: NDArray[np.intp], solar_zenith: Array) -> Array:

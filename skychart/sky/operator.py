@@ -24,7 +24,7 @@ Single = NDArray[np.float32]
 _LAST_ORDER = 1e-4
 _MOST_ORDERS = 200
 _REACHES_DEG = (4.0, 1.0)  # crossings that turn by less about the planet's centre see few source nodes
-_BLOCK = 4  # wavelengths whose matrices are held at once, some 60 MB each
+_BLOCK = 2  # wavelengths whose matrices are held at once, some 60 MB each
 
 
 @dataclass(frozen=True, eq=False)

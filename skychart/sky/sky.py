@@ -1,6 +1,5 @@
 """The solved sky of one atmosphere, for every sun and direction."""
 
-from collections.abc import Callable
 from dataclasses import dataclass, field, replace
 from typing import Protocol
 
@@ -12,6 +11,7 @@ from skychart.sky import beam, dipole
 from skychart.sky.atmosphere import Atmosphere
 from skychart.sky.grid import Grid
 from skychart.sky.hazy import HAZY_GRID, solve_hazy
+from skychart.sky.hemisphere import over_hemisphere, peak_missed
 from skychart.sky.molecular import MolecularLight, solve_field
 from skychart.sky.observer import Lines, Station
 from skychart.sky.shells import level_altitudes, subdivide
@@ -128,7 +128,11 @@ class Sky:
 
     def single_irradiance(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
         """Irradiance of a horizontal plane by light scattered once, (..., wavelength)."""
-        return over_hemisphere(self.single, solar_elevation_deg, altitude_km)
+        light = over_hemisphere(self.single, solar_elevation_deg, altitude_km)
+        if self.air.haze is not None:
+            seen = self.apparent_elevation_deg(solar_elevation_deg, altitude_km)
+            light += peak_missed(self.single, solar_elevation_deg, seen, altitude_km)
+        return light
 
     def multiple_irradiance(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
         """Irradiance of a horizontal plane by light scattered more than once or by the ground, (..., wavelength)."""
@@ -146,19 +150,6 @@ class Sky:
 
 def _molecules(air: Atmosphere) -> dipole.Scatterers:
     return dipole.Scatterers(*dipole.molecular_coefficients(air.depolarisation))
-
-
-def over_hemisphere(stokes: Callable[..., Array], solar_elevation_deg: ArrayLike, *place: float) -> Array:
-    """Sum of radiance times cosine over 16 zenith angles, clustered at the horizon, and 8 azimuths of the half turn.
-
-    ``stokes`` takes solar elevation, view elevation, azimuth [degrees] and ``place``; result (..., wavelength).
-    """
-    quadrature = Grid(zenith=16, azimuth=8)
-    cosine, weight = (part[: quadrature.zenith] for part in quadrature.cosines(0.0))
-    cos_phi, _, phi_weight = quadrature.azimuths()
-    sun = np.asarray(solar_elevation_deg, dtype=float)[..., None, None]
-    radiance = stokes(sun, np.degrees(np.arcsin(cosine))[:, None], np.degrees(np.arccos(cos_phi)), *place)[..., 0, :]
-    return np.einsum("...zpl,z->...l", radiance, cosine * weight * phi_weight)
 
 
 def within(name: str, value: ArrayLike, low: float, high: float, unit: str = "°") -> Array:

@@ -16,11 +16,12 @@ from skychart.config import AirSettings
 from skychart.sky import gases
 from skychart.sky.air import standard_air
 from skychart.sky.atmosphere import Atmosphere
+from skychart.sky.hemisphere import over_hemisphere, peak_missed
 from skychart.sky.interpolation import spline_matrix
 from skychart.sky.line_paths import LinePaths
 from skychart.sky.lines import band_shares
 from skychart.sky.observer import Station
-from skychart.sky.sky import Sky, lines_of_sight, over_hemisphere, solve
+from skychart.sky.sky import Sky, lines_of_sight, solve
 
 Array = NDArray[np.float64]
 
@@ -64,8 +65,7 @@ class SpectralSky:
         light = self.once.single(*angles, altitude) + np.concatenate(
             [radiance, radiance * (ratios @ _SPLINE.T)], axis=-2
         )
-        shape, lines = lines_of_sight(*angles)
-        return light * self.paths.factor(lines).reshape(*shape, 1, -1)
+        return light * self._lines_leave(*angles)
 
     def beam(self, solar_elevation_deg: ArrayLike) -> Array:
         """Direct light of the sun on a plane that faces it, over that outside the air, (..., 48)."""
@@ -75,8 +75,21 @@ class SpectralSky:
     def ground_irradiance(self, solar_elevation_deg: ArrayLike) -> tuple[Array, Array]:
         """Diffuse and direct irradiance of a horizontal plane per unit solar irradiance, each (..., 48)."""
         diffuse = over_hemisphere(self.stokes, solar_elevation_deg)
-        height = np.sin(np.radians(self.apparent_elevation_deg(solar_elevation_deg)))
+        seen = self.apparent_elevation_deg(solar_elevation_deg)
+        if self.once.air.haze is not None:
+            diffuse += peak_missed(self._single, solar_elevation_deg, seen)
+        height = np.sin(np.radians(seen))
         return diffuse, np.maximum(height, 0)[..., None] * self.beam(solar_elevation_deg)
+
+    def _single(self, sun_deg: ArrayLike, view_deg: ArrayLike, azimuth_deg: ArrayLike) -> Array:
+        """The part of ``stokes`` scattered once from the beam."""
+        angles = sun_deg, view_deg, azimuth_deg
+        return self.once.single(*angles, self.settings.altitude_km) * self._lines_leave(*angles)
+
+    def _lines_leave(self, sun_deg: ArrayLike, view_deg: ArrayLike, azimuth_deg: ArrayLike) -> Array:
+        """What lines leave of the light from each direction, (..., 1, 48)."""
+        shape, lines = lines_of_sight(sun_deg, view_deg, azimuth_deg)
+        return self.paths.factor(lines).reshape(*shape, 1, -1)
 
     def apparent_elevation_deg(self, solar_elevation_deg: ArrayLike) -> Array:
         """Elevation [degrees] of the refracted sun's centre, (...); below the horizon, where it would stand."""

@@ -89,5 +89,5 @@ def test_a_sun_that_is_not_refracted_would_be_noticed() -> None:
         def sun_shines(self, solar_elevation_deg: float) -> bool:
             return solar_elevation_deg >= 0
 
-    found = refraction._sunset(Straight())  # type: ignore[arg-type]
+    found = refraction.molecular_checks(Straight())  # type: ignore[arg-type]
     assert [check.passed for check in found] == [False, False]

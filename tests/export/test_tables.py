@@ -48,3 +48,8 @@ def test_json_has_the_keys_of_a_reading(sheet):
 def test_no_nan_reaches_json():
     """nan becomes null, at any depth."""
     assert plain({"a": np.array([np.nan, 1.23456])}) == {"a": [None, 1.235]}
+
+
+def test_whole_numbers_have_no_point():
+    """Thousands of `.0` would be bytes without meaning."""
+    assert json.dumps(plain(np.array([18612.3, -0.0, 2.5]))) == "[18610, 0, 2.5]"

@@ -1,10 +1,12 @@
 """A small site of a fake sky, built once."""
 
+import itertools
+
 import pytest
 
 from skychart.config import AirSettings, Settings
 from skychart.pages import build
-from tests.charts.fake_checks import fake_checks
+from tests.charts.fake_checks import fake_checks, no_checks
 from tests.charts.fake_sky import FakeSky
 
 SMALL = Settings(
@@ -19,7 +21,9 @@ def fake_physics():
     """Skies and checks that cost nothing, in the place of the real ones."""
     patch = pytest.MonkeyPatch()
     patch.setattr(build, "solve_spectral", FakeSky)
-    patch.setattr(build, "run_checks", fake_checks)
+    patch.setattr(build, "sky_checks", no_checks)
+    patch.setattr(build, "PIECES", (fake_checks,))
+    patch.setattr(build, "by_topic", lambda pieces: tuple(itertools.chain(*pieces)))
     yield
     patch.undo()
 

@@ -58,3 +58,13 @@ def test_nothing_touches_a_swatch():
     rule = re.search(r"\.blocks tbody td \{([^}]*)\}", CSS).group(1)
     assert "print-color-adjust: exact" in rule
     assert "forced-color-adjust: none" in rule
+
+
+def test_every_block_is_closed():
+    """A brace lost in a merge would hide all rules behind it in a media query."""
+    depth = 0
+    for line in CSS.splitlines():
+        depth += line.count("{") - line.count("}")
+        assert depth in (0, 1, 2), line
+        assert depth == 0 or not line.startswith("/*"), line
+    assert depth == 0
