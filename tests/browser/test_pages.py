@@ -8,7 +8,7 @@ from .conftest import settle
 
 PAGES = (
     *("index.html", "molecular/sun+20.html", "molecular/view-45-beside.html", "compare/sun+20.html"),
-    *("methods.html", "reader.html"),
+    *("molecular/light.html", "molecular/display.html", "methods.html", "reader.html"),
 )
 WIDTHS = (390, 720, 1024, 1440, 2560)
 
