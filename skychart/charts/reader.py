@@ -26,16 +26,19 @@ from skychart.colour.spaces import SPACES, rgb
 from skychart.colour.temperature import planckian_locus
 
 READER_SUNS_DEG = (
-    *(-12.0, -11.0, -10.0, -9.0, -8.0, -7.0, -6.0, -5.0, -4.0, -3.0, -2.0, -1.0, 0.0, 1.0, 2.0, 3.0, 4.0, 5.0, 6.0),
-    *(8.0, 10.0, 12.0, 15.0, 20.0, 25.0, 30.0, 35.0, 40.0, 50.0, 60.0, 68.0, 75.0, 82.0, 90.0),
+    *(-12.0, -11.0, -10.0, -9.0, -8.0, -7.0, -6.0, -5.0, -4.0, -3.0, -2.0, -1.0, 0.0, 0.5, 1.0, 1.5, 2.0, 2.5, 3.0),
+    *(3.5, 4.0, 4.5, 5.0, 6.0, 8.0, 10.0, 12.0, 15.0, 20.0, 25.0, 30.0, 35.0, 40.0, 50.0, 60.0, 68.0, 75.0, 82.0, 90.0),
 )
-"""Suns between which the page interpolates: as few as keep luminance within 1 % by day."""
+"""Suns between which the page interpolates, as few as keep luminance within 1 % by day; close where haze reddens."""
 
 LIGHT_SUNS_DEG = tuple(sorted({*READER_SUNS_DEG, *np.arange(-0.5, 2, 0.125).tolist(), *np.arange(2, 6, 0.5).tolist()}))
 """Suns of the direct light and of refraction, which change fast near the horizon and cost little."""
 
 PEAK_DEG = np.array([0, 0.2, 0.5, 1, 1.5, 2, 3, 5, 7.5, 10, 14, 20, 28])
 """Distances from the sun at which the peak is known."""
+
+READER_AZIMUTH_DEG = np.union1d(RELATIVE_AZIMUTH_DEG, [1.5, 3, 5])
+"""Azimuths of the survey, and some near the sun's own: there a low sun's haze changes with every degree."""
 
 SPECTRUM_NM = np.arange(380.0, 781.0, 10.0)
 
@@ -73,7 +76,8 @@ def reader_sky(sky: Sky, found: Survey) -> ReaderSky:
     found = at_suns(found, READER_SUNS_DEG)
     matrix = tristimulus_matrix(sky.wavelength_nm, found.observer)
     places = list(zip(found.apparent_elevation_deg, _near(sky, found, matrix), strict=True))
-    grid = _log(found.stokes_XYZ[..., 0, :])
+    stokes = _with_near_azimuths(sky, found, matrix)
+    grid = _log(stokes[..., 0, :])
     peaks = np.stack([_peak(near) for _, near in places])
     on_grid = np.stack([_peak_on_grid(sun, values) for (sun, _), values in zip(places, peaks, strict=True)])
     smooth = grid - on_grid
@@ -89,7 +93,7 @@ def reader_sky(sky: Sky, found: Survey) -> ReaderSky:
         smooth_log=smooth,
         peak_log=peaks,
         sides_log=np.stack(sides),
-        polarised=found.stokes_XYZ[..., 1:, 1] / np.exp(smooth[..., 1:2]),
+        polarised=stokes[..., 1:, 1] / np.exp(smooth[..., 1:2]),
         sky_log=_log(found.sky_XYZ),
         spectra_log=_log(found.radiance[..., columns]),
         light_deg=np.array(LIGHT_SUNS_DEG),
@@ -123,6 +127,15 @@ def _listed(values: np.ndarray, decimals: int) -> list[Any]:
     return listed
 
 
+def _with_near_azimuths(sky: Sky, found: Survey, matrix: np.ndarray) -> np.ndarray:
+    """The survey's grid with the azimuths it lacks, (sun, view elevation, azimuth, Stokes I Q U, XYZ)."""
+    lacking = np.setdiff1d(READER_AZIMUTH_DEG, RELATIVE_AZIMUTH_DEG)
+    suns = found.solar_elevation_deg[:, None, None]
+    more = sky.stokes(suns, VIEW_ELEVATION_DEG[:, None], lacking) @ matrix
+    order = np.argsort(np.append(RELATIVE_AZIMUTH_DEG, lacking))
+    return np.concatenate([found.stokes_XYZ, more], axis=2)[:, :, order]
+
+
 def _near(sky: Sky, found: Survey, matrix: np.ndarray) -> np.ndarray:
     """Logarithms along the arm beside each sun at `PEAK_DEG`, (sun, distance, XYZ); nan below the horizon."""
     places = [beside(np.radians(PEAK_DEG), float(np.radians(sun))) for sun in found.apparent_elevation_deg]
@@ -152,7 +165,7 @@ def _peak_at(peak: np.ndarray, distance_deg: np.ndarray) -> np.ndarray:
 
 
 def _peak_on_grid(sun_deg: float, peak: np.ndarray) -> np.ndarray:
-    distance, _ = distance_and_side(sun_deg, VIEW_ELEVATION_DEG[:, None], RELATIVE_AZIMUTH_DEG)
+    distance, _ = distance_and_side(sun_deg, VIEW_ELEVATION_DEG[:, None], READER_AZIMUTH_DEG)
     return _peak_at(peak, distance.ravel()).reshape(*distance.shape, 3)
 
 
@@ -163,7 +176,7 @@ def _sides(sun_deg: float, around: np.ndarray, smooth: np.ndarray, peak: np.ndar
     if not seen.any():
         return np.zeros((len(ARMS), len(DISTANCE_DEG), 3))
     upward = spline(VIEW_ELEVATION_DEG, view[seen])
-    sideways = spline(RELATIVE_AZIMUTH_DEG, azimuth[seen], flat_ends=True)
+    sideways = spline(READER_AZIMUTH_DEG, azimuth[seen], flat_ends=True)
     distance, _ = distance_and_side(sun_deg, view[seen], azimuth[seen])
     left = np.full_like(around, np.nan)
     left[seen] = around[seen] - np.einsum("pv,pa,vax->px", upward, sideways, smooth) - _peak_at(peak, distance)
