@@ -32,6 +32,7 @@ LABELS = (
     Column("relative_azimuth_deg", "Azimuth", "°", ""),
 )
 DEEP_TWILIGHT_DEG = -6.0
+_ON_SUN_DEG = 0.75
 
 
 @dataclass(frozen=True)
@@ -79,6 +80,7 @@ class Sheet:
     aureole_labels: tuple[str, ...]
     aureole_rows: tuple[BlockRow, ...]
     over_range: int
+    on_sun: str
     table: NumberTable
     readings: Reading
     sky: SkyView
@@ -129,6 +131,7 @@ def elevation_sheet(survey: Survey, sun: int) -> Sheet:
         aureole_labels=tuple(degrees(distance) for distance in AUREOLE_DISTANCE_DEG),
         aureole_rows=_aureole_rows(range(grid_count, len(views)), readings, colour_swatches, anchors),
         over_range=int(shown[0].over_range(readings.XYZ).sum()),
+        on_sun=_on_sun(survey, sun),
         table=number_table(LABELS, anchors, labels, readings, colours, hexes),
         readings=readings,
         sky=survey.sky_view(sun),
@@ -146,6 +149,13 @@ def apparent_label(survey: Survey, sun: int) -> str:
     if not survey.sun_seen(sun):
         return "below the horizon"
     return spaced(fixed(float(survey.apparent_elevation_deg[sun]), 2)) + "°"
+
+
+def _on_sun(survey: Survey, sun: int) -> str:
+    """View elevation, in words, of the block whose direction falls on the sun or beside it; none is an empty text."""
+    apparent = float(survey.apparent_elevation_deg[sun])
+    close = [view for view in TABLE_ELEVATION_DEG if abs(view - apparent) < _ON_SUN_DEG]
+    return degrees(close[0]) if close and survey.sun_seen(sun) else ""
 
 
 def sun_uv(survey: Survey, sun: int) -> np.ndarray | None:

@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from itertools import groupby
 from typing import Any
 
+import numpy as np
 from jinja2 import Environment
 
 from skychart.charts.checks import Methods
@@ -32,9 +33,13 @@ _DOME_RADIUS = 100
 
 @dataclass(frozen=True)
 class Dome:
-    """Where the pictures of one side of the sky lie, and how they and the sun sit on a disc of radius 100."""
+    """How pictures of one side of the sky, one below the other in one file, and the sun sit on a disc of radius 100.
 
-    pictures: dict[str, str]
+    `keys` name the pictures from the top.
+    """
+
+    picture: str
+    keys: tuple[str, ...]
     left: float
     top: float
     sun_y: float
@@ -61,10 +66,9 @@ def sheet_files(atlas: Atlas, chart: Sheet, light: SunLight) -> dict[str, bytes]
     description = f"{heading}: colour, luminance and polarisation of the {chart.atmosphere} sky by direction."
     page = atlas.page("sun", chart.atmosphere, f"{stem}.html", title, description, before, after)
     figures, files = sheet_figures(chart)
-    pictures = {shown.exposure.key: f"{stem}-{shown.exposure.key}.png" for shown in chart.renderings}
-    pixels = half_sky(chart.sky)
-    for shown in chart.renderings:
-        files[pictures[shown.exposure.key]] = srgb_png(half_dome(pixels, shown.exposure))
+    picture, pixels = f"{stem}-sky.png", half_sky(chart.sky)
+    files[picture] = _domes_png([half_dome(pixels, shown.exposure) for shown in chart.renderings])
+    keys = tuple(shown.exposure.key for shown in chart.renderings)
     about = file_head(atlas, chart.atmosphere) | {
         "solar_elevation_deg": chart.solar_elevation_deg,
         "apparent_elevation_deg": round(chart.apparent_elevation_deg, 3),
@@ -79,7 +83,7 @@ def sheet_files(atlas: Atlas, chart: Sheet, light: SunLight) -> dict[str, bytes]
         "air": atlas.air(chart.atmosphere),
         "switch": atlas.sun_switch(chart.atmosphere, chart.solar_elevation_deg),
         "ruler": ruler,
-        "dome": _dome(pictures, chart.apparent_elevation_deg),
+        "dome": _dome(picture, keys, chart.apparent_elevation_deg),
         "box": light_box(light),
         "figures": figures,
         "downloads": (*downloads, Link("ZIP for other programs", archive.path)),
@@ -158,19 +162,17 @@ def comparison_files(atlas: Atlas, chart: Comparison) -> dict[str, bytes]:
     title = f"Sun {chart.label}, side by side"
     description = f"{heading}: {', '.join(atlas.atmospheres)} side by side at one exposure."
     page = atlas.page("compare", atlas.atmospheres[0], path, title, description, before, after)
-    pictures = {shown.atmosphere: f"{stem}-{shown.atmosphere}.png" for shown in chart.skies}
+    picture, airs = f"{stem}-sky.png", tuple(shown.atmosphere for shown in chart.skies)
     context = {
         "page": page,
         "chart": chart,
         "heading": heading,
         "switch": atlas.sun_switch(COMPARE_FOLDER, sun),
         "ruler": ruler,
-        "domes": [_dome(pictures, shown.sky.sun_elevation_deg) for shown in chart.skies],
+        "domes": [_dome(picture, airs, shown.sky.sun_elevation_deg) for shown in chart.skies],
         "airs": [atlas.air(shown.atmosphere) for shown in chart.skies],
     }
-    files = {
-        pictures[shown.atmosphere]: srgb_png(half_dome(half_sky(shown.sky), chart.exposure)) for shown in chart.skies
-    }
+    files = {picture: _domes_png([half_dome(half_sky(shown.sky), chart.exposure) for shown in chart.skies])}
     return {page.path: render(templates(), "compare.html", context), **files}
 
 
@@ -190,10 +192,14 @@ def templates() -> Environment:
     return environment()
 
 
-def _dome(pictures: dict[str, str], sun_elevation_deg: float) -> Dome:
+def _dome(picture: str, keys: tuple[str, ...], sun_elevation_deg: float) -> Dome:
     pixel = _DOME_RADIUS / (DOME_PIXELS / 2 - RIM_PIXELS)
     sun_y = _DOME_RADIUS * (90 - sun_elevation_deg) / 90
-    return Dome(pictures, round(-OVERLAP_PIXELS * pixel, 2), round(-DOME_PIXELS / 2 * pixel, 2), round(sun_y, 2))
+    return Dome(picture, keys, round(-OVERLAP_PIXELS * pixel, 2), round(-DOME_PIXELS / 2 * pixel, 2), round(sun_y, 2))
+
+
+def _domes_png(pictures: list[np.ndarray]) -> bytes:
+    return srgb_png(np.concatenate(pictures))
 
 
 def _band_png(chart: Overview, band: DayBand) -> bytes:

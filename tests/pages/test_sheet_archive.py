@@ -6,6 +6,7 @@ import zipfile
 
 import pytest
 
+from skychart.charts.light import light_sheet
 from skychart.charts.sheet import elevation_sheet
 from skychart.charts.survey import survey
 from skychart.config import NAMED_AIRS, AirSettings, Settings
@@ -88,5 +89,6 @@ def test_without_openexr_the_rest_is_there_and_the_build_says_so_once(tmp_path, 
 def test_a_sheet_gives_its_archive_among_its_files():
     """Under the name that the page links to."""
     settings = Settings(atmospheres=(AirSettings(),), solar_elevations_deg=(5.0,))
-    chart = elevation_sheet(survey(FakeSky(AirSettings()), (5.0,), settings.observer), 0)
-    assert "molecular/sun+05-files.zip" in sheet_files(make_atlas(settings), chart)
+    found = survey(FakeSky(AirSettings()), (5.0,), settings.observer)
+    files = sheet_files(make_atlas(settings), elevation_sheet(found, 0), light_sheet(found).suns[0])
+    assert "molecular/sun+05-files.zip" in files
