@@ -1,7 +1,8 @@
 """Lines of water vapour and oxygen in the sky's light: by the path from sun over the point of scattering to the eye.
 
-Light scattered once is weakened by the lines along exactly that path, a mean over the line of sight; the same factor
-is given to all other light of that direction. Where nothing is scattered once it is that of the line of sight itself.
+Light scattered once is weakened by the lines along exactly that path, a mean over the line of sight. All other light of
+that direction takes the same ways, where there is light scattered once; in the planet's shadow the line of sight itself
+is what is known of its way.
 """
 
 from dataclasses import dataclass, replace
@@ -56,11 +57,16 @@ class LinePaths:
         here = np.flatnonzero(self.boundaries == self.station.start)[0]
         return self._left(self.toward_sun.at(here, np.cos(solar_zenith_angle)))
 
-    def factor(self, lines: Lines) -> Array:
-        """What lines leave of the light along each line of sight, (line, wavelength)."""
+    def left(self, lines: Lines) -> tuple[Array, Array]:
+        """What lines leave of the light along lines of sight, each (line, wavelength).
+
+        Of light scattered once, by its path from the sun; and of light that starts outside the air, by the line of
+        sight alone. Where nothing is scattered once the first equals the second.
+        """
         station = self.station
         inward, outward = self._from_observer(np.unique(lines.view_cosine))
-        result = np.ones((len(lines.view_cosine), len(self.table.wavelength_nm)))
+        once = np.ones((len(lines.view_cosine), len(self.table.wavelength_nm)))
+        sight = np.ones_like(once)
         for fan, ray, chosen in station.blocks(lines, self.boundaries):
             level, cos_there, _, _ = along(fan, ray, lines, chosen)
             place = self.boundaries[level]
@@ -70,10 +76,10 @@ class LinePaths:
             weight = fan.weight.sum(axis=0)[ray][fan.reached[ray]].astype(np.float32)
             light = station.table.at(place, cos_there) * weight
             total = light.sum(axis=1)
-            unlit = self._left(near[-1])
+            sight[chosen] = self._left(near[-1])
             share = (light * left).sum(axis=1) / np.where(total > 0, total, 1)
-            result[chosen] = np.where(total > _UNLIT, share, unlit)
-        return result
+            once[chosen] = np.where(total > _UNLIT, share, sight[chosen])
+        return once, sight
 
     def _left(self, amounts: Array) -> NDArray[np.float32]:
         return self.table.at(amounts[..., 0], amounts[..., 1])

@@ -3,7 +3,8 @@
 Light scattered once is computed at every node; light scattered more often at eleven wavelengths, its logarithm carried
 to the nodes by a cubic spline (and the ratios Q/I, U/I likewise). A spline cannot see the bands of ozone and of oxygen
 pairs between its knots: of each logarithm those multiples of their cross-sections are split off which leave the
-smoothest rest. Lines of water vapour and oxygen weaken both by the path of the light scattered once.
+smoothest rest. Lines of water vapour and oxygen weaken both by the path of the light scattered once; where that light
+ends, by the line of sight alone.
 """
 
 from dataclasses import dataclass, replace
@@ -27,6 +28,7 @@ Array = NDArray[np.float64]
 
 NODES_NM = np.arange(360.0, 831.0, 10.0)
 MULTIPLE_NM = np.arange(380.0, 781.0, 40.0)
+_FEW = 0.03
 _DARKEST = 1e-30  # radiance or irradiance per unit solar irradiance, only to keep the logarithm finite
 
 
@@ -62,10 +64,8 @@ class SpectralSky:
         radiance = multiple[..., :1, :]
         ratios = multiple[..., 1:, :] / np.maximum(radiance, _DARKEST)
         radiance = _to_nodes(radiance)
-        light = self.once.single(*angles, altitude) + np.concatenate(
-            [radiance, radiance * (ratios @ _SPLINE.T)], axis=-2
-        )
-        return light * self._lines_leave(*angles)
+        multiple = np.concatenate([radiance, radiance * (ratios @ _SPLINE.T)], axis=-2)
+        return weakened(self.once.single(*angles, altitude), multiple, *self._lines_leave(*angles))
 
     def beam(self, solar_elevation_deg: ArrayLike) -> Array:
         """Direct light of the sun on a plane that faces it, over that outside the air, (..., 48)."""
@@ -84,12 +84,13 @@ class SpectralSky:
     def _single(self, sun_deg: ArrayLike, view_deg: ArrayLike, azimuth_deg: ArrayLike) -> Array:
         """The part of ``stokes`` scattered once from the beam."""
         angles = sun_deg, view_deg, azimuth_deg
-        return self.once.single(*angles, self.settings.altitude_km) * self._lines_leave(*angles)
+        return self.once.single(*angles, self.settings.altitude_km) * self._lines_leave(*angles)[0]
 
-    def _lines_leave(self, sun_deg: ArrayLike, view_deg: ArrayLike, azimuth_deg: ArrayLike) -> Array:
-        """What lines leave of the light from each direction, (..., 1, 48)."""
+    def _lines_leave(self, sun_deg: ArrayLike, view_deg: ArrayLike, azimuth_deg: ArrayLike) -> tuple[Array, Array]:
+        """What lines leave of light by its path from the sun, and by the line of sight alone, each (..., 1, 48)."""
         shape, lines = lines_of_sight(sun_deg, view_deg, azimuth_deg)
-        return self.paths.factor(lines).reshape(*shape, 1, -1)
+        by_sun, by_sight = (left.reshape(*shape, 1, -1) for left in self.paths.left(lines))
+        return by_sun, by_sight
 
     def apparent_elevation_deg(self, solar_elevation_deg: ArrayLike) -> Array:
         """Elevation [degrees] of the refracted sun's centre, (...); below the horizon, where it would stand."""
@@ -108,6 +109,17 @@ def solve_spectral(settings: AirSettings) -> SpectralSky:
     paths = LinePaths.of(station, NODES_NM, settings.water_cm, settings.pressure_hpa)
     once = Sky(replace(air, absorption_depth=depth), replace(station, start=0), sky.light)
     return SpectralSky(settings, sky, once, paths)
+
+
+def weakened(once: Array, multiple: Array, by_sun: Array, by_sight: Array) -> Array:
+    """Light scattered once and more often, (..., 3, wavelength), with what lines leave, (..., 1, wavelength).
+
+    The rest comes by the path of the light scattered once as long as that is more than a few hundredths of it, and goes
+    over to the line of sight smoothly as it fades.
+    """
+    first, rest = once[..., :1, :], multiple[..., :1, :]
+    lit = first / np.maximum(first + _FEW * rest, _DARKEST)
+    return once * by_sun + multiple * (by_sight + lit * (by_sun - by_sight))
 
 
 def _to_nodes(light: Array) -> Array:

@@ -10,7 +10,7 @@ from skychart.config import AirSettings
 from skychart.sky import solve
 from skychart.sky.grid import Grid
 from skychart.sky.sky import lines_of_sight
-from skychart.sky.spectral import NODES_NM, SpectralSky
+from skychart.sky.spectral import NODES_NM, SpectralSky, weakened
 
 SUN = np.array([50.0, 10, 2, 0, -4, -8])[:, None]
 VIEW = np.array([90.0, 45, 10, 2])
@@ -25,9 +25,10 @@ def test_spline_over_wavelength_costs_no_visible_colour(default_sky: SpectralSky
     on it.
     """
     once = default_sky.once
-    every = solve(once.air, COARSE).multiple(SUN, VIEW, 90) + once.single(SUN, VIEW, 90)
     shape, lines = lines_of_sight(SUN, VIEW, 90)
-    every = every[..., 0, :] * default_sky.paths.factor(lines).reshape(*shape, -1) @ tristimulus_matrix(NODES_NM)
+    left = (part.reshape(*shape, 1, -1) for part in default_sky.paths.left(lines))
+    every = weakened(once.single(SUN, VIEW, 90), solve(once.air, COARSE).multiple(SUN, VIEW, 90), *left)
+    every = every[..., 0, :] @ tristimulus_matrix(NODES_NM)
     sky = replace(default_sky, every_order=solve(default_sky.every_order.air, COARSE))
     splined = sky.stokes(SUN, VIEW, 90)[..., 0, :] @ tristimulus_matrix(NODES_NM)
     luminance = np.abs(splined[..., 1] / every[..., 1] - 1)
@@ -62,3 +63,16 @@ def test_observer_on_a_mountain_sees_less_sky_and_more_sun(default_sky: Spectral
     low, high = (sky.ground_irradiance(40.0) for sky in (default_sky, mountain_sky))
     assert np.all(high[0] < low[0])
     assert np.all(high[1] > low[1])
+
+
+def test_twilight_has_no_step_where_the_last_sunlit_air_sets(default_sky: SpectralSky) -> None:
+    """Across the sky away from a sun of -10 degrees, degree by degree: the slope of the logarithm stays even.
+
+    Lines weaken light scattered once by the long way along the ground, and the rest by the line of sight: where the one
+    ends the other takes over.
+    """
+    view = np.arange(15.0, 86.0)
+    for azimuth in (120.0, 144.0, 180.0):
+        light = default_sky.stokes(-10.0, view, azimuth)[:, 0] @ tristimulus_matrix(NODES_NM)
+        slope = np.diff(np.log(light), axis=0)
+        assert np.abs(np.diff(slope, axis=0)).max() < 0.01
