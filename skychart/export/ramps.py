@@ -13,7 +13,7 @@ from skychart.colour.coding import HDR_WHITE_CD_M2, PQ
 from skychart.colour.spaces import rgb
 from skychart.export.png import BT2100_PQ_CHUNK, SRGB_CHUNK, ramp_png
 
-_HEIGHT = 360
+_HEIGHT = 240
 _SRGB_RULE = "sRGB code; code white is a level white card in this light; brighter colours are scaled down, hue kept."
 _PQ_RULE = "PQ code, BT.2020 primaries; a level white card in this light is at 203 cd/m2 (ITU-R BT.2408)."
 

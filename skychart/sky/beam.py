@@ -40,8 +40,10 @@ class SunTable:
     (2 component, wavelength): optical depth of an amount, negative, the same for both; that of the last amount is 1.
     ``less``: spectra of a beam to subtract.
     ``refraction`` [rad] (boundary, zenith angle); ``edge`` (boundary,): zenith angle of the shadow's edge in steps.
+    ``layers`` (layer, component): the amounts in each layer.
     """
 
+    layers: Array
     amounts: NDArray[np.float32]
     spectra: NDArray[np.float32]
     refraction: Array
@@ -65,12 +67,12 @@ class SunTable:
         refraction = np.empty(amounts.shape[:2])
 
         def fill(start: int) -> None:
-            bent = rays.refraction(start, cosine)
+            depth, bent = rays.depth_and_refraction(start, cosine)
             place = np.interp(uniform, computed + np.degrees(bent), np.arange(len(computed)))
             low = np.minimum(place.astype(int), len(computed) - 2)
             part = (place - low)[:, None]
             thinned = -np.log(_thinned(np.radians(computed), bent, lowest[start]))
-            along = np.column_stack([rays.depth(start, cosine), thinned, bent])
+            along = np.column_stack([depth, thinned, bent])
             along = along[low] + part * (along[low + 1] - along[low])
             refraction[start] = along[:, -1]
             amounts[start, :, :count] = along[:, :-1]
@@ -78,8 +80,12 @@ class SunTable:
 
         with ThreadPoolExecutor(THREADS) as pool:
             list(pool.map(fill, boundaries))
-        whole = -np.concatenate([spectra, np.ones((1, spectra.shape[1]))]).astype(np.float32)
-        return cls(amounts, np.concatenate([whole, whole]), refraction, edge)
+        return cls(layers, amounts, _doubled(spectra), refraction, edge)
+
+    def of_depth(self, extinction_depth: Array) -> "SunTable":
+        """The table of other optical depths (layer, wavelength) of the same absorbers and scatterers in the layers."""
+        spectra, *_ = np.linalg.lstsq(self.layers, extinction_depth, rcond=None)
+        return replace(self, spectra=_doubled(spectra.astype(float)))
 
     def at(self, boundary: NDArray[np.intp], cos_zenith: Array) -> NDArray[np.float32]:
         """Transmission toward the sun from ``boundary`` (index), (..., wavelength); arguments broadcast to (...)."""
@@ -112,6 +118,12 @@ def _components(depth: Array) -> tuple[Array, Array]:
     left, size, right = np.linalg.svd(depth, full_matrices=False)
     kept = max(int((size > _NEGLIGIBLE * size[0]).sum()), 1)
     return left[:, :kept] * size[:kept], right[:kept]
+
+
+def _doubled(spectra: Array) -> NDArray[np.float32]:
+    """Spectra as a table keeps them, that of what thins the beam last."""
+    whole = -np.concatenate([spectra, np.ones((1, spectra.shape[1]))]).astype(np.float32)
+    return np.concatenate([whole, whole])
 
 
 def _transmission(along: NDArray[np.float32], spectra: NDArray[np.float32]) -> NDArray[np.float32]:

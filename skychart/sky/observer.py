@@ -83,6 +83,11 @@ class Station:
         table, scaled = SunTable.of(replace(shells, extinction_depth=np.concatenate(depths, axis=1))).split()
         return cls(shells, table, start, scaled)
 
+    def of_air(self, air: Atmosphere) -> "Station":
+        """The same place in the same air at other wavelengths."""
+        shells = Shells.of(air, self.shells.altitude_km)
+        return replace(self, shells=shells, table=self.table.of_depth(shells.extinction_depth), scaled=None)
+
     def beyond(self) -> "Station":
         """The same place under the light that, beside the beam, counts as unscattered. Hazy air only."""
         if self.scaled is None:

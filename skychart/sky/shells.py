@@ -6,6 +6,7 @@ All products of r are taken as products of altitude differences, so that a plane
 (the flat case) loses no digits.
 """
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -18,7 +19,7 @@ Array = NDArray[np.float64]
 
 _UPPER_KM = 80.0
 _SPLINE_NODES = 4  # the fewest that a cubic spline takes
-_PATH_NODES, _PATH_WEIGHTS = np.polynomial.legendre.leggauss(4)
+_PATH_NODES, _PATH_WEIGHTS = np.polynomial.legendre.leggauss(3)
 
 
 def level_altitudes(top_km: float, count: int) -> Array:
@@ -84,18 +85,27 @@ class Shells:
         ``tangent_km`` has any shape (...); the result has shape (..., layer) from layer ``lowest`` upward, 0 where the
         layer lies below the tangent.
         """
+        (factors,) = self.weighted_paths(tangent_km, (self.decay_per_km,), lowest)
+        return factors
+
+    def weighted_paths(self, tangent_km: Array, decays_per_km: Sequence[Array], lowest: int = 0) -> list[Array]:
+        """``slant_factors`` for each of some decays within the layers, each (layer,), along the same rays."""
         tangent = np.asarray(tangent_km, dtype=float)[..., None]
-        bottom, top, decay = self.altitude_km[lowest:-1], self.altitude_km[lowest + 1 :], self.decay_per_km[lowest:]
+        bottom, top = self.altitude_km[lowest:-1], self.altitude_km[lowest + 1 :]
         start = distance_from_tangent(np.maximum(bottom, tangent), tangent, self.planet_radius_km)
         end = distance_from_tangent(np.maximum(top, tangent), tangent, self.planet_radius_km)
         nearest = self.planet_radius_km + tangent
         half, middle = 0.5 * (end - start), 0.5 * (end + start)
-        total = np.zeros(np.broadcast_shapes(tangent.shape, bottom.shape))
+        decays = [decay[lowest:] for decay in decays_per_km]
+        totals = [np.zeros(half.shape) for _ in decays]
         for node, weight in zip(_PATH_NODES, _PATH_WEIGHTS, strict=True):
             distance = middle + half * node
-            altitude = tangent + distance**2 / (np.sqrt(nearest**2 + distance**2) + nearest)
-            total += weight * np.exp(-decay * (altitude - bottom))
-        return total * half / vertical_weight(decay, top - bottom)
+            rise = tangent + distance**2 / (np.sqrt(nearest**2 + distance**2) + nearest) - bottom
+            for total, decay in zip(totals, decays, strict=True):
+                total += weight * np.exp(-decay * rise)
+        return [
+            total * half / vertical_weight(decay, top - bottom) for total, decay in zip(totals, decays, strict=True)
+        ]
 
 
 def tangent_altitude(altitude_km: Array, cos_zenith: Array, planet_radius_km: float) -> Array:

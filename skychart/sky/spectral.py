@@ -104,10 +104,14 @@ def solve_spectral(settings: AirSettings) -> SpectralSky:
     depth = np.zeros_like(air.absorption_depth)
     for layers, (_, strength) in zip(_amounts(settings, air.level_altitude_km), _bands(), strict=True):
         depth += layers[:, None] * strength
+    air = replace(air, absorption_depth=depth)
     boundaries, altitude = sky.ground.shells.altitude_km, settings.altitude_km
-    station = Station.of(replace(air, absorption_depth=depth), np.union1d(boundaries, altitude), altitude)
+    if altitude in boundaries:
+        station = replace(sky.ground.of_air(air), start=int(np.searchsorted(boundaries, altitude)))
+    else:
+        station = Station.of(air, np.union1d(boundaries, altitude), altitude)
     paths = LinePaths.of(station, NODES_NM, settings.water_cm, settings.pressure_hpa)
-    once = Sky(replace(air, absorption_depth=depth), replace(station, start=0), sky.light)
+    once = Sky(air, replace(station, start=0), sky.light)
     return SpectralSky(settings, sky, once, paths)
 
 

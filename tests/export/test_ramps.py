@@ -75,7 +75,7 @@ def test_pictures_are_marked_for_what_they_are(day):
         assert b"Title\0Sky gradient, molecular, sun 20 deg" in dict(found[2:3]).values()
         assert (b"203 cd/m2" in data) == name.endswith("pq.png")
         pixels = decoded(data)
-        assert pixels.shape == (360, RAMP_PIXELS, 3)
+        assert pixels.shape == (240, RAMP_PIXELS, 3)
         assert (pixels == pixels[0]).all()
 
 

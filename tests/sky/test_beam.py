@@ -79,3 +79,16 @@ def test_low_sun_is_weakened_by_its_flattening(straight: Shells, bent: Shells) -
         assert float(rays.thinned(0, limbs.mean())) == pytest.approx(flattened, abs=4e-3)
     assert flattened == pytest.approx(1, abs=2e-3)
     assert float(BentRays.of(straight).thinned(0, np.radians(89.0))) == pytest.approx(1, abs=1e-12)
+
+
+@pytest.mark.parametrize("haze", [None, "average"])
+def test_a_table_serves_the_same_air_at_other_wavelengths(haze: str | None) -> None:
+    """Transmission within 1e-4 of a table of their own, gases and haze included, from the zenith to the shadow."""
+    altitude = subdivide(level_altitudes(100, 28), 2)
+    few, many = (
+        Shells.of(Atmosphere.standard(nodes, haze=haze), altitude)
+        for nodes in (np.arange(380.0, 781, 40), np.arange(360.0, 831, 10))
+    )
+    boundary, cosine = np.array([[0], [5], [20]]), np.cos(np.radians(np.linspace(0, 95, 200)))
+    found = SunTable.of(few).of_depth(many.extinction_depth).at(boundary, cosine)
+    np.testing.assert_allclose(found, SunTable.of(many).at(boundary, cosine), atol=1e-4)
