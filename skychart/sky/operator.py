@@ -24,7 +24,7 @@ Single = NDArray[np.float32]
 _LAST_ORDER = 1e-4
 _MOST_ORDERS = 200
 _REACHES_DEG = (4.0, 1.0)  # crossings that turn by less about the planet's centre see few source nodes
-_BLOCK = 2  # wavelengths whose matrices are held at once, some 60 MB each
+_BLOCK_BYTES = 330e6  # of matrices held at once, one a wavelength
 
 
 @dataclass(frozen=True, eq=False)
@@ -74,10 +74,12 @@ class Operator:
         flat = np.concatenate([tensor.transpose(3, 0, 2, 1).reshape(tensor.shape[3], -1), ground.T], axis=1)
         first = (flat / self.shape).astype(np.float32)
         total = np.empty_like(first)
-        buffer = np.empty((min(_BLOCK, len(first)), len(self.shape), len(self.shape)), np.float32)
+        wavelengths, size = first.shape
+        at_once = min(max(int(_BLOCK_BYTES / (4 * size**2)), 1), wavelengths)
+        buffer = np.empty((at_once, size, size), np.float32)
         with ThreadPoolExecutor(THREADS) as pool:
-            for start in range(0, len(first), _BLOCK):
-                block = range(start, min(start + _BLOCK, len(first)))
+            for start in range(0, wavelengths, at_once):
+                block = range(start, min(start + at_once, wavelengths))
                 matrices = buffer[: len(block)]
                 list(pool.map(lambda number, m=matrices, b=block: self._fill(m, b, number), range(len(self.levels))))
                 total[block] = list(pool.map(self._summed, matrices, first[block]))
