@@ -19,7 +19,7 @@ ROWS: tuple[tuple[str, str, Callable[[float], str]], ...] = (
     ("laboratories, ozone", "ozone-b", lambda off: f"{100 * off:.1f} %"),
     ("laboratories, ozone (laser lines)", "ozone-laser", lambda off: f"{100 * off:.1f} %"),
     ("Coddington et al. 2023, sunlight", "sun-tsis-illuminance", lambda off: f"{100 * off:.3f} %"),
-    ("US Naval Observatory, illuminance", "illuminance-usno1987-sun", lambda off: f"x {10**off:.2f}"),
+    ("US Naval Observatory, illuminance", "illuminance-usno1987-clear-sun", lambda off: f"x {10**off:.2f}"),
     ("Koomen et al. 1952, zenith", "zenith-koomen1952-", lambda off: f"x {10**off:.2f}"),
     ("daylight locus, y", "daylight-locus-", lambda off: f"{off:.4f}"),
 )
