@@ -140,5 +140,5 @@ def test_the_readme_gives_the_two_commands_that_work_alone() -> None:
     lines = (REPOSITORY / "README.md").read_text(encoding="utf-8").splitlines()
     commands = [line.strip() for line in lines if line.startswith("    python3 -m venv")]
     first, second = commands
-    assert first == "python3 -m venv .venv && .venv/bin/pip install -q . && .venv/bin/skychart build"
+    assert first == "python3 -m venv .venv && .venv/bin/pip install -q '.[exr]' && .venv/bin/skychart build"
     assert second in (REPOSITORY / ".ci" / "run").read_text(encoding="utf-8")
