@@ -12,8 +12,8 @@ import numpy as np
 
 from skychart.charts.splines import spline
 
-DISTANCE_DEG = np.array([0, 1, 2, 5, 10, 18, 28])
-"""Distances from the sun along an arm."""
+DISTANCE_DEG = np.array([0, 0.2, 0.5, 1, 2, 5, 10, 18, 28])
+"""Distances from the sun along an arm: those of the tables, and as many nearer ones as keep the peak within 1 %."""
 
 ARMS = ("up", "beside", "down")
 LOWEST_SUN_DEG = -6.0

@@ -32,7 +32,8 @@ _SITES = (("maryland", "measured, Maryland, 30 m"), ("sacramento_peak", "measure
 _DIGITS = 4
 _SKY_SUNS_DEG = (10, 30, 60)  # as near as the build has them
 _SKY_LOWEST_DEG = 10
-_SKY_EVERY = 2  # view elevation, and twice that azimuth
+_SKY_EVERY = 2  # view elevation of the survey
+_SKY_STEP_DEG = 30  # of azimuth
 _CHAIN_CD_M2 = np.geomspace(700, 20_000, 60)
 
 
@@ -226,7 +227,7 @@ def _sky_temperatures(survey: Survey) -> SkyTemperatures:
     suns = survey.solar_elevation_deg
     nearest = sorted({int(np.argmin(np.abs(suns - sun))) for sun in _SKY_SUNS_DEG})
     up = np.flatnonzero(VIEW_ELEVATION_DEG >= _SKY_LOWEST_DEG)[::_SKY_EVERY]
-    across = np.arange(0, len(RELATIVE_AZIMUTH_DEG), 2 * _SKY_EVERY)
+    across = np.flatnonzero(RELATIVE_AZIMUTH_DEG % _SKY_STEP_DEG == 0)
     skies = []
     for sun in nearest:
         XYZ = survey.stokes_XYZ[sun][np.ix_(up, across)][:, :, 0].reshape(-1, 3)

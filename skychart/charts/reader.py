@@ -37,9 +37,6 @@ LIGHT_SUNS_DEG = tuple(sorted({*READER_SUNS_DEG, *np.arange(-0.5, 2, 0.125).toli
 PEAK_DEG = np.array([0, 0.2, 0.5, 1, 1.5, 2, 3, 5, 7.5, 10, 14, 20, 28])
 """Distances from the sun at which the peak is known."""
 
-READER_AZIMUTH_DEG = np.union1d(RELATIVE_AZIMUTH_DEG, [1.5, 3, 5])
-"""Azimuths of the survey, and some near the sun's own: there a low sun's haze changes with every degree."""
-
 SPECTRUM_NM = np.arange(380.0, 781.0, 10.0)
 
 _REACH_DEG = float(PEAK_DEG[-1])
@@ -76,8 +73,7 @@ def reader_sky(sky: Sky, found: Survey) -> ReaderSky:
     found = at_suns(found, READER_SUNS_DEG)
     matrix = tristimulus_matrix(sky.wavelength_nm, found.observer)
     places = list(zip(found.apparent_elevation_deg, _near(sky, found, matrix), strict=True))
-    stokes = _with_near_azimuths(sky, found, matrix)
-    grid = _log(stokes[..., 0, :])
+    grid = _log(found.stokes_XYZ[..., 0, :])
     peaks = np.stack([_peak(near) for _, near in places])
     on_grid = np.stack([_peak_on_grid(sun, values) for (sun, _), values in zip(places, peaks, strict=True)])
     smooth = grid - on_grid
@@ -93,7 +89,7 @@ def reader_sky(sky: Sky, found: Survey) -> ReaderSky:
         smooth_log=smooth,
         peak_log=peaks,
         sides_log=np.stack(sides),
-        polarised=stokes[..., 1:, 1] / np.exp(smooth[..., 1:2]),
+        polarised=found.stokes_XYZ[..., 1:, 1] / np.exp(smooth[..., 1:2]),
         sky_log=_log(found.sky_XYZ),
         spectra_log=_log(found.radiance[..., columns]),
         light_deg=np.array(LIGHT_SUNS_DEG),
@@ -127,15 +123,6 @@ def _listed(values: np.ndarray, decimals: int) -> list[Any]:
     return listed
 
 
-def _with_near_azimuths(sky: Sky, found: Survey, matrix: np.ndarray) -> np.ndarray:
-    """The survey's grid with the azimuths it lacks, (sun, view elevation, azimuth, Stokes I Q U, XYZ)."""
-    lacking = np.setdiff1d(READER_AZIMUTH_DEG, RELATIVE_AZIMUTH_DEG)
-    suns = found.solar_elevation_deg[:, None, None]
-    more = sky.stokes(suns, VIEW_ELEVATION_DEG[:, None], lacking) @ matrix
-    order = np.argsort(np.append(RELATIVE_AZIMUTH_DEG, lacking))
-    return np.concatenate([found.stokes_XYZ, more], axis=2)[:, :, order]
-
-
 def _near(sky: Sky, found: Survey, matrix: np.ndarray) -> np.ndarray:
     """Logarithms along the arm beside each sun at `PEAK_DEG`, (sun, distance, XYZ); nan below the horizon."""
     places = [beside(np.radians(PEAK_DEG), float(np.radians(sun))) for sun in found.apparent_elevation_deg]
@@ -165,7 +152,7 @@ def _peak_at(peak: np.ndarray, distance_deg: np.ndarray) -> np.ndarray:
 
 
 def _peak_on_grid(sun_deg: float, peak: np.ndarray) -> np.ndarray:
-    distance, _ = distance_and_side(sun_deg, VIEW_ELEVATION_DEG[:, None], READER_AZIMUTH_DEG)
+    distance, _ = distance_and_side(sun_deg, VIEW_ELEVATION_DEG[:, None], RELATIVE_AZIMUTH_DEG)
     return _peak_at(peak, distance.ravel()).reshape(*distance.shape, 3)
 
 
@@ -176,7 +163,7 @@ def _sides(sun_deg: float, around: np.ndarray, smooth: np.ndarray, peak: np.ndar
     if not seen.any():
         return np.zeros((len(ARMS), len(DISTANCE_DEG), 3))
     upward = spline(VIEW_ELEVATION_DEG, view[seen])
-    sideways = spline(READER_AZIMUTH_DEG, azimuth[seen], flat_ends=True)
+    sideways = spline(RELATIVE_AZIMUTH_DEG, azimuth[seen], flat_ends=True)
     distance, _ = distance_and_side(sun_deg, view[seen], azimuth[seen])
     left = np.full_like(around, np.nan)
     left[seen] = around[seen] - np.einsum("pv,pa,vax->px", upward, sideways, smooth) - _peak_at(peak, distance)

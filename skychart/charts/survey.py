@@ -18,7 +18,9 @@ from skychart.sky.sun import SOLAR_DISC_DIAMETER_DEG, SOLAR_DISC_SOLID_ANGLE_SR,
 VIEW_ELEVATION_DEG = np.array(
     [0, 0.5, 1, 2, 3, 4, 5, 6, 8, 10, 12, 15, 20, 25, 30, 35, 40, 45, 50, 55, 60, 65, 70, 75, 80, 85, 90], float
 )
-RELATIVE_AZIMUTH_DEG = np.arange(0.0, 181.0, 7.5)
+RELATIVE_AZIMUTH_DEG = np.union1d(np.arange(0.0, 181.0, 7.5), [1, 3])
+"""Even steps, and two azimuths near the sun's own: there a low sun's haze changes with every degree."""
+
 _BY_SUN = (
     *("solar_elevation_deg", "apparent_elevation_deg", "stokes_XYZ", "aureole_XYZ", "below_XYZ"),
     *("sky_XYZ", "sun_XYZ", "beam_XYZ", "radiance", "beam_irradiance", "disc_sr"),

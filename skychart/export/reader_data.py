@@ -11,8 +11,8 @@ import json
 import numpy as np
 
 from skychart.charts.aureole import DISTANCE_DEG
-from skychart.charts.reader import PEAK_DEG, READER_AZIMUTH_DEG, SPECTRUM_NM, ReaderSky
-from skychart.charts.survey import DIRECTIONS, VIEW_ELEVATION_DEG
+from skychart.charts.reader import PEAK_DEG, SPECTRUM_NM, ReaderSky
+from skychart.charts.survey import DIRECTIONS, RELATIVE_AZIMUTH_DEG, VIEW_ELEVATION_DEG
 
 RECEIVER = "readerReceive"
 """The function of the page that takes the data."""
@@ -36,7 +36,7 @@ def reader_script(chart: ReaderSky) -> bytes:
         "atmosphere": chart.atmosphere,
         "suns": chart.solar_elevation_deg.tolist(),
         "views": VIEW_ELEVATION_DEG.tolist(),
-        "azimuths": READER_AZIMUTH_DEG.tolist(),
+        "azimuths": RELATIVE_AZIMUTH_DEG.tolist(),
         "peak_distances": PEAK_DEG.tolist(),
         "side_distances": DISTANCE_DEG.tolist(),
         "directions": [[view.view_elevation_deg, view.relative_azimuth_deg] for view in DIRECTIONS],

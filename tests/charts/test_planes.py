@@ -3,14 +3,14 @@
 import numpy as np
 import pytest
 
-from skychart.charts.aureole import arms
+from skychart.charts.aureole import DISTANCE_DEG, arms
 from skychart.charts.planes import LEVEL, PLANES, plane_light, plane_normals, surrounding_light
 from skychart.charts.survey import BELOW_ELEVATION_DEG, RELATIVE_AZIMUTH_DEG, VIEW_ELEVATION_DEG, SkyView, survey
 
 from .conftest import SUNS_DEG
 
 KEYS = [plane.key for plane in PLANES]
-NO_ARMS = np.full((3, 7, 3), np.nan)
+NO_ARMS = np.full((3, len(DISTANCE_DEG), 3), np.nan)
 
 
 def view_of(sky, ground, sun):
