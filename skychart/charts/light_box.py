@@ -92,7 +92,7 @@ def _facts(light: SunLight) -> tuple[Fact, ...]:
     colour = "  ".join(spaced(fixed(float(value), 3)) for value in beam.colour["srgb"])
     return (
         Fact("beam", "Sun, on a plane facing it", spaced(significant(beam.illuminance_lx, 3)), "lx"),
-        Fact("colour", "times its linear sRGB", colour, ""),
+        Fact("colour", "Its colour, linear sRGB", colour, ""),
         Fact("disc", "Its disc, mean", spaced(scientific(beam.disc_luminance_cd_m2, 3)), "cd/m²"),
         Fact("ratio", "Lit : shadow, facing it and level", _pair(light.facing_stops, light.level_stops, 2), "stops"),
         card,

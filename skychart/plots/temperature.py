@@ -11,7 +11,7 @@ from skychart.plots.frame import INK, Box, Panel, figure_svg, key_line, log_scal
 SIZE_IN = (5.8, 4.7)
 _BOX = Box(0.76, 1.15, 4.85, 3.22)
 _KEY_TOP_IN = 0.58
-_KEY_COLUMN_IN = 2.5
+_KEY_COLUMN_IN = 3.3
 _KEY_STEP_IN = 0.19
 _KEY_ROWS = 2
 _MARK: dict[str, Any] = {"markersize": 3.4, "markeredgecolor": INK, "markeredgewidth": 0.7}
