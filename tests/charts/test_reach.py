@@ -92,9 +92,9 @@ def test_shares_and_extremes_are_those_of_a_finer_count(found, sun, monkeypatch)
 def test_the_brightest_place_is_looked_for_at_the_sun_too(found):
     """An aureole much brighter than the sky is found where it is, between the directions of the count."""
     aureole = found.aureole_XYZ.copy()
-    aureole[TEN, :, :3] *= 40
+    aureole[TEN, :, :5] *= 40
     lit = dataclasses.replace(found, aureole_XYZ=aureole)
     view, _ = arms(float(found.apparent_elevation_deg[TEN]))
     brightest = reach(lit, TEN, ("srgb",)).luminance
     assert brightest.brightest_cd_m2 > 20 * reach(found, TEN, ("srgb",)).luminance.brightest_cd_m2
-    assert np.abs(view[:, :3] - brightest.brightest.view_elevation_deg).min() < 1e-9
+    assert np.abs(view[:, :5] - brightest.brightest.view_elevation_deg).min() < 1e-9

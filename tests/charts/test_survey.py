@@ -30,7 +30,7 @@ def test_a_direction_off_the_grid_is_an_error():
     with pytest.raises(IndexError):
         elevation_index(44.0)
     with pytest.raises(IndexError):
-        azimuth_index(1.0)
+        azimuth_index(2.0)
 
 
 def test_sheet_direction_sheet_and_reading_agree(sky, found):
