@@ -35,6 +35,8 @@ PLANES = (
 LEVEL = 1
 _MIRRORED = np.array([1, -1, 1])
 _GRAZING = 1e-9
+_NOTHING = 1e-7
+"""Coefficients below this share of the first are what rounding leaves of those that symmetry makes 0."""
 
 
 @dataclass(frozen=True)
@@ -86,4 +88,5 @@ def surrounding_light(view: SkyView, normals: np.ndarray) -> tuple[np.ndarray, n
     cosines = np.sum([np.maximum(half @ normals.T, 0) for half in halves], axis=0)
     above = around.elevation_deg > 0
     coefficients = np.sum([basis(half) for half in halves], axis=0).T @ light
+    coefficients[np.abs(coefficients) < _NOTHING * coefficients[0]] = 0
     return cosines[above].T @ light[above], cosines[~above].T @ light[~above], coefficients

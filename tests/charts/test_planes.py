@@ -42,6 +42,13 @@ def test_uniform_light_gives_pi_on_every_plane(sun):
     assert np.all(sky[KEYS.index("underside")] == 0)
 
 
+def test_coefficients_that_symmetry_forbids_are_0():
+    """A sky that does not vary with azimuth, under a sun at the zenith: only the three that go by z alone are left."""
+    view = view_of(lambda e, a: np.exp(e / 90) + 0 * a, lambda e, a: 0.2 + 0 * e * a, 90.0)
+    _, _, coefficients = surrounding_light(view, normals_of(90.0))
+    assert np.flatnonzero(coefficients.any(axis=1)).tolist() == [0, 2, 6]
+
+
 def test_a_sky_that_goes_by_the_sine_of_elevation():
     """L = sin e over a black ground: 2 π/3 on the level plane and 2/3 on walls, by hand."""
     view = view_of(lambda e, a: np.sin(np.radians(np.maximum(e, 1e-9))) + 0 * a, lambda e, a: 1e-12 + 0 * e * a, 20.0)
