@@ -6,8 +6,6 @@ from pathlib import Path
 
 import pytest
 
-from skychart.charts.reader import READER_SUNS_DEG, reader_sky
-from skychart.charts.survey import survey
 from skychart.config import AirSettings, Settings
 from skychart.pages.environment import static_files
 from skychart.pages.reader_page import reader_data_files, reader_files
@@ -65,12 +63,11 @@ def watch(chromium):
 
 
 @pytest.fixture(scope="session")
-def molecular_site(default_sky, tmp_path_factory):
+def molecular_site(default_reader, tmp_path_factory):
     """Folder with the reader of the default sky, which is a real one."""
     atlas = make_atlas(Settings(atmospheres=(AirSettings(),)))
-    chart = reader_sky(default_sky, survey(default_sky, READER_SUNS_DEG, atlas.settings.observer))
     out = tmp_path_factory.mktemp("molecular")
-    for path, content in (static_files() | reader_files(atlas) | reader_data_files(chart)).items():
+    for path, content in (static_files() | reader_files(atlas) | reader_data_files(default_reader)).items():
         (out / path).parent.mkdir(parents=True, exist_ok=True)
         (out / path).write_bytes(content)
     return out
