@@ -2,8 +2,8 @@
 
 Haze sends light forward in so narrow a peak that a grid of directions passes it by. The sky is therefore asked along
 three arms from the apparent sun: up, beside (along its own elevation, or along the horizon if it is lower) and down. A
-picture interpolates on the grid what is left when the mean peak along the arms is taken away, and puts the peak back at
-every pixel, corrected so that it meets each arm.
+picture interpolates on the grid what is left without the peak along the arm beside, and puts the peak back at every
+pixel, corrected so that it meets each arm.
 """
 
 from dataclasses import dataclass
@@ -68,14 +68,14 @@ class Peak:
 
 
 def peak(sun_elevation_deg: float, arms_log_XYZ: np.ndarray) -> Peak:
-    """The mean of the arms (arm, distance, XYZ; logarithms) up and beside, less the parabola that it ends in.
+    """Of the arms (arm, distance, XYZ; logarithms) the one beside, less the parabola that it ends in.
 
-    The arm down is left out, for the horizon cuts it short.
+    Along the others the sky changes with its height above the horizon as well, which the grid knows better.
     """
-    mean = without_gaps(arms_log_XYZ)[:2].mean(axis=0)
+    own = without_gaps(arms_log_XYZ)[ARMS.index("beside")]
     squared = DISTANCE_DEG[:, None] ** 2
-    curve = (mean[-1] - mean[-2]) / (squared[-1] - squared[-2])
-    return Peak(sun_elevation_deg, mean - mean[-1] - curve * (squared - squared[-1]))
+    curve = (own[-1] - own[-2]) / (squared[-1] - squared[-2])
+    return Peak(sun_elevation_deg, own - own[-1] - curve * (squared - squared[-1]))
 
 
 def along_distance(values: np.ndarray, distance_deg: np.ndarray) -> np.ndarray:
