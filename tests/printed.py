@@ -6,6 +6,9 @@ import html5lib
 import numpy as np
 
 XHTML = "{http://www.w3.org/1999/xhtml}"
+SAME = 1e-7
+"""Two looks at one sky agree to this part: both find angles by cosines, which the size of an array may round anew."""
+
 _READABLE = {
     **{"\u2212": "-", "\u2009": None, "\u202f": None, "×10": "e"},
     **dict(zip("⁻⁰¹²³⁴⁵⁶⁷⁸⁹", "-0123456789", strict=True)),
@@ -34,7 +37,7 @@ def assert_says(texts, values, digits: int = 4) -> None:
             continue
         decimals = written.partition("e")[0].partition(".")[2] if isinstance(text, str) and "e" not in written else ""
         unit = 10.0 ** -len(decimals) if decimals else 10.0 ** (np.floor(np.log10(abs(value) or 1)) + 1 - digits)
-        assert abs(float(written) - value) <= 0.5 * unit * (1 + 1e-6), f"{text} stands for {value}"
+        assert abs(float(written) - value) <= 0.5 * unit + SAME * abs(value), f"{text} stands for {value}"
 
 
 def rows_of(data: bytes) -> list[dict[str, str]]:
