@@ -32,8 +32,13 @@ class StandardSky:
         relative_azimuth_deg: ArrayLike,
         altitude_km: float = 0.0,
     ) -> NDArray[np.float64]:
-        """Sky light from a direction [cd/m² in Y], shape (..., 3), for an observer at any altitude."""
-        settings = dataclasses.replace(self._sky.settings, altitude_km=altitude_km)
+        """Sky light from a direction [cd/m² in Y], shape (..., 3).
+
+        The observer stands on the boundary of the solution's layers nearest the altitude, which needs no new tables.
+        """
+        boundaries = self._sky.every_order.ground.shells.altitude_km
+        nearest = float(boundaries[np.abs(boundaries - altitude_km).argmin()])
+        settings = dataclasses.replace(self._sky.settings, altitude_km=nearest)
         seen = dataclasses.replace(self._sky, settings=settings)
         return seen.stokes(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)[..., 0, :] @ self._matrix
 

@@ -4,7 +4,7 @@ Sources: Koomen et al. 1952, Patat, Ugolnikov & Postylyakov 2006; see the tables
 night sky, which is not computed, takes part, so nothing is compared there. Of Patat et al. only the rate is compared:
 their magnitudes would need a spectrum to become luminances. At their last sun the night sky is a thirtieth of the
 light, so it is added here. Koomen's sites are compared with the air called clear, the clean mountain of Patat et al.
-with air without haze.
+with air without haze. Mountains stand on the nearest boundary of the solution's layers, at most 0.1 km off.
 """
 
 import math

@@ -1,7 +1,9 @@
 """Irradiance of a level plane by the sky above it: sums over directions.
 
-The directions that do for the whole sky pass by the narrow peak that haze has about the sun. For light that has the
-peak, directions about the sun itself take their place within 60 degrees of it, under a window that ends flat.
+The directions that do for the whole sky pass by the narrow peak that haze has about the sun. But what haze sends from
+the beam is its phase function times the light that the line of sight meets, and that light is as smooth as the rest:
+it is interpolated between the same directions, and within 90 degrees of the sun summed with the phase function over
+many more, under a window that ends flat (product integration).
 """
 
 from collections.abc import Callable
@@ -13,10 +15,11 @@ from skychart.sky.grid import Grid
 
 Array = NDArray[np.float64]
 Light = Callable[..., Array]
+Phase = Callable[[Array], Array]
 
-_PEAK_RADIUS = np.radians(60)
-_DISTANCES, _TURNS = 8, 6
-_SUNS_AT_ONCE = 4  # for the sake of memory
+_WHOLE_SKY = Grid(zenith=16, azimuth=8)
+_PEAK_RADIUS = np.radians(90)
+_DISTANCES, _TURNS = 24, 24
 
 
 def over_hemisphere(stokes: Light, solar_elevation_deg: ArrayLike, *place: float) -> Array:
@@ -24,50 +27,55 @@ def over_hemisphere(stokes: Light, solar_elevation_deg: ArrayLike, *place: float
 
     ``stokes`` takes solar elevation, view elevation, azimuth [degrees] and ``place``; result (..., wavelength).
     """
-    elevation, azimuth, weight = _whole_sky()
+    cosine, azimuth, weight = _whole_sky()
     sun = np.asarray(solar_elevation_deg, dtype=float)[..., None, None]
-    radiance = stokes(sun, np.degrees(elevation), np.degrees(azimuth), *place)[..., 0, :]
+    radiance = stokes(sun, np.degrees(np.arcsin(cosine))[:, None], np.degrees(azimuth), *place)[..., 0, :]
     return np.einsum("...zpl,zp->...l", radiance, weight)
 
 
-def peak_missed(stokes: Light, solar_elevation_deg: ArrayLike, seen_elevation_deg: ArrayLike, *place: float) -> Array:
+def peak_missed(
+    met: Light, phase: Phase, solar_elevation_deg: ArrayLike, seen_elevation_deg: ArrayLike, *place: float
+) -> Array:
     """What ``over_hemisphere`` misses of light with a peak about the sun, (..., wavelength).
 
-    ``seen_elevation_deg``: where the refracted sun stands, shaped as its geometric elevation.
+    ``met`` gives what ``phase``, a function of the cosine of the angle from the sun, multiplies, (..., wavelength), of
+    the same arguments as ``stokes`` above; ``seen_elevation_deg``: where the refracted sun stands, shaped as its
+    geometric elevation.
     """
     sun, seen = np.broadcast_arrays(np.asarray(solar_elevation_deg, dtype=float), seen_elevation_deg)
-    pairs = np.stack([sun.ravel(), seen.ravel()], axis=1)
-    parts = np.split(pairs, range(_SUNS_AT_ONCE, len(pairs), _SUNS_AT_ONCE))
-    missed = np.concatenate([_missed(stokes, *part.T, *place) for part in parts])
-    return missed.reshape(*sun.shape, -1)
+    cosine, azimuth, _ = _whole_sky()
+    light = met(sun[..., None, None], np.degrees(np.arcsin(cosine))[:, None], np.degrees(azimuth), *place)
+    light = light.reshape(sun.size, len(cosine) * len(azimuth), -1)
+    missed = [
+        np.einsum("dl,dl->l", here, _missing(phase, float(height)))
+        for here, height in zip(light, np.radians(seen).ravel(), strict=True)
+    ]
+    return np.array(missed).reshape(*sun.shape, -1)
 
 
-def _missed(stokes: Light, sun_deg: Array, seen_deg: Array, *place: float) -> Array:
-    """The same for suns (sun,): the sum over directions about each less that over those of the whole sky."""
-    seen = np.radians(seen_deg)[:, None, None]
-    elevation, azimuth, weight = _whole_sky()
-    cosine = np.sin(elevation) * np.sin(seen) + np.cos(elevation) * np.cos(seen) * np.cos(azimuth)
-    coarse = weight * _window(np.arccos(np.clip(cosine, -1, 1)))
-    fine_elevation, fine_azimuth, fine = _about(seen)
-    total = 0.0
-    for sign, view, turned, part in ((1, fine_elevation, fine_azimuth, fine), (-1, elevation, azimuth, coarse)):
-        radiance = stokes(sun_deg[:, None, None], np.degrees(view), np.degrees(turned), *place)[..., 0, :]
-        total = total + sign * np.einsum("szpl,szp->sl", radiance, part)
-    return np.asarray(total)
+def _missing(phase: Phase, seen: float) -> Array:
+    """Weights that light met in the directions of the whole sky lacks, (direction, wavelength), sun at ``seen`` [rad]."""
+    cosine, azimuth, weight = _whole_sky()
+    across = np.sqrt(1 - cosine**2)[:, None] * np.cos(azimuth)
+    to_sun = (cosine[:, None] * np.sin(seen) + across * np.cos(seen)).ravel()
+    taken = (weight.ravel() * _window(np.arccos(np.clip(to_sun, -1, 1))))[:, None] * phase(to_sun)
+    distance, height, turned, part = _about(seen)
+    up, around = _toward_height(height), _toward_azimuth(turned)
+    between = (up[:, :, None] * around[:, None, :]).reshape(len(part), -1)
+    return np.asarray(between.T @ (part[:, None] * phase(np.cos(distance))) - taken)
 
 
 def _whole_sky() -> tuple[Array, Array, Array]:
-    """View elevations (zenith, 1) and azimuths (azimuth,) [rad], and weights times cosine (zenith, azimuth)."""
-    quadrature = Grid(zenith=16, azimuth=8)
-    cosine, weight = (part[: quadrature.zenith, None] for part in quadrature.cosines(0.0))
-    cos_phi, _, phi_weight = quadrature.azimuths()
-    return np.arcsin(cosine), np.arccos(cos_phi), np.broadcast_to(cosine * weight * phi_weight, (16, 8))
+    """Sines of view elevations (zenith,), azimuths (azimuth,) [rad], and weights times cosine (zenith, azimuth)."""
+    cosine, weight = (part[: _WHOLE_SKY.zenith] for part in _WHOLE_SKY.cosines(0.0))
+    cos_phi, _, phi_weight = _WHOLE_SKY.azimuths()
+    return cosine, np.arccos(cos_phi), np.outer(cosine * weight * phi_weight, np.ones(len(cos_phi)))
 
 
-def _about(seen: Array) -> tuple[Array, Array, Array]:
-    """Directions about suns (sun, 1, 1) [rad]: elevation, azimuth and weight times cosine and window.
+def _about(seen: float) -> tuple[Array, Array, Array, Array]:
+    """Directions above the horizon about a sun at ``seen`` [rad], each (direction,).
 
-    Each (sun, distance, turn); of directions below the horizon the weight is 0.
+    Distance from it, sine of the elevation, azimuth, and weight times cosine and window.
     """
     node, weight = np.polynomial.legendre.leggauss(_DISTANCES)
     place = 0.5 * (node + 1)[:, None]
@@ -77,8 +85,27 @@ def _about(seen: Array) -> tuple[Array, Array, Array]:
     ahead = np.cos(seen) * np.cos(distance) - np.sin(seen) * np.sin(distance) * np.cos(turn)
     azimuth = np.arctan2(np.sin(distance) * np.sin(turn), ahead)
     solid_angle = np.sin(distance) * (_PEAK_RADIUS * place * weight[:, None]) * (2 * np.pi / _TURNS)
-    above = np.maximum(sine, 0)
-    return np.arcsin(np.minimum(above, 1)), azimuth, above * solid_angle * _window(distance)
+    above = sine > 0
+    distance = np.broadcast_to(distance, sine.shape)[above]
+    return distance, sine[above], azimuth[above], (sine * solid_angle)[above] * _window(distance)
+
+
+def _toward_height(sine: Array) -> Array:
+    """Weights of the view elevations of the whole sky at others, given by their sines: (n, zenith).
+
+    A polynomial in the square root of the sine, in which those elevations are nodes of a Gaussian rule.
+    """
+    node = np.sqrt(_whole_sky()[0])
+    basis = np.polynomial.legendre.legvander(2 * node - 1, len(node) - 1)
+    wanted = np.polynomial.legendre.legvander(2 * np.sqrt(np.minimum(sine, 1)) - 1, len(node) - 1)
+    return np.linalg.solve(basis.T, wanted.T).T
+
+
+def _toward_azimuth(azimuth: Array) -> Array:
+    """Weights of the azimuths of the whole sky at others [rad], (n, azimuth): cosine waves through them."""
+    node = _whole_sky()[1]
+    wave = np.arange(len(node))
+    return np.cos(azimuth[:, None] * wave) @ np.linalg.inv(np.cos(node[:, None] * wave))
 
 
 def _window(distance: Array) -> Array:

@@ -44,7 +44,8 @@ class RaySource(Protocol):
         """Source [1/sr], (line, crossing, wavelength); of the sun's zenith angle and azimuth, (line, crossing)."""
 
 
-_LINES_AT_ONCE = 64
+_AT_ONCE = 3000  # lines of sight times wavelengths, and
+_LEAST_LINES = 64
 
 
 @dataclass(frozen=True, eq=False)
@@ -101,14 +102,7 @@ class Station:
         """
         a, b = scatterers.a, scatterers.b
         result = np.zeros((len(lines.view_cosine), 3, len(a)))
-        everything = np.arange(len(self.shells.altitude_km))
-        for fan, ray, chosen in self.blocks(lines, everything):
-            level, cos_there, _, _ = along(fan, ray, lines, chosen)
-            beam = self.table.at(level, cos_there)
-            molecules, *haze = (
-                np.einsum("bql,ql->bl", beam, weight[ray][fan.reached[ray]].astype(np.float32), optimize=False)
-                for weight in fan.weight
-            )
+        for chosen, (molecules, *haze) in self._met(lines):
             _, h, v = _sight_axes(lines, chosen)
             hh, vv, hv = (0.5 * (x.rho * y.rho + x.alpha * y.alpha)[:, None] for x, y in ((h, h), (v, v), (h, v)))
             result[chosen, 0] = molecules * (a * (hh + vv) + 2 * b)
@@ -118,6 +112,22 @@ class Station:
                 seen = self.table.apparent(self.start, lines.solar_zenith[chosen])
                 result[chosen, 0] += haze[0] * phase(_cosine_to_sun(lines, chosen, seen)) / (4 * np.pi)
         return result
+
+    def met_by_haze(self, lines: Lines) -> Array:
+        """What the phase function multiplies in light that haze scatters once, (line, wavelength) [1/sr]."""
+        result = np.zeros((len(lines.view_cosine), self.shells.extinction_depth.shape[1]))
+        for chosen, (_, haze) in self._met(lines):
+            result[chosen] = haze / (4 * np.pi)
+        return result
+
+    def _met(self, lines: Lines) -> Iterator[tuple[NDArray[np.intp], list[Array]]]:
+        """Yield indices of some lines, and what each scatterer sends along them from the beam, (line, wavelength)."""
+        everything = np.arange(len(self.shells.altitude_km))
+        for fan, ray, chosen in self.blocks(lines, everything):
+            level, cos_there, _, _ = along(fan, ray, lines, chosen)
+            beam = self.table.at(level, cos_there)
+            weights = (weight[ray][fan.reached[ray]].astype(np.float32) for weight in fan.weight)
+            yield chosen, [np.einsum("bql,ql->bl", beam, weight, optimize=False) for weight in weights]
 
     def multiple(
         self,
@@ -182,9 +192,10 @@ class Station:
         view, which = np.unique(lines.view_cosine, return_inverse=True)
         fan = self._fan(view, boundaries)
         order = np.argsort(which, kind="stable")
+        at_once = max(_AT_ONCE // self.shells.extinction_depth.shape[1], _LEAST_LINES)
         for part in np.split(order, np.searchsorted(which[order], np.arange(1, len(view)))):
-            for first in range(0, len(part), _LINES_AT_ONCE):
-                yield fan, int(which[part[0]]), part[first : first + _LINES_AT_ONCE]
+            for first in range(0, len(part), at_once):
+                yield fan, int(which[part[0]]), part[first : first + at_once]
 
     def _fan(self, view: Array, boundaries: NDArray[np.intp]) -> Crossings:
         shells = self.shells

@@ -91,6 +91,18 @@ class Sky:
         )
         return stokes.reshape(*shape, *stokes.shape[1:])
 
+    def met_by_haze(
+        self,
+        solar_elevation_deg: ArrayLike,
+        view_elevation_deg: ArrayLike,
+        relative_azimuth_deg: ArrayLike,
+        altitude_km: float = 0.0,
+    ) -> Array:
+        """What the haze's phase function multiplies in ``single``, (..., wavelength). Hazy air only."""
+        shape, lines = lines_of_sight(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
+        met = self._station(altitude_km).met_by_haze(lines)
+        return met.reshape(*shape, met.shape[1])
+
     def multiple(
         self,
         solar_elevation_deg: ArrayLike,
@@ -131,7 +143,7 @@ class Sky:
         light = over_hemisphere(self.single, solar_elevation_deg, altitude_km)
         if self.air.haze is not None:
             seen = self.apparent_elevation_deg(solar_elevation_deg, altitude_km)
-            light += peak_missed(self.single, solar_elevation_deg, seen, altitude_km)
+            light += peak_missed(self.met_by_haze, self.air.haze.phase_at, solar_elevation_deg, seen, altitude_km)
         return light
 
     def multiple_irradiance(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:

@@ -77,14 +77,15 @@ class SpectralSky:
         diffuse = over_hemisphere(self.stokes, solar_elevation_deg)
         seen = self.apparent_elevation_deg(solar_elevation_deg)
         if self.once.air.haze is not None:
-            diffuse += peak_missed(self._single, solar_elevation_deg, seen)
+            diffuse += peak_missed(self._met_by_haze, self.once.air.haze.phase_at, solar_elevation_deg, seen)
         height = np.sin(np.radians(seen))
         return diffuse, np.maximum(height, 0)[..., None] * self.beam(solar_elevation_deg)
 
-    def _single(self, sun_deg: ArrayLike, view_deg: ArrayLike, azimuth_deg: ArrayLike) -> Array:
-        """The part of ``stokes`` scattered once from the beam."""
+    def _met_by_haze(self, sun_deg: ArrayLike, view_deg: ArrayLike, azimuth_deg: ArrayLike) -> Array:
+        """What the haze's phase function multiplies in the light scattered once from the beam, (..., 48)."""
         angles = sun_deg, view_deg, azimuth_deg
-        return self.once.single(*angles, self.settings.altitude_km) * self._lines_leave(*angles)[0]
+        left = self._lines_leave(*angles)[0][..., 0, :]
+        return self.once.met_by_haze(*angles, self.settings.altitude_km) * left
 
     def _lines_leave(self, sun_deg: ArrayLike, view_deg: ArrayLike, azimuth_deg: ArrayLike) -> tuple[Array, Array]:
         """What lines leave of light by its path from the sun, and by the line of sight alone, each (..., 1, 48)."""
