@@ -13,6 +13,7 @@ PAGES = (
 )
 WIDTHS = (390, 720, 1024, 1440, 2560)
 SHEETS = ("molecular/sun+20.html", "molecular/sun-08.html")
+SWATCHES = (*SHEETS, "molecular/view-45-beside.html", "compare/sun+20.html", "molecular/light.html")
 LONGEST_LUMINANCE = "0.000932"
 
 
@@ -112,7 +113,7 @@ def test_a_telephone_shows_three_numbers_beside_the_labels(watch, site, path):
     assert whole >= 3
 
 
-@pytest.mark.parametrize("path", [*SHEETS, "molecular/view-45-beside.html", "compare/sun+20.html", "molecular/light.html"])
+@pytest.mark.parametrize("path", SWATCHES)
 def test_the_dark_changes_no_swatch(watch, site, path):
     """Blocks, their ink and their surround have the same colours in the light and in the dark room."""
     seen = [
