@@ -9,7 +9,7 @@ from skychart.pages.site import READER_PATH, Atlas
 
 _SCRIPTS = (
     *("reader-numbers", "reader-colour", "reader-sun", "reader-data", "reader-sky", "reader-picture"),
-    *("reader-reading", "reader-state", "reader-widgets", "reader"),
+    *("reader-reading", "reader-words", "reader-state", "reader-widgets", "reader-scope", "reader"),
 )
 
 

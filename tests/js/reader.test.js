@@ -8,8 +8,8 @@ const { test } = require("node:test");
 
 const scripts = path.join(__dirname, "..", "..", "templates", "static");
 const load = (name) => require(path.join(scripts, `reader-${name}.js`));
-const [numbers, colour, sun, data, sky, picture, reading, state] = [
-  ...["numbers", "colour", "sun", "data", "sky", "picture", "reading", "state"].map(load),
+const [numbers, colour, sun, data, sky, picture, reading, words, state] = [
+  ...["numbers", "colour", "sun", "data", "sky", "picture", "reading", "words", "state"].map(load),
 ];
 const cases = JSON.parse(readFileSync(process.env.SKYCHART_CASES, "utf8"));
 const { constants } = cases;
@@ -234,6 +234,39 @@ test("the list as CSV has remarks, a head, a row for each reading, and relates t
   near(Number(second[head.indexOf("stops_above_first")]), Math.log2(two / one), 0.02, "stops");
   const [row] = reading.csvOf([readings[0]], constants).split("\n").slice(1);
   assert.equal(`${row},0.00,0.0`, lines[2]);
+});
+
+test("the lines of a reading are its numbers, with RGB in the chosen space, also over display white", () => {
+  const found = reading.readingOf(sky.skyOf(air, 12), 45, 90, constants);
+  const lines = words.linesOf(found, { white: 2 * found.XYZ[1], space: "bt2020", bearing: null }, constants);
+  const texts = Object.fromEntries(lines.map(([name, unit, ...values]) => [`${name} ${unit}`.trim(), values]));
+  assert.equal(Object.keys(texts).length, lines.length, "no two lines have one name");
+  relative(Number(texts["Luminance cd/m²"][0]), found.luminance_cd_m2, 0.005, "luminance");
+  const [linear, shown] = ["BT.2020 linear", "BT.2020, display white 1"].map((name) => texts[name].map(Number));
+  found.rgb.bt2020.forEach((value, i) => {
+    relative(linear[i], value, 0.005, "linear");
+    relative(shown[i], value / (2 * found.XYZ[1]), 0.005, "over display white");
+  });
+  assert.deepEqual(texts["sRGB code card white"], [found.srgb_hex]);
+  assert.deepEqual(texts["sRGB code as shown"], [colour.hex(found.XYZ, 2 * found.XYZ[1], constants)]);
+  const turned = words.linesOf(found, { white: 1, space: "srgb", bearing: 300.04 }, constants);
+  assert.deepEqual(turned.at(-1), ["Bearing of the view", "° from north", "300.0"]);
+  assert.equal(turned.length, lines.length + 1);
+});
+
+test("a direction is named with true minus, and spoken with its units", () => {
+  const direction = { elevation: 2.5, azimuth: -90 };
+  assert.equal(words.titleOf(direction), "2.5° up, −90° from the sun");
+  const found = reading.readingOf(sky.skyOf(air, 12), 2.5, -90, constants);
+  const spoken = words.spokenOf(direction, found);
+  assert.ok(spoken.startsWith("2.5° up, −90° from the sun: "), spoken);
+  assert.match(spoken, /: \d+ candela per square metre, exposure value \d+\.\d, x 0\.\d{3}, y 0\.\d{3}, #[0-9a-f]{6}$/);
+});
+
+test("a list tells the air of those atmospheres alone that are in it", () => {
+  const atmospheres = ["clear", "hazy", "ridge"].map((name) => ({ name, air: `air of ${name}` }));
+  const remarks = words.remarksOf([{ atmosphere: "ridge" }, { atmosphere: "clear" }], { version: "1", observer: "o", atmospheres });
+  assert.deepEqual(remarks.filter((remark) => remark.includes("air of")), ["clear: air of clear", "ridge: air of ridge"]);
 });
 
 test("an address brings back the state it was made from", () => {

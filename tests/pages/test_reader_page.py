@@ -41,7 +41,7 @@ def test_all_scripts_of_the_reader_are_loaded_pure_ones_first(site):
     places = {name: text.index(f'src="static/{name}" defer') for name in names}
     assert len(names) > 5
     assert max(places, key=lambda name: places[name]) == "reader.js"
-    assert places["reader-data.js"] < places["reader-sky.js"] < places["reader-reading.js"]
+    assert places["reader-data.js"] < places["reader-sky.js"] < places["reader-reading.js"] < places["reader-words.js"]
 
 
 def test_the_observer_is_that_of_the_settings():
@@ -55,7 +55,8 @@ def test_the_observer_is_that_of_the_settings():
 
 
 def test_limits_that_the_script_repeats_are_those_of_the_pages():
-    """The same deep twilight and the same change of ink; the script cannot import them."""
-    script = (templates_folder() / "static" / "reader.js").read_text(encoding="utf-8")
+    """The same deep twilight and the same change of ink; scripts cannot import them."""
+    folder = templates_folder() / "static"
+    script, scope = ((folder / name).read_text(encoding="utf-8") for name in ("reader.js", "reader-scope.js"))
     assert f"DEEP_TWILIGHT_DEG = {DEEP_TWILIGHT_DEG:g};" in script
-    assert f"INK_THRESHOLD = {INK_THRESHOLD:g};" in script
+    assert f"INK_THRESHOLD = {INK_THRESHOLD:g};" in scope
