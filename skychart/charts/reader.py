@@ -26,10 +26,11 @@ from skychart.colour.spaces import SPACES, rgb
 from skychart.colour.temperature import planckian_locus
 
 READER_SUNS_DEG = (
-    *(-12.0, -11.0, -10.0, -9.0, -8.0, -7.0, -6.0, -5.0, -4.0, -3.0, -2.0, -1.0, 0.0, 0.5, 1.0, 1.5, 2.0, 2.5, 3.0),
-    *(3.5, 4.0, 4.5, 5.0, 6.0, 8.0, 10.0, 12.0, 15.0, 20.0, 25.0, 30.0, 35.0, 40.0, 50.0, 60.0, 68.0, 75.0, 82.0, 90.0),
+    *(-12.0, -11.5, -11.0, -10.5, -10.0, -9.0, -8.0, -7.0, -6.0, -5.0, -4.0, -3.0, -2.0, -1.5, -1.0, -0.5, 0.0, 0.5),
+    *(1.0, 1.5, 2.0, 2.5, 3.0, 3.5, 4.0, 4.5, 5.0, 6.0, 8.0, 10.0, 12.0, 15.0, 20.0, 25.0, 30.0, 35.0, 40.0, 50.0),
+    *(60.0, 68.0, 75.0, 82.0, 90.0),
 )
-"""Suns between which the page interpolates, as few as keep luminance within 1 % by day; close where haze reddens."""
+"""Suns between which the page interpolates, as few as keep its errors; close where haze reddens or the light ends."""
 
 LIGHT_SUNS_DEG = tuple(sorted({*READER_SUNS_DEG, *np.arange(-0.5, 2, 0.125).tolist(), *np.arange(2, 6, 0.5).tolist()}))
 """Suns of the direct light and of refraction, which change fast near the horizon and cost little."""

@@ -11,7 +11,7 @@ from skychart.charts.direction import direction_sheet
 from skychart.charts.display import display_sheet
 from skychart.charts.light import SunLight, light_sheet
 from skychart.charts.overview import overview
-from skychart.charts.reader import READER_SUNS_DEG, ReaderSky, reader_sky
+from skychart.charts.reader import READER_SUNS_DEG, reader_sky
 from skychart.charts.sheet import elevation_sheet
 from skychart.charts.survey import DIRECTIONS, Survey, at_suns, survey
 from skychart.checks import COMPARED_AIRS, PIECES, Check, by_topic, sky_checks
@@ -48,10 +48,10 @@ class BuildReport:
 
 @dataclass(frozen=True)
 class Solved:
-    """What is kept of a solved sky, which itself is too large to be handed about."""
+    """What is kept of a solved sky, which itself is too large to be handed about: `files` are the reader's."""
 
     survey: Survey
-    reader: ReaderSky
+    files: dict[str, bytes]
     checks: tuple[Check, ...]
 
 
@@ -68,18 +68,20 @@ def build_site(settings: Settings, out: Path, jobs: int, progress: Callable[[str
     with workers(jobs) as pool:
         solving = [_submit_air(pool, air, settings, progress) for air in settings.atmospheres]
         checking = _submit_checks(pool, settings)
-        surveys = [done.result().survey for done in solving]
-        rendering = [work for found in surveys for work in _submit_pages(pool, atlas, found)]
+        solved = [done.result() for done in solving]
+        surveys = [sky.survey for sky in solved]
+        rendering = [pool.submit(_display, atlas, found) for found in surveys]  # first, as it takes longest
+        rendering += [work for found in surveys for work in _submit_pages(pool, atlas, found)]
         rendering += _submit_comparisons(pool, atlas, surveys)
+        progress("comparing with published values")
+        checks = by_topic([*(sky.checks for sky in solved), *(done.result() for done in checking)])
+        rendering.append(pool.submit(methods_files, atlas, methods(checks, _measured_alike(surveys))))
         for count, done in enumerate(as_completed(rendering), start=1):
             files |= done.result()
             progress(f"page {count} of {len(rendering)}")
-        progress("comparing with published values")
-        checks = by_topic([*(done.result().checks for done in solving), *(done.result() for done in checking)])
-    for solved in solving:
-        files |= reader_data_files(solved.result().reader)
+    for sky in solved:
+        files |= sky.files
     files |= reader_files(atlas)
-    files |= methods_files(atlas, methods(checks, _measured_alike(surveys)))
     progress("writing")
     swap_in(files, out)
     return BuildReport(
@@ -115,7 +117,7 @@ def _solved(
     sky = solve(air)
     suns = settings.solar_elevations_deg
     found = survey(sky, tuple(sorted({*suns, *READER_SUNS_DEG})), settings.observer)
-    return Solved(at_suns(found, suns), reader_sky(sky, found), compare(sky))
+    return Solved(at_suns(found, suns), reader_data_files(reader_sky(sky, found)), compare(sky))
 
 
 def _submit_checks(pool: Executor, settings: Settings) -> list[Future[tuple[Check, ...]]]:
@@ -136,7 +138,7 @@ def _compared(
 
 
 def _submit_pages(pool: Executor, atlas: Atlas, found: Survey) -> list[Future[dict[str, bytes]]]:
-    """Every page of one atmosphere as work for the pool."""
+    """Every page of one atmosphere but its display sheet as work for the pool."""
     suns = range(len(found.solar_elevation_deg))
     light = light_sheet(found)
     return [
@@ -144,7 +146,6 @@ def _submit_pages(pool: Executor, atlas: Atlas, found: Survey) -> list[Future[di
         pool.submit(light_files, atlas, light),
         *(pool.submit(_sheet, atlas, found, sun, light.suns[sun]) for sun in suns),
         *(pool.submit(direction_files, atlas, direction_sheet(found, view)) for view in DIRECTIONS),
-        pool.submit(_display, atlas, found),
     ]
 
 
@@ -154,7 +155,7 @@ def _sheet(atlas: Atlas, found: Survey, sun: int, light: SunLight) -> dict[str, 
 
 
 def _display(atlas: Atlas, found: Survey) -> dict[str, bytes]:
-    """In a worker too."""
+    """In a worker, for 28 suns take seconds."""
     return display_files(atlas, display_sheet(found))
 
 

@@ -54,7 +54,7 @@ def peak_missed(
 
 
 def _missing(phase: Phase, seen: float) -> Array:
-    """Weights that light met in the directions of the whole sky lacks, (direction, wavelength), sun at ``seen`` [rad]."""
+    """Weights that light met in directions of the whole sky lacks, (direction, wavelength); sun at ``seen`` [rad]."""
     cosine, azimuth, weight = _whole_sky()
     across = np.sqrt(1 - cosine**2)[:, None] * np.cos(azimuth)
     to_sun = (cosine[:, None] * np.sin(seen) + across * np.cos(seen)).ravel()
