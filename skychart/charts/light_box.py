@@ -6,9 +6,9 @@ import numpy as np
 
 from skychart.charts.exposure import Exposure, Swatch, swatches
 from skychart.charts.ground import Fact
-from skychart.charts.harmonics import HARMONICS
+from skychart.charts.harmonics import EVEN, HARMONICS
 from skychart.charts.light import BOTH, PARTS, SHADOW, SUN, LightSheet, SunLight
-from skychart.charts.light_tables import CHOSEN, SYMMETRIC, harmonic_title, scientific, signed
+from skychart.charts.light_tables import CHOSEN, harmonic_title, scientific, signed
 from skychart.charts.numbers import fixed, kelvin, significant, spaced
 from skychart.charts.planes import PLANES
 
@@ -61,9 +61,7 @@ def light_box(light: SunLight) -> LightBox:
         planes=tuple(plane.title for plane in PLANES),
         rows=tuple(_row(light, part) for part in parts),
         shadow=tuple(_shadow(light, index) for index in range(len(PLANES))),
-        coefficients=tuple(
-            NumberLine(harmonic_title(HARMONICS[i]), _rgb(light.coefficients["srgb"][i])) for i in SYMMETRIC
-        ),
+        coefficients=tuple(NumberLine(harmonic_title(HARMONICS[i]), _rgb(light.coefficients["srgb"][i])) for i in EVEN),
     )
 
 

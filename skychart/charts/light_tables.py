@@ -6,7 +6,7 @@ from collections.abc import Callable, Iterable, Sequence
 import numpy as np
 
 from skychart.charts.columns import Column, NumberTable, Row
-from skychart.charts.harmonics import HARMONICS, Harmonic
+from skychart.charts.harmonics import EVEN, HARMONICS, Harmonic
 from skychart.charts.light import AWAY, BOTH, PARTS, SHADOW, SUN, UNDERSIDE, LightSheet, SunLight
 from skychart.charts.numbers import fixed, kelvin, significant, spaced
 from skychart.charts.planes import LEVEL, PLANES
@@ -19,9 +19,6 @@ CHOSEN = (
     ("underside-shadow", "Underside", UNDERSIDE, SHADOW),
 )
 """Key, title, plane and part of the lights whose colours the page gives."""
-
-SYMMETRIC = tuple(index for index, term in enumerate(HARMONICS) if term.order >= 0)
-"""The harmonics that a sky symmetric about the sun's vertical has; the others, odd in y, are 0."""
 
 _LABELS = (Column("solar_elevation_deg", "Sun", "", ""),)
 _Cell = tuple[Column, Callable[[SunLight], str]]
@@ -69,7 +66,7 @@ def coefficient_table(sheet: LightSheet) -> NumberTable:
     """Coefficients of sky and ground, without those that are 0, in linear sRGB."""
     cells = [
         (Column(f"{HARMONICS[i].name}_{c}", c, "", harmonic_title(HARMONICS[i])), _coefficient(i, channel))
-        for i in SYMMETRIC
+        for i in EVEN
         for channel, c in enumerate("RGB")
     ]
     return _table(sheet, cells)

@@ -10,7 +10,7 @@ import numpy as np
 
 from skychart.charts.around import directions_around, unit_vectors
 from skychart.charts.dome import light_at
-from skychart.charts.harmonics import basis
+from skychart.charts.harmonics import basis, fitted
 from skychart.charts.survey import SkyView, Survey
 
 
@@ -44,8 +44,8 @@ class PlaneLight:
     """Light on `PLANES` for all suns of a survey.
 
     `sun_XYZ`, `sky_XYZ` and `ground_XYZ` [lx] (sun, plane, XYZ): the beam, what comes from above the horizon and from
-    below it. `coefficients_XYZ` [cd m⁻²] (sun, 9, XYZ): the light of sky and ground in `HARMONICS`. `normals`
-    (sun, plane, 3) as `unit_vectors` has them.
+    below it. `coefficients_XYZ` [cd m⁻²] (sun, 9, XYZ): sky and ground in `HARMONICS`, fitted to the planes.
+    `normals` (sun, plane, 3) as `unit_vectors` has them.
     """
 
     sun_XYZ: np.ndarray
@@ -66,6 +66,7 @@ def plane_light(survey: Survey) -> PlaneLight:
     found = [surrounding_light(survey.sky_view(sun), normals[sun]) for sun in suns]
     sky, ground, coefficients = (np.stack(part) for part in zip(*found, strict=True))
     sky[:, LEVEL] = survey.sky_XYZ
+    coefficients = np.stack([fitted(*of_sun) for of_sun in zip(coefficients, normals, sky + ground, strict=True)])
     beams = unit_vectors(survey.apparent_elevation_deg, 0.0)
     cosines = np.einsum("spv,sv->sp", normals, beams)
     sun_XYZ = np.where(cosines > _GRAZING, cosines, 0)[..., None] * survey.beam_XYZ[:, None]
@@ -81,7 +82,7 @@ def plane_normals(survey: Survey, sun: int) -> np.ndarray:
 
 
 def surrounding_light(view: SkyView, normals: np.ndarray) -> tuple[np.ndarray, np.ndarray, np.ndarray]:
-    """Sky and ground [lx] on planes (plane, 3), each (plane, XYZ), and the nine coefficients [cd m⁻²] (9, XYZ)."""
+    """Sky and ground [lx] on planes (plane, 3), each (plane, XYZ), and nine integrals [cd m⁻²] (9, XYZ)."""
     around = directions_around(view.sun_elevation_deg)
     light = light_at(view, around.elevation_deg, around.azimuth_deg) * around.solid_angle_sr[:, None]
     halves = around.vectors, around.vectors * _MIRRORED

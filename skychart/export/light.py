@@ -9,9 +9,10 @@ from skychart.charts.planes import PLANES
 from skychart.export.tables import plain
 
 CONVENTION = (
-    "sky and ground as the sum of coefficient times Y over the nine, for light whose white of 1 cd/m2 is 1, 1, 1; unit "
-    "vector: x toward the sun's azimuth, y to the side of relative azimuth 90, z up; Y real, orthonormal over the "
-    "sphere, without alternating sign: "
+    "sky and ground as the sum of coefficient times Y over the nine, for light whose white of 1 cd/m2 is 1, 1, 1; the "
+    "integrals of light times Y, moved a little so that the six planes come out right; unit vector: x toward the sun's "
+    "azimuth, y to the side of relative azimuth 90, z up; Y real, orthonormal over the sphere, without alternating "
+    "sign: "
     + ", ".join(f"{term.name} {term.factor:.6f}({term.polynomial})" for term in HARMONICS)
     + "; a plane receives the sum of A times coefficient times Y(normal), A = pi, 2 pi/3, pi/4 for degree 0, 1, 2 "
     "(Ramamoorthi and Hanrahan 2001, doi:10.1145/383259.383317)"
