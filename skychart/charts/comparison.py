@@ -5,10 +5,10 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from skychart.charts.exposure import Exposure, Swatch, exposures, swatches
+from skychart.charts.exposure import Exposure, exposures, swatches
 from skychart.charts.ground import ground
-from skychart.charts.numbers import degrees, fixed, kelvin, significant, spaced
-from skychart.charts.sheet import DEEP_TWILIGHT_DEG, apparent_label, sheet_stem
+from skychart.charts.numbers import degrees, fixed, kelvin, short_xy, significant, spaced
+from skychart.charts.sheet import DEEP_TWILIGHT_DEG, Block, apparent_label, sheet_stem
 from skychart.charts.survey import DIRECTIONS, Direction, SkyView, Survey, azimuth_index, elevation_index
 from skychart.colour.describe import describe
 
@@ -23,21 +23,11 @@ class ComparedSky:
 
 
 @dataclass(frozen=True)
-class ComparedColour:
-    """A colour of one sky as a block with two lines, and the row of its sheet that has all its numbers."""
-
-    swatch: Swatch
-    lines: tuple[str, str]
-    anchor: str
-    span: int = 1
-
-
-@dataclass(frozen=True)
 class ColourRow:
-    """One direction in every sky."""
+    """One direction in every sky; a block leads to the row of its sheet that has all its numbers."""
 
     label: str
-    blocks: tuple[ComparedColour, ...]
+    blocks: tuple[Block, ...]
 
 
 @dataclass(frozen=True)
@@ -100,8 +90,8 @@ def _colour_row(surveys: Sequence[Survey], sun: int, direction: Direction, expos
     anchor = f"e{view:02.0f}a{azimuth:03.0f}"
     blocks = []
     for colour, swatch in zip(XYZ, swatches(XYZ, exposure), strict=True):
-        x, y = (fixed(float(value), 3).removeprefix("0") for value in colour[:2] / colour.sum())
-        blocks.append(ComparedColour(swatch, (spaced(significant(float(colour[1]), 3)), f"{x} {y}"), anchor))
+        lines = spaced(significant(float(colour[1]), 3)), short_xy(colour[:2] / colour.sum())
+        blocks.append(Block(swatch, lines, anchor))
     return ColourRow(direction.title, tuple(blocks))
 
 

@@ -9,7 +9,7 @@ from skychart.charts.ground import Fact
 from skychart.charts.harmonics import EVEN, HARMONICS
 from skychart.charts.light import BOTH, PARTS, SHADOW, SUN, LightSheet, SunLight
 from skychart.charts.light_tables import CHOSEN, harmonic_title, scientific, signed
-from skychart.charts.numbers import fixed, kelvin, significant, spaced
+from skychart.charts.numbers import fixed, kelvin, short_xy, significant, spaced
 from skychart.charts.planes import PLANES
 
 _SHOWN_LUMINANCE = 0.4
@@ -68,13 +68,12 @@ def light_box(light: SunLight) -> LightBox:
 def chosen_lights(sheet: LightSheet) -> tuple[LightRow, ...]:
     """The sun and the chosen lights of the light sheet, a swatch for each sun, with their colour temperature."""
     sun = tuple(
-        _cell(light.XYZ[0, SUN], (spaced(kelvin(light.beam.cct_k)), _chromaticity(light.beam.xy)))
-        for light in sheet.suns
+        _cell(light.XYZ[0, SUN], (spaced(kelvin(light.beam.cct_k)), short_xy(light.beam.xy))) for light in sheet.suns
     )
     rows = [LightRow("Sun", sun)]
     for _, title, plane, part in CHOSEN:
         cells = tuple(
-            _cell(light.XYZ[plane, part], (_kelvin(light, plane, part), _chromaticity(light.xy[plane, part])))
+            _cell(light.XYZ[plane, part], (_kelvin(light, plane, part), short_xy(light.xy[plane, part])))
             for light in sheet.suns
         )
         rows.append(LightRow(title, cells))
@@ -103,7 +102,7 @@ def _pair(first: float, second: float, decimals: int) -> str:
 
 def _row(light: SunLight, part: int) -> LightRow:
     cells = tuple(
-        _cell(light.XYZ[plane, part], (_lux(light, plane, part), _chromaticity(light.xy[plane, part])))
+        _cell(light.XYZ[plane, part], (_lux(light, plane, part), short_xy(light.xy[plane, part])))
         for plane in range(len(PLANES))
     )
     return LightRow(PARTS[part][1], cells)
@@ -135,7 +134,3 @@ def _lux(light: SunLight, plane: int, part: int) -> str:
 
 def _kelvin(light: SunLight, plane: int, part: int) -> str:
     return spaced(kelvin(float(light.cct_k[plane, part])))
-
-
-def _chromaticity(xy: np.ndarray) -> str:
-    return " ".join(fixed(float(value), 3).removeprefix("0") for value in xy)

@@ -1,6 +1,7 @@
 """How numbers are rounded and written: plain for files and copying, spaced for reading."""
 
 import math
+from collections.abc import Iterable
 
 MISSING = "—"
 _THIN_SPACE = "\u2009"
@@ -14,6 +15,11 @@ def fixed(value: float, decimals: int) -> str:
         return ""
     text = f"{value:.{decimals}f}"
     return text.removeprefix("-") if float(text) == 0 else text
+
+
+def short_xy(xy: Iterable[float]) -> str:
+    """A chromaticity x y of 3 decimals without the zeros before the point, as on a block of colour."""
+    return " ".join(fixed(float(value), 3).removeprefix("0") for value in xy)
 
 
 def significant(value: float, digits: int) -> str:

@@ -17,7 +17,7 @@ from skychart.charts.curves import (
 )
 from skychart.charts.exposure import Exposure, Swatch, exposures, swatches
 from skychart.charts.ground import Ground, ground
-from skychart.charts.numbers import degrees, fixed, signed_stem, significant, spaced
+from skychart.charts.numbers import degrees, fixed, short_xy, signed_stem, significant, spaced
 from skychart.charts.reading import Reading, read_colours
 from skychart.charts.stops import SheetStops, sheet_stops
 from skychart.charts.survey import SkyView, Survey, azimuth_index, elevation_index
@@ -166,8 +166,7 @@ def sun_uv(survey: Survey, sun: int) -> np.ndarray | None:
 def block(reading_index: int, readings: Reading, swatch: Swatch, anchor: str, span: int = 1) -> Block:
     """A block that prints luminance and chromaticity."""
     luminance = spaced(significant(float(readings.luminance_cd_m2[reading_index]), 3))
-    x, y = (fixed(float(value), 3).removeprefix("0") for value in readings.xy[reading_index])
-    return Block(swatch, (luminance, f"{x} {y}"), anchor, span)
+    return Block(swatch, (luminance, short_xy(readings.xy[reading_index])), anchor, span)
 
 
 def stops_block(luminance_cd_m2: float, display_white_cd_m2: float, swatch: Swatch, anchor: str) -> Block:

@@ -25,9 +25,10 @@ from skychart.sky.interpolation import spline_matrix
 from skychart.sky.local import FlatAir, FlatField, FlatLight, one_scattering, solve_closure, solve_flat, through_peak
 from skychart.sky.local.streams import MOMENTS, legendre
 from skychart.sky.molecular import solve_field
-from skychart.sky.observer import Lines, Station
+from skychart.sky.observer import Station
 from skychart.sky.shape import Shape, insert_between
 from skychart.sky.shells import Shells, redistribute
+from skychart.sky.sight import Lines
 
 Array = NDArray[np.float64]
 

@@ -12,10 +12,11 @@ from numpy.typing import NDArray
 
 from skychart.sky import air, gases
 from skychart.sky.lines import LineTable
-from skychart.sky.observer import Lines, Station, along
+from skychart.sky.observer import Station
 from skychart.sky.rays import OUTWARD
 from skychart.sky.refraction import BentRays
 from skychart.sky.shells import tangent_altitude
+from skychart.sky.sight import Lines, along
 
 Array = NDArray[np.float64]
 

@@ -18,10 +18,11 @@ from skychart.sky.fan import Fan, first_order
 from skychart.sky.field import Field
 from skychart.sky.grid import Grid, solar_zenith_nodes_deg
 from skychart.sky.interpolation import spline_matrix
-from skychart.sky.observer import Lines, Station
+from skychart.sky.observer import Station
 from skychart.sky.operator import Operator
 from skychart.sky.shape import Shape
 from skychart.sky.shells import Shells
+from skychart.sky.sight import Lines
 
 Array = NDArray[np.float64]
 

@@ -10,13 +10,14 @@ from typing import Protocol
 import numpy as np
 from numpy.typing import NDArray
 
-from skychart.sky import dipole
+from skychart.sky import dipole, sight
 from skychart.sky.atmosphere import Atmosphere
 from skychart.sky.beam import SunTable
 from skychart.sky.field import Field
 from skychart.sky.rays import Crossings, crossings
-from skychart.sky.shape import Shape, insert_between
+from skychart.sky.shape import Shape
 from skychart.sky.shells import Shells, tangent_altitude
+from skychart.sky.sight import Lines
 
 Array = NDArray[np.float64]
 
@@ -46,19 +47,6 @@ class RaySource(Protocol):
 
 _AT_ONCE = 3000  # lines of sight times wavelengths, and
 _LEAST_LINES = 64
-
-
-@dataclass(frozen=True, eq=False)
-class Lines:
-    """Lines of sight: sun, view and azimuth angles [rad], each shape (line,)."""
-
-    solar_zenith: Array
-    view_cosine: Array
-    relative_azimuth: Array
-
-    def some(self, chosen: NDArray[np.bool_]) -> "Lines":
-        """Those that are ``chosen``, (line,)."""
-        return Lines(self.solar_zenith[chosen], self.view_cosine[chosen], self.relative_azimuth[chosen])
 
 
 @dataclass(frozen=True, eq=False)
@@ -103,14 +91,14 @@ class Station:
         a, b = scatterers.a, scatterers.b
         result = np.zeros((len(lines.view_cosine), 3, len(a)))
         for chosen, (molecules, *haze) in self._met(lines):
-            _, h, v = _sight_axes(lines, chosen)
+            _, h, v = sight.axes(lines, chosen)
             hh, vv, hv = (0.5 * (x.rho * y.rho + x.alpha * y.alpha)[:, None] for x, y in ((h, h), (v, v), (h, v)))
             result[chosen, 0] = molecules * (a * (hh + vv) + 2 * b)
             result[chosen, 1] = molecules * a * (hh - vv)
             result[chosen, 2] = molecules * a * -2 * hv
             if phase is not None:
                 seen = self.table.apparent(self.start, lines.solar_zenith[chosen])
-                result[chosen, 0] += haze[0] * phase(_cosine_to_sun(lines, chosen, seen)) / (4 * np.pi)
+                result[chosen, 0] += haze[0] * phase(sight.cosine_to_sun(lines, chosen, seen)) / (4 * np.pi)
         return result
 
     def met_by_haze(self, lines: Lines) -> Array:
@@ -124,7 +112,7 @@ class Station:
         """Yield indices of some lines, and what each scatterer sends along them from the beam, (line, wavelength)."""
         everything = np.arange(len(self.shells.altitude_km))
         for fan, ray, chosen in self.blocks(lines, everything):
-            level, cos_there, _, _ = along(fan, ray, lines, chosen)
+            level, cos_there, _, _ = sight.along(fan, ray, lines, chosen)
             beam = self.table.at(level, cos_there)
             weights = (weight[ray][fan.reached[ray]].astype(np.float32) for weight in fan.weight)
             yield chosen, [np.einsum("bql,ql->bl", beam, weight, optimize=False) for weight in weights]
@@ -142,19 +130,19 @@ class Station:
         Haze sends what ``scatterers`` say, or what ``haze_source`` does.
         """
         a, b, forward = scatterers
-        place = _between_levels(field.level_altitude_km, float(self.shells.altitude_km[self.start]))
+        place = field.between_levels(float(self.shells.altitude_km[self.start]))
         if place is not None:
-            field = _with_level(field, *place)
+            field = field.with_level(*place)
             haze_source = haze_source and haze_source.with_level(*place)
         levels = np.searchsorted(self.shells.altitude_km, field.level_altitude_km)
         result = np.zeros((len(lines.view_cosine), 3, len(a)))
         sent_by_haze = _SentByHaze(haze_source) if haze_source is not None else None
         for fan, ray, chosen in self.blocks(lines, levels):
-            level, cos_there, cosine, sine = along(fan, ray, lines, chosen)
+            level, cos_there, cosine, sine = sight.along(fan, ray, lines, chosen)
             entries = _interpolated(field.tensor_shape, field.tensor, level, cos_there)
             weights = [weight[ray][fan.reached[ray]].astype(np.float32)[:, None] for weight in fan.weight]
-            sight, h, v = _sight_axes(lines, chosen)
-            hh, vv, hv = _source_coefficients(h, v, cosine, sine)
+            omega, h, v = sight.axes(lines, chosen)
+            hh, vv, hv = sight.source_coefficients(h, v, cosine, sine)
             plain = np.broadcast_to(dipole.TRACE, hh.shape)
             tensor = entries[..., : dipole.ENTRIES, :]
             sums = _summed([hh + vv, hh - vv, -2 * hv, plain], tensor * weights[0])
@@ -162,13 +150,13 @@ class Station:
             result[chosen, 0] += 2 * b * sums[:, 3]
             if forward is not None:
                 toward = np.stack(
-                    [np.broadcast_to(sight.s[:, None], cosine.shape), _along_rho(sight, cosine, sine)], -1
+                    [np.broadcast_to(omega.s[:, None], cosine.shape), sight.along_rho(omega, cosine, sine)], -1
                 )
                 trace = _summed([plain], tensor * weights[1])[:, 0]
                 flux = _summed([toward], entries[..., dipole.ENTRIES :, :] * weights[1])[:, 0]
                 result[chosen, 0] += 2 * dipole.ISOTROPIC * (trace + forward * flux)
             if sent_by_haze is not None:
-                light = sent_by_haze.at(fan, ray, sight, float(lines.view_cosine[chosen[0]]), cos_there, level)
+                light = sent_by_haze.at(fan, ray, omega, float(lines.view_cosine[chosen[0]]), cos_there, level)
                 result[chosen, 0] += np.einsum("bqw,qw->bw", light, weights[1][: light.shape[1], 0])
             if fan.ground[ray].any():
                 lit = self._ground_light(field, fan, ray, lines, chosen)
@@ -209,18 +197,6 @@ class Station:
         return crossings(shells.altitude_km[boundaries], scattering, extinction, start, view, shells.planet_radius_km)
 
 
-def along(
-    fan: Crossings, ray: int, lines: Lines, chosen: NDArray[np.intp]
-) -> tuple[NDArray[np.intp], Array, Array, Array]:
-    """Levels crossed (crossing,); cosine of the solar zenith angle and turn of the axes, each (line, crossing)."""
-    reached = fan.reached[ray]
-    phi, chi = lines.relative_azimuth[chosen, None], lines.solar_zenith[chosen, None]
-    cos_there, cosine, sine = dipole.moved(
-        fan.cos_turn[ray][reached], fan.sin_turn[ray][reached], np.cos(phi), np.sin(phi), np.cos(chi), np.sin(chi)
-    )
-    return np.nonzero(reached)[1], cos_there, cosine, sine
-
-
 class _SentByHaze:
     """Haze's source along ray after ray; what all blocks of lines along one ray need is made once."""
 
@@ -229,7 +205,7 @@ class _SentByHaze:
         self._ray: tuple[int, Array, RaySource] | None = None
 
     def at(
-        self, fan: Crossings, ray: int, sight: dipole.Vector, view_cosine: float, cos_chi: Array,
+        self, fan: Crossings, ray: int, omega: dipole.Vector, view_cosine: float, cos_chi: Array,
         level: NDArray[np.intp],
     ) -> Array:  # fmt: skip
         """Source at the crossings of the lower levels, (line, crossing, wavelength); they come first along a ray."""
@@ -241,48 +217,8 @@ class _SentByHaze:
             self._ray = ray, cosine, self._source.along(cosine, level[low])
         _, cosine, sent = self._ray
         across = np.sqrt(np.maximum((1 - cosine**2) * (1 - cos_chi[:, low] ** 2), 1e-12))
-        azimuth = (sight.s[:, None] - cosine * cos_chi[:, low]) / across
+        azimuth = (omega.s[:, None] - cosine * cos_chi[:, low]) / across
         return sent.at(cos_chi[:, low], np.clip(azimuth, -1, 1))
-
-
-def _cosine_to_sun(lines: Lines, chosen: NDArray[np.intp], solar_zenith: Array) -> Array:
-    """Cosine of the angle between some lines of sight and the sun at ``solar_zenith`` [rad]."""
-    cos_theta = lines.view_cosine[chosen]
-    across = np.sqrt(1 - cos_theta**2) * np.sin(solar_zenith) * np.cos(lines.relative_azimuth[chosen])
-    return cos_theta * np.cos(solar_zenith) + across
-
-
-def _sight_axes(lines: Lines, chosen: NDArray[np.intp]) -> tuple[dipole.Vector, dipole.Vector, dipole.Vector]:
-    """Direction of sight, and across it the horizontal axis and the one in its vertical plane."""
-    cos_theta = lines.view_cosine[chosen]
-    sin_theta = np.sqrt(1 - cos_theta**2)
-    phi, chi = lines.relative_azimuth[chosen], lines.solar_zenith[chosen]
-    trig = np.cos(phi), np.sin(phi), np.cos(chi), np.sin(chi)
-    omega = dipole.sight(cos_theta, sin_theta, *trig)
-    vertical = dipole.sight(-sin_theta, cos_theta, *trig)
-    cos_phi, sin_phi, cos_chi, sin_chi = trig
-    return omega, dipole.Vector(-sin_phi * sin_chi, sin_phi * cos_chi, -cos_phi), vertical
-
-
-def _source_coefficients(h: dipole.Vector, v: dipole.Vector, cosine: Array, sine: Array) -> tuple[Array, Array, Array]:
-    """What the four entries at each crossing give to hh, vv and hv; each (line, crossing, entry)."""
-
-    def turned(x: dipole.Vector) -> dipole.Vector:
-        rho, alpha = x.rho[:, None], x.alpha[:, None]
-        return dipole.Vector(
-            np.broadcast_to(x.s[:, None], cosine.shape), cosine * rho + sine * alpha, cosine * alpha - sine * rho
-        )
-
-    def product(x: dipole.Vector, y: dipole.Vector) -> Array:
-        return np.stack([x.s * y.s, x.s * y.rho + x.rho * y.s, x.rho * y.rho, x.alpha * y.alpha], axis=-1)
-
-    here_h, here_v = turned(h), turned(v)
-    return product(here_h, here_h), product(here_v, here_v), product(here_h, here_v)
-
-
-def _along_rho(sight: dipole.Vector, cosine: Array, sine: Array) -> Array:
-    """Component of the sight along the rho axis of each crossing, (line, crossing)."""
-    return cosine * sight.rho[:, None] + sine * sight.alpha[:, None]
 
 
 def _summed(coefficients: Sequence[Array], entries: NDArray[np.float32]) -> NDArray[np.float32]:
@@ -300,22 +236,3 @@ def _interpolated(
     row = level * values.shape[1] + node
     low, high = (part[..., None, None].astype(np.float32) for part in (lower, upper))
     return low * rows[row] + high * rows[row + 1]
-
-
-def _between_levels(levels: Array, altitude_km: float) -> tuple[int, float] | None:
-    """The level above ``altitude_km`` and the part of the way to it from the one below; None at a level."""
-    if altitude_km in levels:
-        return None
-    upper = int(np.searchsorted(levels, altitude_km))
-    return upper, float((altitude_km - levels[upper - 1]) / (levels[upper] - levels[upper - 1]))
-
-
-def _with_level(field: Field, upper: int, part: float) -> Field:
-    """The field with a level inserted before ``upper``, linear in altitude between its neighbours."""
-    return Field(
-        level_altitude_km=insert_between(field.level_altitude_km, upper, part),
-        tensor_shape=field.tensor_shape.with_level(upper, part),
-        ground_shape=field.ground_shape,
-        tensor=insert_between(field.tensor, upper, part),
-        ground=field.ground,
-    )

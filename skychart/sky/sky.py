@@ -13,8 +13,9 @@ from skychart.sky.grid import Grid
 from skychart.sky.hazy import HAZY_GRID, solve_hazy
 from skychart.sky.hemisphere import over_hemisphere, peak_missed
 from skychart.sky.molecular import MolecularLight, solve_field
-from skychart.sky.observer import Lines, Station
+from skychart.sky.observer import Station
 from skychart.sky.shells import level_altitudes, subdivide
+from skychart.sky.sight import Lines
 
 Array = NDArray[np.float64]
 

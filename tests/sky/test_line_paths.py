@@ -6,8 +6,9 @@ import pytest
 from skychart.sky import Atmosphere, gases
 from skychart.sky.line_paths import LinePaths
 from skychart.sky.lines import band_transmission
-from skychart.sky.observer import Lines, Station
+from skychart.sky.observer import Station
 from skychart.sky.shells import level_altitudes, subdivide
+from skychart.sky.sight import Lines
 
 NODES_NM = np.arange(360.0, 831.0, 10.0)
 WATER_CM = 1.42
