@@ -9,7 +9,7 @@ const readerPicture = (() => {
   const TABLE_COLUMNS = 181; // whole degrees of azimuth
   const PEAK_FINE = 512; // steps of the root of the distance from the sun
 
-  // Smooth logarithms on half degrees of elevation and whole degrees of azimuth, (row, column, XYZ).
+  // The smooth sky's light on half degrees of elevation and whole degrees of azimuth, (row, column, XYZ).
   const tableOf = (sky) => {
     const { air, smooth } = sky;
     const [, columns] = smooth.shape;
@@ -27,9 +27,9 @@ const readerPicture = (() => {
           z += weights[k] * row[3 * k + 2];
         }
         const at = (i * TABLE_COLUMNS + j) * 3;
-        table[at] = x;
-        table[at + 1] = y;
-        table[at + 2] = z;
+        table[at] = Math.exp(x);
+        table[at + 1] = Math.exp(y);
+        table[at + 2] = Math.exp(z);
       }
     }
     return table;
@@ -41,10 +41,10 @@ const readerPicture = (() => {
     const length = PEAK_FINE + 2;
     const table = new Float32Array(4 * length * 3);
     const count = sky.sides.shape[1];
+    air.outward ??= Array.from({ length }, (_, step) => Math.min(step / PEAK_FINE, 1)).map((place) => [air.byPeak(place), air.bySide(place)]);
     for (let step = 0; step < length; step += 1) {
-      const place = Math.min(step / PEAK_FINE, 1);
-      table.set(blended(sky.peak, air.byPeak(place)).values, step * 3);
-      const weights = air.bySide(place);
+      const [peakWeights, weights] = air.outward[step];
+      table.set(blended(sky.peak, peakWeights).values, step * 3);
       for (let arm = 0; arm < 3; arm += 1) {
         const values = sky.sides.values.subarray(arm * count * 3, (arm + 1) * count * 3);
         table.set(blended({ shape: [count, 3], values }, weights).values, ((arm + 1) * length + step) * 3);
@@ -129,9 +129,8 @@ const readerPicture = (() => {
       const [a, b, c, d] = [(1 - s) * (1 - t), (1 - s) * t, s * (1 - t), s * t];
       for (let i = 0; i < 3; i += 1) {
         const j = at + i;
-        found[k + i] = Math.exp(
-          found[k + i] + a * table[j] + b * table[j + 3] + c * table[j + below] + d * table[j + below + 3],
-        );
+        const light = a * table[j] + b * table[j + 3] + c * table[j + below] + d * table[j + below + 3];
+        found[k + i] = found[k + i] === 0 ? light : light * Math.exp(found[k + i]);
       }
     }
     return found;

@@ -6,17 +6,16 @@ const readerReceive = (data) => readerReceive.taken.set(data.atmosphere, data);
 readerReceive.taken = new Map();
 
 (() => {
-  const { fixed, kelvin, short, significant, spaced } = readerNumbers;
-  const { csvOf, readingOf, smallestGamut } = readerReading;
+  const { fixed, short, spaced } = readerNumbers;
+  const { csvOf, readingOf } = readerReading;
+  const { linesOf, remarksOf, spokenOf, titleOf } = readerWords;
   const { copied, delayed, factsOf, pairOf, pinRow } = readerWidgets;
   const { RANGES, hashOf, numberOf, stateOf } = readerState;
 
-  const PIXELS = { "all-sky": () => readerPicture.allSkyPixels(480), panorama: () => readerPicture.panoramaPixels(720) };
   const ADDRESS_DELAY_MS = 200;
   const SPEECH_DELAY_MS = 400;
   const CURVE = { left: 10, width: 220, top: 6, height: 60 }; // in the spectrum's own units
   const DEEP_TWILIGHT_DEG = -6;
-  const INK_THRESHOLD = 0.179; // relative luminance above which black reads better than white (WCAG 2.2)
 
   const byId = (id) => document.getElementById(id);
   const constants = JSON.parse(byId("reader-constants").textContent);
@@ -54,110 +53,18 @@ readerReceive.taken = new Map();
   const displayWhite = () => (state.exposure === "card" ? sky.light.card[1] / 2 ** state.stops : state.white);
   const reading = () => readingOf(sky, shown().elevation, shown().azimuth, constants);
 
-  // Picture
-
-  const canvas = byId("canvas");
-  const wide =
-    matchMedia("(color-gamut: p3)").matches &&
-    canvas.getContext("2d", { colorSpace: "display-p3" })?.getContextAttributes?.().colorSpace === "display-p3";
-  const screenSpace = wide ? "display-p3" : "srgb";
-  const drawing = canvas.getContext("2d", { colorSpace: screenSpace });
-  const prepared = {};
-  const drawn = { sky: null, picture: "", XYZ: null, image: null };
-
-  const drawPicture = () => {
-    const { picture } = state;
-    prepared[picture] ??= PIXELS[picture]();
-    const pixels = prepared[picture];
-    if (drawn.picture !== picture) {
-      [canvas.width, canvas.height] = [pixels.width, pixels.height];
-      drawn.image = drawing.createImageData(pixels.width, pixels.height, { colorSpace: screenSpace });
-    }
-    if (drawn.sky !== sky || drawn.picture !== picture) {
-      drawn.XYZ = readerPicture.pictureOf(sky, pixels);
-      Object.assign(drawn, { sky, picture });
-    }
-    const white = displayWhite();
-    const matrix = constants.spaces[screenSpace].from_xyz.map((row) => row.map((value) => value / white));
-    readerColour.painted(drawn.XYZ, pixels.at, matrix, drawn.image.data);
-    drawing.putImageData(drawn.image, 0, 0);
-  };
-
-  // Where a direction lies in the marks' own units, and which direction a place in them is.
-  const spotOf = (elevation, azimuth) => {
-    if (state.picture === "panorama") {
-      return [azimuth, 90 - elevation];
-    }
-    const [distance, turn] = [(100 * (90 - elevation)) / 90, (azimuth * Math.PI) / 180];
-    return [distance * Math.sin(turn), distance * Math.cos(turn)];
-  };
-
-  const directionAt = (x, y) => {
-    if (state.picture === "panorama") {
-      return { elevation: 90 - y, azimuth: x };
-    }
-    return { elevation: 90 - 0.9 * Math.hypot(x, y), azimuth: (Math.atan2(x, y) * 180) / Math.PI };
-  };
-
-  const marks = () => byId(`marks-${state.picture}`);
-
-  const inkOf = () => {
-    const XYZ = readerSky.directionOf(sky, 60, 90).XYZ;
-    const codes = readerColour.hex(XYZ, displayWhite(), constants).match(/\w\w/g);
-    const linear = codes.map((code) => parseInt(code, 16) / 255).map((v) => (v <= 0.04045 ? v / 12.92 : ((v + 0.055) / 1.055) ** 2.4));
-    return 0.2126 * linear[0] + 0.7152 * linear[1] + 0.0722 * linear[2] > INK_THRESHOLD ? "dark" : "light";
-  };
-
-  const drawMarks = () => {
-    for (const picture of Object.keys(PIXELS)) {
-      byId(`marks-${picture}`).toggleAttribute("hidden", picture !== state.picture);
-    }
-    byId("scope").dataset.picture = state.picture;
-    const ink = inkOf();
-    for (const part of marks().querySelectorAll("[data-ink]")) {
-      part.classList.toggle("dark", ink === "dark");
-      part.classList.toggle("light", ink === "light");
-    }
-    const sun = marks().querySelector("[data-sun]");
-    sun.setAttribute("transform", `translate(${spotOf(Math.max(sky.light.apparent, -9), 0)})`);
-    marks().querySelector("[data-pointer]").setAttribute("transform", `translate(${spotOf(state.elevation, state.azimuth)})`);
-    const space = constants.spaces[screenSpace].title;
-    byId("scope-said").textContent = `Drawn in ${space}; display white ${spaced(significant(displayWhite(), 3))} cd/m².`;
-  };
-
   // Numbers of the direction
 
-  const linesOf = (found) => {
-    const [three, four] = [(value) => significant(value, 3), (value) => fixed(value, 4)];
-    const white = displayWhite();
-    const { title } = constants.spaces[state.space];
-    const bearing = state.placed && place() ? [["Bearing of the view", "° from north", fixed((place().azimuth + shown().azimuth + 360) % 360, 1)]] : [];
-    return [
-      ["Luminance", "cd/m²", three(found.luminance_cd_m2)],
-      ["EV100", "", fixed(found.ev100, 2)],
-      ["Above the white card", "stops", fixed(Math.log2(found.luminance_cd_m2 / found.card_XYZ[1]), 2)],
-      ["X Y Z", "cd/m²", ...found.XYZ.map(three)],
-      ["x y", "", ...found.xy.map(four)],
-      ["u′ v′", "", ...found.uv_prime.map(four)],
-      ["CCT", "K", kelvin(found.cct_k)],
-      ["Duv", "", four(found.duv)],
-      [`${title} linear`, "", ...found.rgb[state.space].map(three)],
-      [`${title}, display white 1`, "", ...found.rgb[state.space].map((value) => three(value / white))],
-      ["Smallest gamut", "", smallestGamut(found, constants)],
-      ["sRGB code", "as shown", readerColour.hex(found.XYZ, white, constants)],
-      ["sRGB code", "card white", found.srgb_hex],
-      ["Polarisation", "degree", fixed(found.polarisation_degree, 3)],
-      ["Polarisation", "angle, °", fixed(found.polarisation_angle_deg, 1)],
-      ...bearing,
-    ];
+  const bearing = () => {
+    const found = state.placed && place();
+    return found ? (found.azimuth + shown().azimuth + 360) % 360 : null;
   };
-
-  const titleOf = ({ elevation, azimuth }) => `${spaced(short(elevation, 2))}° up, ${spaced(short(azimuth, 2))}° from the sun`;
 
   const drawNumbers = () => {
     const found = reading();
+    const lines = linesOf(found, { white: displayWhite(), space: state.space, bearing: bearing() }, constants);
     byId("read-title").textContent = titleOf(shown()) + (hover ? ", under the pointer" : "");
-    byId("numbers").replaceChildren(...linesOf(found).map((line) => pairOf(line, byId("said"))));
+    byId("numbers").replaceChildren(...lines.map((line) => pairOf(line, byId("said"))));
     drawSpectrum(found);
     speak();
   };
@@ -176,10 +83,7 @@ readerReceive.taken = new Map();
   };
 
   const speak = delayed(() => {
-    const found = reading();
-    byId("spoken").textContent =
-      `${titleOf(shown())}: ${significant(found.luminance_cd_m2, 3)} candela per square metre, ` +
-      `exposure value ${fixed(found.ev100, 1)}, x ${fixed(found.xy[0], 3)}, y ${fixed(found.xy[1], 3)}, ${found.srgb_hex}`;
+    byId("spoken").textContent = spokenOf(shown(), reading());
   }, SPEECH_DELAY_MS);
 
   const drawLight = () => {
@@ -217,14 +121,6 @@ readerReceive.taken = new Map();
       ),
     );
   };
-
-  const remarks = () => [
-    "Sky-colour reference charts: reader",
-    `skychart ${constants.version}; ${constants.observer}; interpolated, within 1 % by day and mostly 3 % in twilight`,
-    ...constants.atmospheres.filter(({ name }) => pinned.some((found) => found.atmosphere === name)).map(({ name, air }) => `${name}: ${air}`),
-    "linear RGB is absolute: white at 1 cd/m2 is 1, 1, 1; srgb_hex has a level white card as display white",
-    "stops and CIEDE2000 from the first reading, both beside a level white card in the first one's light",
-  ];
 
   // Sun by place and time
 
@@ -273,13 +169,14 @@ readerReceive.taken = new Map();
 
   const writeAddress = delayed(() => history.replaceState(null, "", `#${hashOf(state)}`), ADDRESS_DELAY_MS);
 
+  const drawScope = readerScope.drawer(constants);
   let due = 0;
   let newest = 0;
 
   const draw = () => {
     due = 0;
-    drawPicture();
-    drawMarks();
+    const { picture, elevation, azimuth } = state;
+    drawScope({ sky, picture, white: displayWhite(), elevation, azimuth });
     drawNumbers();
   };
 
@@ -350,52 +247,17 @@ readerReceive.taken = new Map();
     });
   };
 
-  const turned = (azimuth) => (azimuth > 180 ? azimuth - 360 : azimuth < -180 ? azimuth + 360 : azimuth);
-  const held = (elevation) => Math.min(Math.max(elevation, 0), 90);
-  const tenth = (angle) => Number(fixed(angle, 1));
-
-  const followPicture = () => {
-    const scope = byId("scope");
-    const at = (event) => {
-      const point = new DOMPoint(event.clientX, event.clientY).matrixTransform(marks().getScreenCTM().inverse());
-      return directionAt(point.x, point.y);
-    };
-    const within = ({ elevation, azimuth }) => elevation >= 0 && elevation <= 90 && Math.abs(azimuth) <= 180;
-    const choose = (event) => {
-      const { elevation, azimuth } = at(event);
-      update({ elevation: tenth(held(elevation)), azimuth: tenth(Math.min(Math.max(azimuth, -180), 180)) });
-    };
-    scope.addEventListener("pointerdown", (event) => {
-      if (sky && event.button === 0 && within(at(event))) {
-        scope.setPointerCapture(event.pointerId);
-        choose(event);
-      }
+  const followScope = () =>
+    readerScope.follow({
+      choose: update,
+      hover: (direction) => {
+        if (direction || hover) {
+          hover = direction;
+          drawNumbers();
+        }
+      },
+      step: (up, right) => update(readerScope.moved(state, up, right)),
     });
-    scope.addEventListener("pointermove", (event) => {
-      if (scope.hasPointerCapture(event.pointerId)) {
-        choose(event);
-      } else if (sky && event.pointerType === "mouse") {
-        const direction = at(event);
-        hover = within(direction) ? { elevation: tenth(direction.elevation), azimuth: tenth(direction.azimuth) } : null;
-        drawNumbers();
-      }
-    });
-    scope.addEventListener("pointerleave", () => {
-      if (hover) {
-        hover = null;
-        drawNumbers();
-      }
-    });
-    const steps = { ArrowUp: [1, 0], ArrowDown: [-1, 0], ArrowLeft: [0, -1], ArrowRight: [0, 1] };
-    scope.addEventListener("keydown", (event) => {
-      const step = !(event.altKey || event.ctrlKey || event.metaKey) && steps[event.key];
-      if (step) {
-        event.preventDefault();
-        const size = event.shiftKey ? 10 : 1;
-        update({ elevation: held(state.elevation + size * step[0]), azimuth: turned(state.azimuth + size * step[1]) });
-      }
-    });
-  };
 
   const followButtons = () => {
     const pressed = (id, task) => byId(id).addEventListener("click", task);
@@ -410,7 +272,7 @@ readerReceive.taken = new Map();
     });
     pressed("copy-row", () => copied(csvOf([readingOf(sky, state.elevation, state.azimuth, constants)], constants), byId("said")));
     pressed("copy-link", () => copied(`${location.href.split("#")[0]}#${hashOf(state)}`, byId("said")));
-    pressed("copy-list", () => copied(csvOf(pinned, constants, remarks()), byId("list-said")));
+    pressed("copy-list", () => copied(csvOf(pinned, constants, remarksOf(pinned, constants)), byId("list-said")));
     pressed("clear-pins", () => {
       update({ pins: [] });
       byId("pin").focus();
@@ -436,7 +298,7 @@ readerReceive.taken = new Map();
   }
   byId("placed").addEventListener("input", (event) => update({ placed: event.target.checked }));
   followSlider();
-  followPicture();
+  followScope();
   followButtons();
   followAddress();
   byId("reader").hidden = false;
