@@ -12,7 +12,6 @@ from skychart.colour.adapt import balance
 from skychart.colour.spaces import encode_srgb, rgb
 
 FIXED_WHITE_CD_M2 = 10_000.0
-SURROUND_HEX = "#777777"
 SURROUND_FACTOR = 0.1842
 """Luminance factor of CIE L* 50, the grey around every colour (CIE 15:2018, equation 8.3)."""
 

@@ -122,11 +122,6 @@ def outputs(entries: Sequence[Array], omega: Vector, count: int, cosine: Array |
     return [*entries, *(part * radiance for part in along), *([] if cosine is None else [cosine * radiance])]
 
 
-def dot(v: Vector, w: Vector) -> Array:
-    """Scalar product."""
-    return v.s * w.s + v.rho * w.rho + v.alpha * w.alpha
-
-
 def trace(entries: ArrayLike, axis: int) -> Array:
     """Trace of a tensor given by its four entries along ``axis``."""
     return np.tensordot(np.asarray(entries), np.asarray(TRACE), axes=([axis], [0]))
