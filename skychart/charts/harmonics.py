@@ -72,16 +72,17 @@ def fitted(coefficients: np.ndarray, normals: np.ndarray, irradiance: np.ndarray
     `coefficients` are the integrals of light times harmonic, which serve planes of all normals best. `irradiance`
     (plane, channel) is that of planes with unit `normals` (plane, 3). Least in sum are two mean squares: of the error
     over all normals, relative to their mean, and, twice, of that of these planes, relative to their own. The light is
-    the same on both sides of y = 0.
+    the same on both sides of y = 0; what symmetry makes 0 stays so.
     """
-    factor = np.array([COSINE[HARMONICS[index].degree] for index in EVEN])
-    on_planes = basis(normals)[:, EVEN] * factor
+    free = [index for index in EVEN if coefficients[index].any()]
+    factor = np.array([COSINE[HARMONICS[index].degree] for index in free])
+    on_planes = basis(normals)[:, free] * factor
     found = np.zeros_like(coefficients)
     for channel, wanted in enumerate(irradiance.T):
-        own = coefficients[list(EVEN), channel]
+        own = coefficients[free, channel]
         mean = COSINE[0] * HARMONICS[0].factor * own[0]
         everywhere = factor / math.sqrt(4 * math.pi) / mean
         here = math.sqrt(_WEIGHT / len(wanted)) / np.maximum(wanted, _DARK * mean)
         system = np.concatenate([np.diag(everywhere), here[:, None] * on_planes])
-        found[list(EVEN), channel] = np.linalg.lstsq(system, np.concatenate([everywhere * own, here * wanted]))[0]
+        found[free, channel] = np.linalg.lstsq(system, np.concatenate([everywhere * own, here * wanted]))[0]
     return found

@@ -15,6 +15,7 @@ from skychart.colour.integrate import tristimulus_matrix
 from skychart.config import AirSettings
 
 DEFAULT_OBSERVER = "cie-1931-2"
+_ROUNDING = 1e-12
 
 
 class Sky(Protocol):
@@ -128,9 +129,10 @@ def read_colours(
 def polarisation(stokes: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
     """Degree of linear polarisation [0..1] and angle from the horizontal [deg, −90..90] of (..., I Q U).
 
-    The angle is nan where the light is unpolarised.
+    The angle is nan where the light is unpolarised. A Q or U below 1e-12 of I is what rounding leaves of 0.
     """
-    intensity, q, u = np.moveaxis(np.asarray(stokes, float), -1, 0)
+    intensity, *parts = np.moveaxis(np.asarray(stokes, float), -1, 0)
+    q, u = (np.where(np.abs(part) > _ROUNDING * intensity, part, 0) for part in parts)
     polarised = np.hypot(q, u)
     degree = np.divide(polarised, intensity, out=np.zeros_like(polarised), where=intensity > 0)
     angle = np.degrees(0.5 * np.arctan2(u, q))

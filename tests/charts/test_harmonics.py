@@ -123,3 +123,12 @@ def test_the_fit_is_a_minimum():
         assert cost(found + step) > least
         assert cost(found - step) > least
     assert np.all(found[[1, 4, 5]] == 0)
+
+
+def test_what_symmetry_makes_0_stays_0():
+    """Light that does not vary with azimuth keeps the three harmonics that go by z alone."""
+    vectors, solid_angle = both_halves()
+    integrals = (basis(vectors) * solid_angle[:, None]).T @ np.exp(vectors[:, 2])[:, None]
+    integrals[[1, 3, 4, 5, 7, 8]] = 0
+    found = fitted(integrals, NORMALS, illuminance(integrals, NORMALS) * 1.05)
+    assert np.flatnonzero(found[:, 0]).tolist() == [0, 2, 6]

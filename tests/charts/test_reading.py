@@ -47,6 +47,14 @@ def test_polarisation_of_plain_states(stokes, degree, angle):
     assert angle in (0, 90) or np.sign(found[1]) == np.sign(angle)
 
 
+def test_what_rounding_leaves_is_not_told():
+    """In the sun's vertical U is 0 by symmetry: the vector is level or upright, not turned by 1e-15 to either side."""
+    degree, angle = polarisation(np.array([[1, 0.2, 3e-17], [1, -0.2, -3e-17], [1, 4e-16, 1e-17]]))
+    assert angle[:2].tolist() == [0, 90]
+    assert degree[2] == 0
+    assert np.isnan(angle[2])
+
+
 def test_unpolarised_light_has_no_angle():
     """The angle is nan, the degree 0, also where there is no light."""
     degree, angle = polarisation(np.array([[1.0, 0, 0], [0, 0, 0]]))
