@@ -15,7 +15,7 @@ from skychart.colour.integrate import tristimulus_matrix
 from skychart.config import AirSettings
 
 DEFAULT_OBSERVER = "cie-1931-2"
-_ROUNDING = 1e-12
+_ROUNDING = 1e-8
 
 
 class Sky(Protocol):
@@ -129,7 +129,7 @@ def read_colours(
 def polarisation(stokes: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
     """Degree of linear polarisation [0..1] and angle from the horizontal [deg, −90..90] of (..., I Q U).
 
-    The angle is nan where the light is unpolarised. A Q or U below 1e-12 of I is what rounding leaves of 0.
+    The angle is nan where the light is unpolarised. A Q or U below 1e-8 of I is what rounding leaves of 0.
     """
     intensity, *parts = np.moveaxis(np.asarray(stokes, float), -1, 0)
     q, u = (np.where(np.abs(part) > _ROUNDING * intensity, part, 0) for part in parts)
