@@ -6,15 +6,15 @@ const readerPicture = (() => {
   const { blended } = typeof module !== "undefined" ? require("./reader-data.js") : readerData;
   const DEGREE = Math.PI / 180;
   const TABLE_ROWS = 181; // half degrees of view elevation
-  const TABLE_COLUMNS = 181; // whole degrees of azimuth
+  const TABLE_COLUMNS = 91; // every second degree of azimuth
   const PEAK_FINE = 512; // steps of the root of the distance from the sun
 
-  // The smooth sky's light on half degrees of elevation and whole degrees of azimuth, (row, column, XYZ).
+  // The smooth sky's light on half degrees of elevation and every second degree of azimuth, (row, column, XYZ).
   const tableOf = (sky) => {
     const { air, smooth } = sky;
     const [, columns] = smooth.shape;
     air.upward ??= Array.from({ length: TABLE_ROWS }, (_, i) => air.byView(i / 2));
-    air.sideways ??= Array.from({ length: TABLE_COLUMNS }, (_, j) => air.byAzimuth(j));
+    air.sideways ??= Array.from({ length: TABLE_COLUMNS }, (_, j) => air.byAzimuth(2 * j));
     const table = new Float32Array(TABLE_ROWS * TABLE_COLUMNS * 3);
     for (let i = 0; i < TABLE_ROWS; i += 1) {
       const row = blended(smooth, air.upward[i]).values;
@@ -65,13 +65,13 @@ const readerPicture = (() => {
       for (let x = width / 2; x < width; x += 1) {
         const { elevation, azimuth } = directionAt(x + 0.5 - width / 2, y + 0.5);
         if (elevation >= 0) {
-          const [i, j] = [Math.min(Math.trunc(2 * elevation), TABLE_ROWS - 2), Math.min(Math.trunc(azimuth), TABLE_COLUMNS - 2)];
+          const [i, j] = [Math.min(Math.trunc(2 * elevation), TABLE_ROWS - 2), Math.min(Math.trunc(azimuth / 2), TABLE_COLUMNS - 2)];
           const [view, turn] = [elevation * DEGREE, azimuth * DEGREE];
           at[2 * count] = y * width + x;
           at[2 * count + 1] = y * width + width - 1 - x;
           cell[count] = (i * TABLE_COLUMNS + j) * 3;
           part[2 * count] = 2 * elevation - i;
-          part[2 * count + 1] = azimuth - j;
+          part[2 * count + 1] = azimuth / 2 - j;
           toward[3 * count] = Math.cos(view) * Math.cos(turn);
           toward[3 * count + 1] = Math.cos(view) * Math.sin(turn);
           toward[3 * count + 2] = Math.sin(view);
