@@ -7,6 +7,7 @@ many more, under a window that ends flat (product integration).
 """
 
 from collections.abc import Callable
+from functools import cache
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -65,6 +66,7 @@ def _missing(phase: Phase, seen: float) -> Array:
     return np.asarray(between.T @ (part[:, None] * phase(np.cos(distance))) - taken)
 
 
+@cache
 def _whole_sky() -> tuple[Array, Array, Array]:
     """Sines of view elevations (zenith,), azimuths (azimuth,) [rad], and weights times cosine (zenith, azimuth)."""
     cosine, weight = (part[: _WHOLE_SKY.zenith] for part in _WHOLE_SKY.cosines(0.0))

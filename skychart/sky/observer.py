@@ -45,8 +45,8 @@ class RaySource(Protocol):
         """Source [1/sr], (line, crossing, wavelength); of the sun's zenith angle and azimuth, (line, crossing)."""
 
 
-_AT_ONCE = 3000  # lines of sight times wavelengths, and
-_LEAST_LINES = 64
+_AT_ONCE = 3000  # lines of sight times wavelengths
+_LEAST_LINES = 64  # at once, however many wavelengths
 
 
 @dataclass(frozen=True, eq=False)

@@ -1,5 +1,6 @@
 """The solved sky of one atmosphere, for every sun and direction."""
 
+from collections.abc import Callable
 from dataclasses import dataclass, field, replace
 from typing import Protocol
 
@@ -86,11 +87,9 @@ class Sky:
         altitude_km: float = 0.0,
     ) -> Array:
         """The part of ``stokes`` scattered once from the beam."""
-        shape, lines = lines_of_sight(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
-        stokes = self._station(altitude_km).single(
-            lines, _molecules(self.air), None if self.air.haze is None else self.air.haze.phase_at
-        )
-        return stokes.reshape(*shape, *stokes.shape[1:])
+        molecules, phase = _molecules(self.air), None if self.air.haze is None else self.air.haze.phase_at
+        angles = solar_elevation_deg, view_elevation_deg, relative_azimuth_deg
+        return self._seen(lambda station, lines: station.single(lines, molecules, phase), angles, altitude_km)
 
     def met_by_haze(
         self,
@@ -100,9 +99,8 @@ class Sky:
         altitude_km: float = 0.0,
     ) -> Array:
         """What the haze's phase function multiplies in ``single``, (..., wavelength). Hazy air only."""
-        shape, lines = lines_of_sight(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
-        met = self._station(altitude_km).met_by_haze(lines)
-        return met.reshape(*shape, met.shape[1])
+        angles = solar_elevation_deg, view_elevation_deg, relative_azimuth_deg
+        return self._seen(Station.met_by_haze, angles, altitude_km)
 
     def multiple(
         self,
@@ -112,9 +110,8 @@ class Sky:
         altitude_km: float = 0.0,
     ) -> Array:
         """The part of ``stokes`` scattered more than once or by the ground."""
-        shape, lines = lines_of_sight(solar_elevation_deg, view_elevation_deg, relative_azimuth_deg)
-        stokes = self.light.multiple(self._station(altitude_km), lines)
-        return stokes.reshape(*shape, *stokes.shape[1:])
+        angles = solar_elevation_deg, view_elevation_deg, relative_azimuth_deg
+        return self._seen(self.light.multiple, angles, altitude_km)
 
     def beam(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
         """Direct transmission from the sun, shape (..., wavelength); 0 where the planet hides it."""
@@ -150,6 +147,17 @@ class Sky:
     def multiple_irradiance(self, solar_elevation_deg: ArrayLike, altitude_km: float = 0.0) -> Array:
         """Irradiance of a horizontal plane by light scattered more than once or by the ground, (..., wavelength)."""
         return over_hemisphere(self.multiple, solar_elevation_deg, altitude_km)
+
+    def _seen(
+        self,
+        look: Callable[[Station, Lines], Array],
+        angles_deg: tuple[ArrayLike, ArrayLike, ArrayLike],
+        altitude_km: float,
+    ) -> Array:
+        """What ``look`` makes of lines of sight, (line, ...), in the shape that the angles broadcast to."""
+        shape, lines = lines_of_sight(*angles_deg)
+        found = look(self._station(altitude_km), lines)
+        return found.reshape(*shape, *found.shape[1:])
 
     def _station(self, altitude_km: float) -> Station:
         altitude = float(within("altitude", altitude_km, 0, HIGHEST_OBSERVER_KM, "km"))
