@@ -50,7 +50,12 @@ def sky_at(view: SkyView, elevation_deg: np.ndarray, azimuth_deg: np.ndarray) ->
 
 
 def _ground_at(view: SkyView, elevation_deg: np.ndarray, azimuth_deg: np.ndarray) -> np.ndarray:
-    """Below the horizon, linear in the logarithm between the nodes; the highest of them is held up to the horizon."""
+    """Below the horizon, linear in the logarithm between the nodes; the highest of them is held up to the horizon.
+
+    A ground that is black, seen from where it begins, sends nothing.
+    """
+    if not view.below_XYZ.any():
+        return np.zeros((len(elevation_deg), 3))
     log = np.einsum("az,dzx->dax", _AROUND, np.log(np.maximum(view.below_XYZ, _FLOOR)))
     place = np.interp(elevation_deg, BELOW_ELEVATION_DEG, np.arange(len(BELOW_ELEVATION_DEG), dtype=float))
     return np.exp(_between(log, place, azimuth_deg))

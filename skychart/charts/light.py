@@ -46,7 +46,8 @@ class SunLight:
     `XYZ` [lx] and `rgb` of each space, (plane, part, 3): linear and absolute, white of 1 lx is 1, 1, 1; `xy` (plane,
     part, 2), `cct_k` and `duv` (plane, part), nan where there is none; `ground_share` (plane,) of sky and ground.
     `coefficients`: the nine of sky and ground in each space and in XYZ, (9, 3), of light whose white of 1 cd m⁻² is
-    1, 1, 1; `coefficient_error` (plane,): illuminance from them over the true one, less 1. `facing_stops`,
+    1, 1, 1; `coefficient_error` (plane,): illuminance from them over the true one, less 1; nan where
+    no light falls, under a black ground. `facing_stops`,
     `level_stops`: lit to shadow. `card_ev100`, `grey_ev100`: of a level white and grey card.
     """
 
@@ -111,7 +112,8 @@ def _sun_light(survey: Survey, sun: int, light: PlaneLight, colours: Colours, be
     lux = colours.luminance_cd_m2[sun]
     shadow = lux[:, SHADOW]
     modelled = illuminance(light.coefficients_XYZ[sun], light.normals[sun])[:, 1]
-    stops = np.log2(lux[:, BOTH] / shadow)
+    lit = np.where(shadow > 0, shadow, np.nan)
+    stops = np.log2(lux[:, BOTH] / lit)
     card = lux[LEVEL, BOTH] / np.pi
     return SunLight(
         atmosphere=survey.air.name,
@@ -125,9 +127,9 @@ def _sun_light(survey: Survey, sun: int, light: PlaneLight, colours: Colours, be
         cct_k=colours.cct_k[sun],
         duv=colours.duv[sun],
         rgb={space: values[sun] for space, values in colours.rgb.items()},
-        ground_share=light.ground_XYZ[sun, :, 1] / shadow,
+        ground_share=light.ground_XYZ[sun, :, 1] / lit,
         coefficients=_in_all_spaces(light.coefficients_XYZ[sun]),
-        coefficient_error=modelled / shadow - 1,
+        coefficient_error=modelled / lit - 1,
         facing_stops=float(stops[FACING]),
         level_stops=float(stops[LEVEL]),
         card_ev100=float(ev100(card)),

@@ -118,7 +118,7 @@ def _shadow(light: SunLight, plane: int) -> NumberLine:
     cells = (
         *_rgb(light.rgb["srgb"][plane, SHADOW]),
         _kelvin(light, plane, SHADOW),
-        fixed(100 * float(light.ground_share[plane]), 0),
+        spaced(fixed(100 * float(light.ground_share[plane]), 0)),
         spaced(signed(100 * float(light.coefficient_error[plane]))),
     )
     return NumberLine(PLANES[plane].title, cells)

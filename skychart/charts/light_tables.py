@@ -111,7 +111,7 @@ def harmonic_title(term: Harmonic) -> str:
 def signed(percent: float) -> str:
     """A difference with its sign and one decimal."""
     text = fixed(percent, 1)
-    return text if float(text) <= 0 else f"+{text}"
+    return f"+{text}" if text and float(text) > 0 else text
 
 
 def scientific(value: float, digits: int) -> str:

@@ -189,8 +189,8 @@ def key_line(figure: Figure, x_in: float, y_in: float, name: str, style: Mapping
 
 
 def log_scale(values: np.ndarray, title: str, most: int = 6) -> Scale:
-    """Whole decades around `values`, with a power of ten at most `most` times."""
-    low, high = math.floor(math.log10(values.min())), math.ceil(math.log10(values.max()))
+    """Whole decades around `values`, nan left out, with a power of ten at most `most` times."""
+    low, high = math.floor(math.log10(np.nanmin(values))), math.ceil(math.log10(np.nanmax(values)))
     high = max(high, low + 1)
     powers = range(low, high + 1, max(1, math.ceil((high - low + 1) / most)))
     return Scale(10.0**low, 10.0**high, [10.0**power for power in powers], [_power(p) for p in powers], title, True)

@@ -35,15 +35,16 @@ def illuminance_svg(sheet: LightSheet) -> bytes:
     def draw(figure: Figure) -> None:
         suns = sheet.solar_elevation_deg
         lux = np.stack([light.illuminance_lx for light in sheet.suns])
+        lit = np.where(lux > 0, lux, np.nan)
         top = Panel(
             figure,
             _box(4.45, 3.2),
             sun_scale(suns, labelled=False),
-            log_scale(lux[..., BOTH], "Sun and sky, lx", most=9),
+            log_scale(lit[..., BOTH], "Sun and sky, lx", most=9),
         )
         bottom = Panel(figure, _box(1.4, 2.5), sun_scale(suns), _klx_scale(lux[..., SHADOW]))
         for number in range(len(PLANES)):
-            top.curve(suns, lux[:, number, BOTH], number)
+            top.curve(suns, lit[:, number, BOTH], number)
             bottom.curve(suns, lux[:, number, SHADOW] / 1000, number)
         bottom.key([plane.title for plane in PLANES], (0.0, 2.5), -0.72, 3)
 

@@ -3,13 +3,17 @@
 import numpy as np
 import pytest
 
-from skychart.charts.light import AWAY, BOTH, FACING, SHADOW, SUN, light_sheet
+from skychart.charts.light import AWAY, BOTH, FACING, SHADOW, SUN, UNDERSIDE, light_sheet
+from skychart.charts.light_box import light_box
 from skychart.charts.planes import LEVEL, PLANES
 from skychart.charts.survey import survey
 from skychart.colour.spaces import SPACES, rgb
+from skychart.config import AirSettings
+from skychart.plots.light_sheet import illuminance_svg
 from skychart.sky.sun import SOLAR_DISC_SOLID_ANGLE_SR
 
 from .conftest import SUNS_DEG
+from .fake_sky import FakeSky
 
 SUNS_SOLVED_DEG = (-6.0, 0.0, 10.0, 30.0, 60.0)
 TOWARD = [plane.key for plane in PLANES].index("toward")
@@ -53,6 +57,19 @@ def test_a_hidden_sun_has_no_numbers(fake):
     assert np.isnan([night.beam.illuminance_lx, night.beam.disc_luminance_cd_m2, night.beam.cct_k]).all()
     assert np.all(night.illuminance_lx[:, SUN] == 0)
     assert (night.facing_stops, night.level_stops) == (0, 0)
+
+
+def test_an_underside_over_black_ground_gets_nothing():
+    """0 lx, and no error, share or ratio of nothing; the box writes dashes, the figure leaves the curve out."""
+    sky = FakeSky(AirSettings(ground_albedo=0.0))
+    sky.ground_albedo = np.zeros(48)
+    sheet = light_sheet(survey(sky, (20.0, 60.0), "cie-1931-2"))
+    for light in sheet.suns:
+        assert np.all(light.illuminance_lx[UNDERSIDE] == 0)
+        assert np.isnan([light.coefficient_error[UNDERSIDE], light.ground_share[UNDERSIDE]]).all()
+        assert np.isfinite(light.coefficient_error[:UNDERSIDE]).all()
+    assert light_box(sheet.suns[0]).shadow[UNDERSIDE].cells[3:] == ("—", "—", "—")
+    assert illuminance_svg(sheet).startswith(b"<")
 
 
 def test_ratio_and_exposure(fake):
